@@ -1,0 +1,1 @@
+"""Floor 0: numbers and text.  Imports nothing of ours."""

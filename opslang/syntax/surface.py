@@ -1,0 +1,304 @@
+"""The surface tree: what was written, with its places.  Knows nothing of sorts, degrees or primes.
+
+Spans are offsets into the text of the statement's chunk and do not take part in comparisons,
+so two spellings of one expression are equal.
+"""
+
+from __future__ import annotations
+
+from typing import Union
+
+from attrs import field, frozen
+
+from opslang.ground.source import Span
+
+HERE: Span = (0, 0)
+
+
+def _span() -> Span:
+    return field(default=HERE, eq=False, repr=False)  # type: ignore[no-any-return]
+
+
+# --- integer expressions in index positions -----------------------------------------------------
+
+
+@frozen
+class IndexExpression:
+    """An integer expression that holds a variable (closed ones are folded to `int` by the parser).
+
+    kind: "name" (parts: the name), "number" (parts: the int), "sum", "difference", "product",
+    "power", "negative", "binom" (parts: index expressions or ints), "length" (|x|, parts: the name).
+    """
+
+    kind: str
+    parts: tuple[object, ...]
+    span: Span = _span()
+
+
+Index = Union[int, IndexExpression]
+
+
+# --- factors ------------------------------------------------------------------------------------
+
+
+@frozen
+class Operation:
+    """`Sq^4`, `P^3`, `Sq^{4,2,1}` (several indices), `Sq` or `P` alone (no indices: the total operation)."""
+
+    head: str
+    indices: tuple[Index, ...]
+    span: Span = _span()
+
+
+@frozen
+class Bockstein:
+    """`beta` (order None) or `beta_k`."""
+
+    order: Index | None
+    span: Span = _span()
+
+
+@frozen
+class Milnor:
+    """`Q_k`."""
+
+    index: Index
+    span: Span = _span()
+
+
+@frozen
+class Fundamental:
+    """`iota_n`, with its number of primes."""
+
+    degree: Index
+    primes: int = 0
+    span: Span = _span()
+
+
+@frozen
+class Name:
+    """A name: letter or spelled Greek letter, optional index, number of primes.  A class or an abbreviation."""
+
+    letter: str
+    index: Index | None = None
+    primes: int = 0
+    span: Span = _span()
+
+
+@frozen
+class Number:
+    """A non-negative integer written as a factor."""
+
+    value: int
+    span: Span = _span()
+
+
+@frozen
+class Group:
+    """A bracketed expression."""
+
+    body: "Sum"
+    span: Span = _span()
+
+
+@frozen
+class Conjugate:
+    """`chi(…)`."""
+
+    body: "Sum"
+    span: Span = _span()
+
+
+@frozen
+class PullBack:
+    """`f^*(…)` or `f^* x`: the pull-back along a named map."""
+
+    name: str
+    body: "Sum"
+    span: Span = _span()
+
+
+@frozen
+class Power:
+    """A factor to a power."""
+
+    base: "Factor"
+    exponent: Index
+    span: Span = _span()
+
+
+Factor = Union[Operation, Bockstein, Milnor, Fundamental, Name, Number, Group, Conjugate, PullBack, Power]
+
+
+@frozen
+class Product:
+    """A flat list of factors.  `glues[i]` is how factor i is joined to the one before it:
+    "" (side by side), "*" (also a centred dot), "cup", "cross" (⊗) or "compose" (∘); `glues[0]` is ""."""
+
+    factors: tuple[Factor, ...]
+    glues: tuple[str, ...]
+    span: Span = _span()
+
+
+@frozen
+class Sum:
+    """A flat sum: pairs (sign +1 or -1, product)."""
+
+    terms: tuple[tuple[int, Product], ...]
+    span: Span = _span()
+
+
+# --- groups and spaces --------------------------------------------------------------------------
+
+
+@frozen
+class Summand:
+    """`Z` (order 0), `Z/m` (order m), with how many copies; `F_p` is a field (field=True, order p)."""
+
+    order: int
+    copies: int = 1
+    field: bool = False
+    span: Span = _span()
+
+
+@frozen
+class Coefficients:
+    """A finitely generated abelian group, or a field F_p, as written."""
+
+    summands: tuple[Summand, ...]
+    span: Span = _span()
+
+
+@frozen
+class EilenbergMacLane:
+    """`K(G, n)`."""
+
+    group: Coefficients
+    degree: Index
+    span: Span = _span()
+
+
+@frozen
+class NamedSpace:
+    """Any other space word, `X`, `BO(3)`, `RP^5(a)`, `thom(BO(3))`: name, the power after `^`, and what stands
+    in its brackets (numbers, names of classes, spaces)."""
+
+    name: str
+    power: Index | None = None
+    arguments: tuple[object, ...] = ()
+    span: Span = _span()
+
+
+@frozen
+class SpaceProduct:
+    """Spaces joined by `x`, `×` or `\\times`; two factors or more."""
+
+    factors: tuple[Union[EilenbergMacLane, NamedSpace], ...]
+    span: Span = _span()
+
+
+Space = Union[EilenbergMacLane, NamedSpace, SpaceProduct]
+
+
+# --- statements ---------------------------------------------------------------------------------
+
+
+@frozen
+class PrimeStatement:
+    """`prime 3`."""
+
+    value: int
+    span: Span = _span()
+
+
+@frozen
+class SpaceStatement:
+    """`space X = …`."""
+
+    name: str
+    space: Space
+    span: Span = _span()
+
+
+@frozen
+class OnStatement:
+    """`on X`."""
+
+    space: Space
+    span: Span = _span()
+
+
+@frozen
+class DeclareStatement:
+    """`let x, y in H^2(X; Z/4)`: label and coefficients may be None."""
+
+    names: tuple[Name, ...]
+    degree: Index
+    label: str | None = None
+    coefficients: Coefficients | None = None
+    span: Span = _span()
+
+
+@frozen
+class AbbreviateStatement:
+    """`let u = Sq^2 x + x^2`."""
+
+    name: Name
+    body: Sum
+    span: Span = _span()
+
+
+@frozen
+class ExpressionStatement:
+    """A bare expression."""
+
+    body: Sum
+    span: Span = _span()
+
+
+@frozen
+class RelationStatement:
+    """`a = b`, or a chain `a = b = c`; two sides or more."""
+
+    sides: tuple[Sum, ...]
+    span: Span = _span()
+
+
+@frozen
+class WhyStatement:
+    """`why …` of an expression or a relation."""
+
+    body: Union[ExpressionStatement, RelationStatement]
+    span: Span = _span()
+
+
+@frozen
+class BasisStatement:
+    """`basis H^9(K(Z/2, 3))`; no space: the current one."""
+
+    degree: Index
+    space: Space | None = None
+    span: Span = _span()
+
+
+@frozen
+class SeriesStatement:
+    """`series K(Z/4, 3) to 20`; no space: the current one."""
+
+    space: Space | None
+    to: Index
+    span: Span = _span()
+
+
+Statement = Union[
+    PrimeStatement,
+    SpaceStatement,
+    OnStatement,
+    DeclareStatement,
+    AbbreviateStatement,
+    ExpressionStatement,
+    RelationStatement,
+    WhyStatement,
+    BasisStatement,
+    SeriesStatement,
+]
