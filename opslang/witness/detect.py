@@ -31,7 +31,9 @@ def _steps_singly(levels: tuple[int, ...], amount: int, p: int) -> Iterator[tupl
     partial: list[tuple[tuple[int, ...], int]] = [((), amount)]
     for level in levels:
         stay = [((*head, level), left) for head, left in partial]
-        rise = [] if level < 0 else [((*head, level + 1), left - p**level) for head, left in partial if left >= p**level]
+        rise = (
+            [] if level < 0 else [((*head, level + 1), left - p**level) for head, left in partial if left >= p**level]
+        )
         partial = stay + rise
     yield from partial
 

@@ -39,6 +39,13 @@ def _add_to(total: Milnor, element: Mapping[Basis, int], scale: int, p: int) -> 
             total.pop(key, None)
 
 
+def add(a: Mapping[Basis, int], b: Mapping[Basis, int], p: int, scale: int = 1) -> Milnor:
+    """a + scale * b."""
+    total = dict(a)
+    _add_to(total, b, scale, p)
+    return total
+
+
 def _rows(total: int, columns: Exponents, p: int) -> Iterator[tuple[int, ...]]:
     """The rows (x_0, x_1, …) with sum p^j x_j = total and x_j <= columns[j-1] for j >= 1."""
     partial: list[tuple[tuple[int, ...], int]] = [((), total)]
