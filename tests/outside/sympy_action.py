@@ -20,12 +20,18 @@ class SympyPolynomials:
         self.p, self.n = p, n
         names = [f"x{i}" for i in range(n)] + [f"y{i}" for i in range(n)] + ["t"]
         self.ring, *generators = ring(names, GF(p))
-        self.x, self.y, self.t = generators[:n], generators[n : 2 * n], generators[2 * n]
+        self.x, self.y, self.t = (
+            generators[:n],
+            generators[n : 2 * n],
+            generators[2 * n],
+        )
 
     def power(self, i: int, f: Any) -> Any:
         """P^i f (at p = 2: Sq^i f)."""
         total = f.compose([(x, x + self.t * x**self.p) for x in self.x])
-        return self.ring.from_dict({(*m[:-1], 0): c for m, c in total.terms() if m[-1] == i})
+        return self.ring.from_dict(
+            {(*m[:-1], 0): c for m, c in total.terms() if m[-1] == i}
+        )
 
     sq = power
 
@@ -36,7 +42,9 @@ class SympyPolynomials:
             sign = 1
             for j in range(self.n):
                 if m[self.n + j]:
-                    total += sign * self.x[j] * self.ring.from_dict({m: c}).diff(self.y[j])
+                    total += (
+                        sign * self.x[j] * self.ring.from_dict({m: c}).diff(self.y[j])
+                    )
                     sign = -sign
         return total
 
