@@ -81,14 +81,6 @@ def test_every_fact_has_a_source() -> None:
 @pytest.mark.parametrize("fact", OPERATIONS, ids=named)
 def test_the_witness_knows_the_fact(fact: dict[str, Any]) -> None:
     p = fact["prime"]
-    if (
-        max(
-            map(int, "".join(c if c.isdigit() else " " for c in fact["text"]).split()),
-            default=0,
-        )
-        > 300
-    ):
-        pytest.skip("the index is too big for the witness")
     algebra = milnor_algebra(p)
     value = read(fact["text"], algebra)
     assert value == ({} if fact["equals"] == "0" else read(fact["equals"], algebra))
@@ -144,7 +136,7 @@ def test_the_api_knows_the_fact(fact: dict[str, Any]) -> None:
         return
     assert value.terms == opslang.normalise(equals, prime=p).terms
     assert len(value.terms) == equals.count(" + ") + 1
-    words = milnor.admissible(read(text, milnor_algebra(p)), p) if "1000" not in text else {(1001,): 1}
+    words = milnor.admissible(read(text, milnor_algebra(p)), p)
     assert value.degree == degree(next(iter(words)), p)
     assert opslang.compare(f"{text} = 0", prime=p).verdict == "false"
 
