@@ -1,17 +1,13 @@
-"""Every diagnostic name: its title, its explanation and an example that shows it.  Retired names stay."""
+"""Every diagnostic name: its title, its explanation and an example that shows it.  Retired names stay.
+
+The names stand in one table a room, beside this file; here they are only put together.
+"""
 
 from __future__ import annotations
 
-from attrs import frozen
+from opslang.report.code import Code
+from opslang.report.codes_front import FRONT_CODES
 
+CODES: dict[str, Code] = {**FRONT_CODES}
 
-@frozen
-class Code:
-    """A diagnostic name with the words that explain it; the example is a script in which it appears."""
-
-    title: str
-    explanation: str
-    example: str
-
-
-CODES: dict[str, Code] = {}
+__all__ = ["CODES", "Code"]

@@ -1,0 +1,174 @@
+"""The command line: names of commands and options, and nothing else.
+
+Everything heavy is loaded by the command that needs it, so that a single line is answered at once.
+"""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Callable
+from typing import TYPE_CHECKING, Any, TypeVar
+
+import click
+
+from opslang import __version__
+
+if TYPE_CHECKING:
+    from opslang.front.statement import Settings
+
+Command = TypeVar("Command", bound=Callable[..., Any])
+
+OUTPUTS = ("text", "unicode", "latex", "jsonl")
+COLOURS = ("auto", "always", "never")
+
+
+def _prime(context: click.Context, parameter: click.Parameter, value: int) -> int:
+    from opslang.ground.arith import is_prime
+
+    if not is_prime(value):
+        raise click.BadParameter(f"{value} is not a prime")
+    return value
+
+
+_SHARED = (
+    click.option(
+        "--output", type=click.Choice(OUTPUTS), default="text", show_default=True, help="How to write results."
+    ),
+    click.option("--prime", type=int, default=2, show_default=True, callback=_prime, help="The prime to begin with."),
+    click.option("--limit", type=click.IntRange(min=1), help="Terms that a computation may hold before it is refused."),
+    click.option("--width", type=click.IntRange(min=20), help="Columns of text; the terminal's, or 80."),
+    click.option("--both", is_flag=True, help="Compute by tables and by rewriting, and report any difference."),
+    click.option("--colour", "--color", type=click.Choice(COLOURS), default="auto", help="Colour for diagnostics."),
+)
+
+
+def _shared(command: Command) -> Command:
+    for option in reversed(_SHARED):
+        command = option(command)
+    return command
+
+
+def _settings(output: str, prime: int, limit: int | None, width: int | None, both: bool, colour: str) -> Settings:
+    from opslang.front.output import paint_for, width_of
+    from opslang.front.statement import Settings
+
+    return Settings(output, prime, limit, width or width_of(sys.stdout), both, paint_for(colour, sys.stderr))
+
+
+@click.group(invoke_without_command=True, context_settings={"help_option_names": ["--help"]})
+@click.version_option(__version__, prog_name="opslang", message="%(prog)s %(version)s")
+@click.pass_context
+def opslang(context: click.Context) -> int:
+    """Cohomology operations: scripts of relations in, canonical admissible forms out.
+
+    Exit status: 0 all well; 1 a relation is false or undecided; 2 an error in the input or its use;
+    130 after an interrupt.
+    """
+    return _shell(context) if context.invoked_subcommand is None else 0
+
+
+@opslang.command()
+@click.argument("scripts", metavar="SCRIPT...", nargs=-1, required=True)
+@click.option("--jobs", type=click.IntRange(min=1), default=1, show_default=True, help="Processes to share the work.")
+@_shared
+def run(scripts: tuple[str, ...], jobs: int, **shared: Any) -> int:
+    """Run scripts, one after another; `-` is standard input.
+
+    Every expression is normalised, every relation decided.  Each script begins afresh.
+    """
+    from opslang.front.batch import run as run_scripts
+
+    return run_scripts(scripts, _settings(**shared), jobs)
+
+
+@opslang.command(name="eval", context_settings={"ignore_unknown_options": True})
+@click.argument("expressions", metavar="EXPR...", nargs=-1, required=True)
+@click.option("--on", "space", metavar="SPACE", help="As in --on 'K(Z/2, 3)'.")
+@click.option(
+    "--let", "declared", metavar="DECLARATION", multiple=True, help="As in --let 'x in H^2'; may be repeated."
+)
+@_shared
+@click.pass_context
+def evaluate(
+    context: click.Context, /, expressions: tuple[str, ...], space: str | None, declared: tuple[str, ...], **shared: Any
+) -> int:
+    """Answer expressions, relations or other statements given on the command line."""
+    from opslang.front.batch import evaluate as evaluate_all
+    from opslang.ground.source import Source
+
+    for text in expressions:  # an expression may begin with a minus sign, but hardly with two and a letter
+        if text.startswith("--") and text[2:3].isalpha():
+            raise click.NoSuchOption(text, possibilities=_like(text, context), ctx=context)
+    prelude = [Source("--on", f"on {space}")] if space is not None else []
+    prelude += [Source("--let", f"let {text}") for text in declared]
+    several = len(expressions) > 1
+    sources = [Source(f"argument {k}" if several else "argument", text) for k, text in enumerate(expressions, 1)]
+    return evaluate_all(tuple(prelude), tuple(sources), _settings(**shared))
+
+
+@opslang.command()
+@click.argument("name", required=False)
+@click.option("--width", type=click.IntRange(min=20), help="Columns of text; the terminal's, or 80.")
+@click.pass_context
+def explain(context: click.Context, name: str | None, width: int | None) -> int:
+    """Say what a diagnostic or a law is; without a name, list them all."""
+    from opslang.front import explain as page
+    from opslang.front.output import print_result, width_of
+
+    columns = width or width_of(sys.stdout)
+    if name is None:
+        return print_result(page.listing(columns))
+    text = page.explain(name, columns)
+    if text is None:
+        raise click.BadParameter(_unknown(name, page.names()), ctx=context, param_hint="NAME")
+    return print_result(text)
+
+
+@opslang.command()
+@click.pass_context
+def shell(context: click.Context) -> int:
+    """Ask and be answered, line by line; a script on standard input is run."""
+    return _shell(context)
+
+
+def _shell(context: click.Context) -> int:
+    from importlib import import_module
+
+    from opslang.front.output import on_terminal, print_result
+
+    if not on_terminal(sys.stdin):
+        from opslang.front.batch import run as run_scripts
+
+        return run_scripts(("-",), _settings("text", 2, None, None, False, "auto"))
+    try:
+        room = import_module("opslang.front.shell")
+    except ModuleNotFoundError:
+        return print_result((context.parent or context).get_help())
+    return int(room.main())
+
+
+def _like(word: str, context: click.Context) -> list[str]:
+    from difflib import get_close_matches
+
+    known = [option for parameter in context.command.params for option in parameter.opts if option.startswith("--")]
+    return get_close_matches(word, known)
+
+
+def _unknown(name: str, known: list[str]) -> str:
+    from difflib import get_close_matches
+
+    near = get_close_matches(name, known)
+    hint = f" Did you mean {' or '.join(near)}?" if near else " `opslang explain` lists all names."
+    return f"no diagnostic and no law is called {name!r}.{hint}"
+
+
+def main(arguments: list[str]) -> int:
+    """Runs one command line and gives its exit status."""
+    try:
+        status = opslang.main(arguments, prog_name="opslang", standalone_mode=False)
+    except click.ClickException as misuse:
+        misuse.show()
+        return 2
+    except (click.Abort, KeyboardInterrupt):
+        return 130
+    return status if isinstance(status, int) else 0
