@@ -1,0 +1,1 @@
+"""Floor 4: the fast engine.  Works on packed words and packed monomials; explains nothing."""

@@ -1,0 +1,377 @@
+"""The fast normaliser: a typed tree in, a canonical element out.  The one way in for every front.
+
+Strategy.  Exponents and letters are packed into slots; the width comes from a bound on the degree, so that the ordinary
+case has ten bits.  Words act on classes from the right, one letter at a time, so that instability prunes early; words
+of the algebra are first searched for short factors that vanish, so that a word that is 0 is seen to be so however
+large the rest of it is.
+"""
+
+from __future__ import annotations
+
+from typing import Any
+
+from opslang.ir.order import word_key
+from opslang.ir import tree as ir
+from opslang.ir.tree import ClassElement, OperationElement
+from opslang.ground.grading import degree as word_degree
+from opslang.tables.bockstein import higher
+from opslang.tables.budget import DEFAULT_LIMIT, Budget, TooLarge
+from opslang.tables.powers import Powers
+from opslang.tables.ring2 import Ring2
+from opslang.tables.ring_odd import RingOdd
+from opslang.tables.squares import Squares
+
+_SLOTS = 96
+"""A ring with more generators than this is made anew for the next statement: long ints are slow."""
+
+_EASY = 20_000
+"""Terms that a word may take before its factors are searched for one that vanishes."""
+
+Algebra = Squares | Powers
+Ring = Ring2 | RingOdd
+
+
+def _width(top: int) -> int:
+    """Bits of a slot for degrees up to `top`."""
+    return 10 if top < 1000 else 20 if top < 1_000_000 else top.bit_length() + 2
+
+
+class Engine:
+    """The normaliser at one prime, with what it remembers from statement to statement."""
+
+    def __init__(self, prime: int, limit: int = DEFAULT_LIMIT) -> None:
+        self.prime = prime
+        self.budget = Budget(limit)
+        self.modulo = False
+        """Whether the last element is defined only modulo the images of lower Bocksteins."""
+        self._rings: dict[int, Ring] = {}
+
+    def start(self) -> None:
+        """Begin a statement: a full budget, and rings that are not too wide."""
+        self.budget.refill()
+        self.modulo = False
+        for width, ring in list(self._rings.items()):
+            if len(ring.slots.word) > _SLOTS:
+                del self._rings[width]
+
+    def ring(self, top: int) -> Ring:
+        """The ring whose slots hold degrees up to `top`."""
+        width = _width(top)
+        found = self._rings.get(width)
+        if found is None:
+            found = Ring2(width, self.budget) if self.prime == 2 else RingOdd(self.prime, width, self.budget)
+            self._rings[width] = found
+        return found
+
+    # --- the two sorts --------------------------------------------------------------------------
+
+    def normal_class(self, tree: ir.Cls) -> ClassElement:
+        """The canonical form of a class.  Raises TooLarge, Undefined."""
+        ring = self.ring(tree.top)
+        return ClassElement(self.prime, ring.decode(Evaluation(self, ring).cls(tree)))
+
+    def normal_operation(self, tree: ir.Op, top: int) -> OperationElement:
+        """The canonical form of an operation all of whose parts have degree at most `top`.  Raises TooLarge."""
+        ring = self.ring(top)
+        element = Evaluation(self, ring).operation(tree)
+        unpack, p = ring.algebra.unpack, self.prime
+        pairs = [(unpack(x), 1) for x in element] if p == 2 else [(unpack(x), c) for x, c in element.items()]
+        pairs.sort(key=lambda pair: (word_degree(pair[0], p), word_key(pair[0], p)))
+        return OperationElement(p, tuple(pairs))
+
+
+class Evaluation:
+    """One statement's walk over its tree; remembers the values of shared nodes."""
+
+    def __init__(self, engine: Engine, ring: Ring) -> None:
+        self.engine = engine
+        self.ring: Any = ring
+        self.algebra: Any = ring.algebra
+        self.prime = engine.prime
+        self._values: dict[int, Any] = {}
+
+    # --- operations as elements of the algebra --------------------------------------------------
+
+    def operation(self, tree: ir.Op) -> Any:
+        """An operation as a packed element; not to be changed in place."""
+        found = self._values.get(id(tree))
+        if found is None:
+            found = self._values[id(tree)] = self._operation(tree)
+        return found
+
+    def _one(self) -> Any:
+        return {0} if self.prime == 2 else {0: 1}
+
+    def _operation(self, tree: ir.Op) -> Any:
+        match tree:
+            case ir.Composite():
+                return self.word(tree.word)
+            case ir.Compose():
+                element = self._one()
+                for factor in reversed(tree.factors):
+                    element = self.compose(factor, element)
+                    if not element:
+                        break
+                return element
+            case ir.OpSum():
+                result = self.ring.zero()
+                for c, term in tree.terms:
+                    self.ring.add(result, self.operation(term), c)
+                return result
+            case ir.OpPower():
+                return self.op_power(self.operation(tree.base), tree.exponent)
+            case ir.Chi():
+                return self.conjugate(tree.argument)
+            case ir.MilnorQ():
+                return self.primitive(tree.k)
+
+    def word(self, word: ir.Word) -> Any:
+        """A word's canonical form."""
+        element = self._quickly(word) if len(word) > 2 else None
+        if element is None:
+            element = self.algebra.normal(word)
+        return element if self.prime != 2 else set(element)
+
+    def _quickly(self, word: ir.Word) -> Any:
+        """A word's canonical form if little work gives it, or if a factor of it is seen to be 0; else None."""
+        budget, algebra = self.engine.budget, self.algebra
+        left = budget.left
+        try:
+            budget.left = min(left, _EASY)
+            return algebra.normal(word)
+        except TooLarge:
+            return self._vanishing_factor(word)
+        finally:
+            budget.left = left
+
+    def _vanishing_factor(self, word: ir.Word) -> Any:
+        """0 if a factor of the word is seen to vanish, the word itself if all factors turn out small; else None.
+
+        Factors are tried in order of length; each is a letter times the factor one shorter, while those stay small.
+        """
+        budget, algebra = self.engine.budget, self.algebra
+        factors: list[Any] = [algebra.normal(word[at : at + 1]) for at in range(len(word))]
+        for length in range(2, len(word) + 1):
+            longer: list[Any] = []
+            for at in range(len(word) - length + 1):
+                value = None
+                if factors[at + 1] is not None:
+                    budget.left = _EASY // 4
+                    try:
+                        value = algebra.times(word[at], factors[at + 1])
+                    except TooLarge:
+                        pass
+                    if value is not None and not value:
+                        return self.ring.zero()
+                longer.append(value)
+            factors = longer
+            if all(value is None for value in factors):
+                return None
+        return factors[0]
+
+    def compose(self, op: ir.Op, element: Any) -> Any:
+        """An operation times an element of the algebra."""
+        if isinstance(op, ir.Composite):
+            for token in reversed(op.word):
+                element = self.algebra.times(token, element)
+            return element
+        return self.times(self.operation(op), element)
+
+    def times(self, f: Any, g: Any) -> Any:
+        """The product of two elements of the algebra."""
+        result = self.ring.zero()
+        unpack = self.algebra.unpack
+        for x in f:
+            part = g
+            for token in reversed(unpack(x)):
+                part = self.algebra.times(token, part)
+                if not part:
+                    break
+            self.ring.add(result, part, 1 if self.prime == 2 else f[x])
+        return result
+
+    def op_power(self, base: Any, exponent: int) -> Any:
+        """A power by composition, through the binary digits of the exponent."""
+        result = self._one()
+        while exponent:
+            if exponent & 1:
+                result = self.times(result, base)
+            exponent >>= 1
+            if exponent and result:
+                base = self.times(base, base)
+            if not result:
+                break
+        return result
+
+    def conjugate(self, tree: ir.Op) -> Any:
+        """The conjugate of an operation."""
+        result = self.ring.zero()
+        element = self.operation(tree)
+        for x in element:
+            word = self.algebra.unpack(x)
+            part = self._one()
+            boundary = word.count(0) if self.prime != 2 else 0
+            # chi reverses words; the sign is that of the reversal of the Boksteins and of chi(beta) = -beta
+            for token in word:
+                part = self.times(self._conjugate_letter(token), part)
+            sign = (-1) ** (boundary * (boundary - 1) // 2 + boundary)
+            self.ring.add(result, part, sign * (1 if self.prime == 2 else element[x]))
+        return result
+
+    def _conjugate_letter(self, token: int) -> Any:
+        """chi of a letter, by sum_i P^i chi(P^{n-i}) = 0; without the sign where the letter is a Bockstein."""
+        if self.prime != 2 and token == 0:
+            return self.algebra.times(0, self._one())
+        found = [self._one()]
+        for n in range(1, token + 1):
+            value = self.ring.zero()
+            for i in range(1, n + 1):
+                self.ring.add(value, self.algebra.times(i, found[n - i]), -1)
+            found.append(value)
+        return found[token]
+
+    def primitive(self, k: int) -> Any:
+        """Milnor's primitive: Q_0 is the Bockstein, Q_{j+1} the commutator of P^{p^j} (Sq^{2^{j+1}}) with Q_j (Milnor 1958)."""
+        p = self.prime
+        element = self.algebra.times(1 if p == 2 else 0, self._one())
+        for j in range(k):
+            letter = self.algebra.times(2 ** (j + 1) if p == 2 else p**j, self._one())
+            result = self.times(letter, element)
+            self.ring.add(result, self.times(element, letter), -1)
+            element = result
+        return element
+
+    # --- classes --------------------------------------------------------------------------------
+
+    def cls(self, tree: ir.Cls) -> Any:
+        """A class as a packed element; not to be changed in place."""
+        found = self._values.get(id(tree))
+        if found is None:
+            found = self._values[id(tree)] = self._cls(tree)
+        return found
+
+    def _cls(self, tree: ir.Cls) -> Any:
+        ring = self.ring
+        match tree:
+            case ir.Fundamental():
+                return ring.generator(tree.of)
+            case ir.Apply():
+                return self.apply(tree.op, self.cls(tree.argument))
+            case ir.ClassSum():
+                result = ring.zero()
+                for c, term in tree.terms:
+                    ring.add(result, self.cls(term), c)
+                return result
+            case ir.Cup():
+                element = ring.unit()
+                for factor in tree.factors:
+                    element = ring.multiply(element, self.cls(factor))
+                return element
+            case ir.ClassPower():
+                return ring.power(self.cls(tree.base), tree.exponent)
+            case ir.Unit():
+                return ring.unit()
+            case ir.Total():
+                return ring.total(self.cls(tree.argument))
+            case ir.HigherBockstein():
+                value, modulo = higher(ring, tree.k, self.cls(tree.argument))
+                self.engine.modulo = self.engine.modulo or modulo
+                return value
+
+    def apply(self, op: ir.Op, element: Any) -> Any:
+        """An operation applied to an element of H^*."""
+        ring = self.ring
+        match op:
+            case ir.Composite():
+                for token in reversed(op.word):
+                    element = ring.letter(token, element)
+                    if not element:
+                        break
+                return element
+            case ir.Compose():
+                for factor in reversed(op.factors):
+                    element = self.apply(factor, element)
+                    if not element:
+                        break
+                return element
+            case ir.OpSum():
+                result = ring.zero()
+                for c, term in op.terms:
+                    ring.add(result, self.apply(term, element), c)
+                return result
+            case ir.OpPower():
+                if op.exponent > 64:
+                    return self._apply_element(self.operation(op), element)
+                for _ in range(op.exponent):
+                    element = self.apply(op.base, element)
+                return element
+            case ir.Chi():
+                return self._apply_conjugate(op.argument, element)
+            case ir.MilnorQ():
+                return self._apply_primitive(op.k, element)
+
+    def _apply_element(self, op: Any, element: Any) -> Any:
+        """A packed element of the algebra applied to an element of H^*."""
+        result = self.ring.zero()
+        for x in op:
+            value = self.apply(ir.Composite(self.algebra.unpack(x), 0), element)
+            self.ring.add(result, value, 1 if self.prime == 2 else op[x])
+        return result
+
+    def _apply_conjugate(self, tree: ir.Op, element: Any) -> Any:
+        """chi of an operation applied to an element of H^*."""
+        if not isinstance(tree, ir.Composite):
+            return self._apply_element(self.conjugate(tree), element)
+        negative = 0
+        boundary = tree.word.count(0) if self.prime != 2 else 0
+        for token in tree.word:
+            element = self._apply_conjugate_letter(token, element)
+        negative = boundary * (boundary - 1) // 2 + boundary
+        result = self.ring.zero()
+        self.ring.add(result, element, (-1) ** negative)
+        return result
+
+    def _apply_conjugate_letter(self, token: int, element: Any) -> Any:
+        """chi of a letter on an element, by the same sum as in the algebra, over the degrees where something is left."""
+        ring = self.ring
+        if self.prime != 2 and token == 0:
+            return ring.letter(0, element)
+        waiting: dict[int, Any] = {0: element}
+        top = max((ring.degree(x) for x in element), default=0)
+        step = 1 if self.prime == 2 else 2 * (self.prime - 1)
+        for n in range(token):
+            value = waiting.pop(n, None)
+            if not value:
+                continue
+            reach = top + n * step if self.prime == 2 else (top + n * step) // 2
+            for i in range(1, min(token - n, reach) + 1):
+                self.engine.budget.spend(1)
+                part = ring.letter(i, value)
+                if part:
+                    ring.add(waiting.setdefault(n + i, ring.zero()), part, -1)
+        return waiting.get(token, ring.zero())
+
+    def _apply_primitive(self, k: int, element: Any) -> Any:
+        """Q_k of an element of H^*: the derivation given by its values on generators."""
+        return self.ring.derivation(element, lambda slot: self._primitive_of(k, slot), 1)
+
+    def _primitive_of(self, k: int, slot: int) -> Any:
+        """Q_k of a generator, by the commutator."""
+        ring, p = self.ring, self.prime
+        key = (k, slot)
+        found = ring._primitives.get(key)
+        if found is None:
+            generator = ring.multiply(ring.unit(), {1 << slot * ring.width} if p == 2 else {1 << slot * ring.width: 1})
+            if k == 0:
+                found = ring.letter(1 if p == 2 else 0, generator)
+            else:
+                letter = 2**k if p == 2 else p ** (k - 1)
+                found = ring.zero()
+                inner = self._apply_primitive(k - 1, generator)
+                if inner:
+                    ring.add(found, ring.letter(letter, inner))
+                moved = ring.letter(letter, generator)
+                if moved:
+                    ring.add(found, self._apply_primitive(k - 1, moved), -1)
+            ring._primitives[key] = found
+        return found

@@ -1,0 +1,166 @@
+"""Generators, bases and Poincaré series of products of Eilenberg-MacLane spaces.  Knows classes, no packed forms.
+
+Source: Serre 1953; Cartan 1954-55; May 1970, thm 10.3; statements as in the language reference.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Iterator, Sequence
+from operator import mul
+
+from opslang.ground.grading import Word
+from opslang.ir.order import generator_key, monomial_key
+from opslang.ir.tree import Class, Generator, Monomial
+from opslang.tables.budget import Budget
+
+
+def _roots(of: Class) -> tuple[tuple[Word, int, bool], ...]:
+    """The roots under a class: (tail of the word, degree, killed by the Bockstein)."""
+    if of.order == 1:
+        return (((), of.degree, False),)
+    if of.order == 0:
+        return (((), of.degree, True),)
+    return ((), of.degree, True), ((-of.order,), of.degree + 1, True)
+
+
+def _words(p: int, degree: int, killed: bool, to: int) -> Iterator[tuple[Word, int]]:
+    """The words of polynomial generators on a root of the given degree, with the degrees of the generators, up to `to`."""
+    waiting: list[tuple[Word, int]] = [((), degree)] if degree <= to else []
+    while waiting:
+        word, d = waiting.pop()
+        yield word, d
+        if p == 2:
+            low = 2 * word[0] if word else 1 + killed
+            waiting += [((i, *word), d + i) for i in range(low, min(d - 1, to - d) + 1)]
+            continue
+        begins = bool(word) and word[0] == 0
+        if not begins and d < to and (word or not killed):
+            waiting.append(((0, *word), d + 1))
+        head = word[begins] if len(word) > begins else 0
+        low = max(1, p * head + begins)
+        high = min((d - 1) // 2, (to - d) // (2 * (p - 1)))
+        waiting += [((i, *word), d + 2 * i * (p - 1)) for i in range(low, high + 1)]
+
+
+def generators(p: int, classes: Iterable[Class], to: int, budget: Budget | None = None) -> list[tuple[Generator, int]]:
+    """The polynomial generators up to degree `to`, with their degrees, in canonical order."""
+    found = []
+    for of in classes:
+        for tail, degree, killed in _roots(of):
+            for word, d in _words(p, degree, killed, to):
+                if budget is not None:
+                    budget.spend(1)
+                found.append((Generator(word + tail, of), d))
+    found.sort(key=lambda pair: generator_key(pair[0], p))
+    return found
+
+
+def squares_to_zero(generator: Generator, degree: int, p: int) -> bool:
+    """Whether the square of a generator is 0: odd degree at odd p; at 2 degree 1 and killed by Sq^1."""
+    return degree % 2 == 1 if p != 2 else degree == 1 and generator.of.order != 1
+
+
+def _powers_of_two(parts: int, to: int) -> list[int]:
+    """How many multisets of exactly `parts` powers of 2 have each sum 0 … to."""
+    table = [[1] + [0] * to] + [[0] * (to + 1) for _ in range(parts)]
+    step = 1
+    while step <= to:
+        for k in range(1, parts + 1):
+            row, below = table[k], table[k - 1]
+            for d in range(step, to + 1):
+                if below[d - step]:
+                    row[d] += below[d - step]
+        step *= 2
+    return table[parts]
+
+
+def _counts_at_two(degree: int, killed: bool, to: int) -> list[int]:
+    """How many generators a root has in each degree, at p = 2.
+
+    Words of excess < n correspond to h_1 >= … >= h_{n-1} >= 0 with degree 1 + sum 2^{h_i} (Serre 1953, § 3);
+    on a class killed by Sq^1 only those with h_1 = h_2 (n = 2: h_1 = 0; n = 1: the class alone).
+    """
+    counts = [0] * (to + 1)
+    if killed and degree <= 2:
+        if degree <= to:
+            counts[degree] = 1
+        return counts
+    if not killed:
+        if to >= 1:
+            counts[1:] = _powers_of_two(degree - 1, to - 1)
+        return counts
+    # h_1 = h_2 = h: the greatest part twice, the other n - 3 parts at most 2^h.
+    rest = [[1] + [0] * to] + [[0] * (to + 1) for _ in range(degree - 3)]
+    step = 1
+    while 2 * step < to:
+        for k in range(1, degree - 2):
+            row, below = rest[k], rest[k - 1]
+            for d in range(step, to + 1):
+                if below[d - step]:
+                    row[d] += below[d - step]
+        for d, count in enumerate(rest[degree - 3]):
+            if count and 1 + 2 * step + d <= to:
+                counts[1 + 2 * step + d] += count
+        step *= 2
+    return counts
+
+
+def counts(p: int, of: Class, to: int) -> tuple[list[int], list[int]]:
+    """The numbers of polynomial and of exterior generators of a class in degrees 0 … to."""
+    even, odd = [0] * (to + 1), [0] * (to + 1)
+    for _, degree, killed in _roots(of):
+        if p == 2:
+            into = odd if killed and degree == 1 else even
+            for d, count in enumerate(_counts_at_two(degree, killed, to)):
+                into[d] += count
+        else:
+            for _, d in _words(p, degree, killed, to):
+                (odd if d % 2 else even)[d] += 1
+    return even, odd
+
+
+def series(p: int, classes: Sequence[Class], to: int) -> list[int]:
+    """The dimensions of H^0 … H^to of the product, by the Euler transform of the numbers of generators.  Quadratic in `to`."""
+    weight = [0] * (to + 1)
+    for of in classes:
+        even, odd = counts(p, of, to)
+        for d in range(1, to + 1):
+            # 1 + t^d = (1 - t^{2d}) / (1 - t^d)
+            weight[d] += even[d] + odd[d]
+            if odd[d] and 2 * d <= to:
+                weight[2 * d] -= odd[d]
+    sums = [0] * (to + 1)
+    for d in range(1, to + 1):
+        if weight[d]:
+            value = d * weight[d]
+            for multiple in range(d, to + 1, d):
+                sums[multiple] += value
+    dimensions = [1]
+    tail = sums[1:]
+    for n in range(1, to + 1):
+        dimensions.append(sum(map(mul, tail[:n], reversed(dimensions))) // n)
+    return dimensions
+
+
+def basis(p: int, classes: Sequence[Class], degree: int, budget: Budget) -> list[Monomial]:
+    """The monomials of one degree, in canonical order; TooLarge when they are more than the budget allows."""
+    available = generators(p, classes, degree, budget)
+    found: list[Monomial] = []
+    # Depth first over the generators: what is left of the degree, where to go on, the monomial so far.
+    stack: list[tuple[int, int, Monomial]] = [(degree, 0, ())]
+    while stack:
+        left, at, monomial = stack.pop()
+        if left == 0:
+            budget.spend(1)
+            found.append(monomial)
+            continue
+        for k in range(at, len(available)):
+            generator, d = available[k]
+            if d > left:
+                continue
+            most = 1 if squares_to_zero(generator, d, p) else left // d
+            for exponent in range(1, most + 1):
+                stack.append((left - exponent * d, k + 1, (*monomial, (generator, exponent))))
+            budget.spend(most)
+    found.sort(key=lambda monomial: monomial_key(monomial, p))
+    return found

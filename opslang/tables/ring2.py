@@ -1,0 +1,248 @@
+"""H^* of a product of Eilenberg-MacLane spaces at p = 2, on packed monomials.  Knows no text.
+
+A monomial is one int: the exponent of generator number s stands in slot s of `width` bits.  An element is a set of
+monomials; a product of monomials is a sum of ints, the square of an element a shift by one bit.
+
+Strategy.  The Cartan formula is a product of truncated total squares, one for each binary digit of each exponent (a digit
+2^j contributes the 2^j-th power of the total square, by Frobenius), highest digit first; partial degrees that can no
+longer reach the target are dropped.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Collection, Iterable
+
+from opslang.ir.tree import Class, Monomial
+from opslang.tables.budget import Budget
+from opslang.tables.slots import Slots, decode, exponents
+from opslang.tables.squares import Squares
+
+Poly = set[int]
+Terms = tuple[int, ...]
+
+
+class Ring2:
+    """The ring and its Steenrod squares.  Exponents and the letters of words must stay below 2**width."""
+
+    prime = 2
+
+    def __init__(self, width: int, budget: Budget) -> None:
+        self.width = width
+        self.budget = budget
+        self.algebra = Squares(width, budget)
+        self.slots = Slots(2, width)
+        self._squares: dict[tuple[int, int], Terms] = {}
+        self._primitives: dict[tuple[int, int], frozenset[int]] = {}
+
+    # --- elements -------------------------------------------------------------------------------
+
+    def zero(self) -> Poly:
+        """The element 0."""
+        return set()
+
+    def unit(self) -> Poly:
+        """The element 1."""
+        return {0}
+
+    def generator(self, of: Class, bockstein: int = 0) -> Poly:
+        """A class, or its beta_k."""
+        root = self.slots.root_of(of, bockstein)
+        return {1 << self.width * self.slots.slot(root, 0, self.slots.roots[root].degree)}
+
+    def add(self, into: Poly, element: Iterable[int], coefficient: int = 1) -> None:
+        """Add a multiple of an element to `into`."""
+        if coefficient & 1:
+            into.symmetric_difference_update(element)
+
+    def degree(self, monomial: int) -> int:
+        """The degree of a packed monomial."""
+        degrees = self.slots.degree
+        return sum([degrees[slot] * exponent for slot, exponent in exponents(monomial, self.width)])
+
+    def multiply(self, f: Collection[int], g: Collection[int]) -> Poly:
+        """The cup product."""
+        if len(f) > len(g):
+            f, g = g, f
+        self.budget.spend(len(f) * len(g))
+        result: Poly = set()
+        nilpotent = self.slots.nilpotent
+        for x in f:
+            if x & nilpotent:
+                result ^= {x + y for y in g if not x & y & nilpotent}
+            else:
+                result ^= {x + y for y in g}
+        return result
+
+    def power(self, f: Collection[int], n: int) -> Poly:
+        """The n-th power, n >= 0, through the binary digits of n."""
+        if len(f) == 1:
+            (x,) = f
+            return set() if n > 1 and x & self.slots.nilpotent else {x * n}
+        result: Poly = {0}
+        nilpotent = self.slots.nilpotent
+        digit = 0
+        while n >> digit:
+            if n >> digit & 1:
+                result = self.multiply(result, [x << digit for x in f if not (digit and x & nilpotent)])
+            digit += 1
+        return result
+
+    # --- operations -----------------------------------------------------------------------------
+
+    def square(self, slot: int, i: int) -> Terms:
+        """Sq^i of the generator in a slot, i >= 0."""
+        key = (slot, i)
+        found = self._squares.get(key)
+        if found is None:
+            if len(self._squares) > 1 << 17:
+                self._squares.clear()
+            found = self._squares[key] = self._square(slot, i)
+        return found
+
+    def _square(self, slot: int, i: int) -> Terms:
+        slots, width = self.slots, self.width
+        place = 1 << slot * width
+        degree = slots.degree[slot]
+        if i == 0:
+            return (place,)
+        if i > degree or (i == degree and place & slots.nilpotent):
+            return ()
+        if i == degree:
+            return (place << 1,)
+        root = slots.root[slot]
+        n = slots.roots[root].degree
+        killed = slots.roots[root].killed
+        total = degree - n + i
+        algebra, word = self.algebra, slots.word[slot]
+        mask = algebra.mask
+        words: Iterable[int]
+        if i >= 2 * (word & mask):
+            words = (word << width | i,)
+        else:
+            words = algebra.product(i, word)
+        terms = []
+        for v in words:
+            head = v & mask
+            if 2 * head - total > n:
+                continue
+            if killed and v >> (v.bit_length() - 1) // width * width == 1:
+                continue
+            power, rest = 0, total
+            while v and 2 * head - rest == n:
+                # excess n: Sq^head is the top square of what stands behind it
+                v >>= width
+                rest -= head
+                head = v & mask
+                power += 1
+            terms.append(1 << slots.slot(root, v, rest + n) * width + power)
+        self.budget.spend(len(terms) + 1)
+        return tuple(terms)
+
+    def letter(self, i: int, f: Iterable[int]) -> Poly:
+        """Sq^i of an element, i > 0."""
+        width = self.width
+        result: Poly = set()
+        toggle = result.symmetric_difference_update
+        for x in f:
+            if x & (x - 1):
+                toggle(self.cartan(i, x))
+            elif x:
+                slot, digit = divmod(x.bit_length() - 1, width)
+                if not i & ((1 << digit) - 1):
+                    terms = self.square(slot, i >> digit)
+                    toggle([t << digit for t in terms] if digit else terms)
+        return result
+
+    def _pieces(self, monomial: int) -> list[tuple[int, int]]:
+        """The pairs (digit, slot) of a monomial's exponents, highest digit first."""
+        width, pieces = self.width, []
+        while monomial:
+            low = monomial & -monomial
+            slot, digit = divmod(low.bit_length() - 1, width)
+            pieces.append((digit, slot))
+            monomial ^= low
+        pieces.sort(reverse=True)
+        return pieces
+
+    def cartan(self, k: int, monomial: int) -> Poly:
+        """Sq^k of one monomial, by the Cartan formula."""
+        degrees = self.slots.degree
+        pieces = self._pieces(monomial)
+        reach = [degrees[slot] << digit for digit, slot in pieces]
+        rest = sum(reach)
+        if k >= rest:
+            return {monomial << 1} if k == rest and not monomial & self.slots.nilpotent else set()
+        spend = self.budget.spend
+        sums: dict[int, Poly] = {0: {0}}
+        for (digit, slot), most in zip(pieces, reach):
+            rest -= most
+            following: dict[int, Poly] = {}
+            square = self.square
+            needed = max(sums)
+            series = []
+            for i in range(max(0, k - rest - needed) >> digit, (min(k, most) >> digit) + 1):
+                spend(1)
+                terms = square(slot, i)
+                if terms:
+                    series.append((i << digit, [t << digit for t in terms] if digit else terms))
+            for d, f in sums.items():
+                low, high = k - rest - d, k - d
+                for i, g in series:
+                    if i < low or i > high:
+                        continue
+                    spend(len(f) * len(g))
+                    if len(g) == 1:
+                        y = g[0]
+                        part = {x + y for x in f}
+                    else:
+                        part = set()
+                        if len(g) > len(f):
+                            for x in f:
+                                part ^= {x + y for y in g}
+                        else:
+                            for y in g:
+                                part ^= {x + y for x in f}
+                    if d + i in following:
+                        following[d + i] ^= part
+                    else:
+                        following[d + i] = part
+            sums = following
+            if not sums:
+                return set()
+        return sums.get(k, set())
+
+    def total(self, f: Iterable[int]) -> Poly:
+        """The total square of an element."""
+        result: Poly = set()
+        for x in f:
+            term: Poly = {0}
+            for digit, slot in self._pieces(x):
+                series: Poly = set()
+                for i in range(self.slots.degree[slot] + 1):
+                    self.budget.spend(1)
+                    series.symmetric_difference_update([t << digit for t in self.square(slot, i)])
+                term = self.multiply(term, series)
+            result ^= term
+        return result
+
+    def derivation(self, f: Iterable[int], on_generator: Callable[[int], Collection[int]], degree: int) -> Poly:
+        """The derivation that is `on_generator` on the generators of slots."""
+        result: Poly = set()
+        for x in f:
+            for slot, exponent in exponents(x, self.width):
+                if exponent & 1:
+                    image = on_generator(slot)
+                    if image:
+                        result ^= self.multiply([x - (1 << slot * self.width)], image)
+        return result
+
+    # --- out ------------------------------------------------------------------------------------
+
+    def decode(self, f: Iterable[int]) -> tuple[tuple[Monomial, int], ...]:
+        """The terms of an element in canonical order."""
+        found = []
+        for x in f:
+            monomial, _, key = decode(self.slots, self.algebra.unpack, x)
+            found.append((self.degree(x), key, monomial))
+        found.sort(key=lambda term: term[:2])
+        return tuple([(monomial, 1) for _, _, monomial in found])

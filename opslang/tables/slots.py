@@ -1,0 +1,113 @@
+"""The polynomial generators of one computation, numbered as they appear.  Knows roots and words, no products.
+
+A *root* is a class of `ir.tree.Class`, or the class beta_k of one whose coefficients are Z/p^k.  Each polynomial
+generator is an admissible word on a root.  A root that is not a plain mod p class is killed by the Bockstein, and
+the words on it are those that do not end in one (Serre 1953; Cartan 1954-55; May 1970, thm 10.3).
+"""
+
+from __future__ import annotations
+
+from attrs import frozen
+
+from opslang.ground.grading import Word
+from opslang.ir.order import generator_key
+from opslang.ir.tree import Class, Generator, Monomial
+
+
+@frozen
+class Root:
+    """What words act on: a class, or its beta_k when `bockstein` is k; `killed` says that the Bockstein of it is 0."""
+
+    of: Class
+    bockstein: int
+    degree: int
+    killed: bool
+
+
+class Slots:
+    """The generators seen so far: slot number <-> (root, packed word)."""
+
+    def __init__(self, prime: int, width: int) -> None:
+        self.prime = prime
+        self.width = width
+        self.roots: list[Root] = []
+        self._root_of: dict[tuple[Class, int], int] = {}
+        self._slot_of: dict[tuple[int, int], int] = {}
+        self.root: list[int] = []
+        self.word: list[int] = []
+        self.degree: list[int] = []
+        self.nilpotent = 0
+        """The lowest bit of every slot whose generator squares to 0: odd degree at an odd prime; at 2 degree 1 and killed by Sq^1."""
+        self._generators: list[Generator] = []
+        self._keys: list[tuple[object, ...]] = []
+
+    def root_of(self, of: Class, bockstein: int = 0) -> int:
+        """The number of the root of a class (bockstein 0) or of its beta_k."""
+        key = (of, bockstein)
+        found = self._root_of.get(key)
+        if found is None:
+            found = len(self.roots)
+            killed = bool(bockstein) or of.order != 1
+            self.roots.append(Root(of, bockstein, of.degree + bool(bockstein), killed))
+            self._root_of[key] = found
+        return found
+
+    def slot(self, root: int, word: int, degree: int) -> int:
+        """The slot of a packed word on a root; `degree` is that of the generator."""
+        key = (root, word)
+        found = self._slot_of.get(key)
+        if found is None:
+            found = len(self.word)
+            self._slot_of[key] = found
+            self.root.append(root)
+            self.word.append(word)
+            self.degree.append(degree)
+            at = self.roots[root]
+            if degree % 2 if self.prime != 2 else degree == 1 and at.killed:
+                self.nilpotent |= 1 << self.width * found
+        return found
+
+    def name(self, unpack: "type[object] | object", slot: int) -> tuple[Generator, tuple[object, ...]]:
+        """The generator in a slot and its key in the canonical order; `unpack` turns packed words into tokens."""
+        while len(self._generators) <= slot:
+            at = len(self._generators)
+            root = self.roots[self.root[at]]
+            word: Word = unpack(self.word[at])  # type: ignore[operator]
+            if root.bockstein:
+                word = (*word, -root.bockstein)
+            generator = Generator(word, root.of)
+            self._generators.append(generator)
+            self._keys.append(generator_key(generator, self.prime))
+        return self._generators[slot], self._keys[slot]
+
+
+def exponents(monomial: int, width: int) -> list[tuple[int, int]]:
+    """The pairs (slot, exponent) of a packed monomial, slots increasing."""
+    mask = (1 << width) - 1
+    found = []
+    while monomial:
+        slot = ((monomial & -monomial).bit_length() - 1) // width
+        at = slot * width
+        exponent = monomial >> at & mask
+        found.append((slot, exponent))
+        monomial ^= exponent << at
+    return found
+
+
+def decode(slots: Slots, unpack: object, monomial: int) -> tuple[Monomial, bool, tuple[object, ...]]:
+    """A packed monomial in canonical order, whether its sign changes on the way, and its key in the canonical order."""
+    parts = []
+    for slot, exponent in exponents(monomial, slots.width):
+        generator, key = slots.name(unpack, slot)
+        parts.append((key, slot, exponent, generator))
+    negative = False
+    if len(parts) > 1:
+        if slots.prime != 2:
+            odd = [(key, slot) for key, slot, _, _ in parts if slots.degree[slot] % 2]
+            negative = sum(a[0] > b[0] for i, a in enumerate(odd) for b in odd[i + 1 :]) % 2 == 1  # type: ignore[operator]
+        parts.sort(key=lambda part: part[0])
+    return (
+        tuple((generator, exponent) for _, _, exponent, generator in parts),
+        negative,
+        tuple((key, -exponent) for key, _, exponent, _ in parts),
+    )
