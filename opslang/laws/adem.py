@@ -18,7 +18,7 @@ def _refuse_admissible(admissible: bool, what: str) -> None:
 def squares(a: int, b: int) -> tuple[tuple[int, int], ...]:
     """The pairs (i, j) with Sq^a Sq^b = sum Sq^i Sq^j, j increasing; j = 0 means Sq^i alone.
 
-    Defined for 0 < a < 2b; ValueError elsewhere.  Degrees: i + j = a + b.  Source: Adem 1952; Steenrod and Epstein 1962, ch. I.
+    Defined for 0 < a < 2b; ValueError elsewhere.  i + j = a + b.  Source: Adem 1952; Steenrod and Epstein 1962, ch. I.
     """
     _refuse_admissible(not 0 < a < 2 * b, f"Sq^{a} Sq^{b}")
     if a > 512:
@@ -39,7 +39,9 @@ def count_squares(a: int, b: int) -> int:
     return binomials.count(b - 1, a, 2)
 
 
-def _signed(terms: Iterator[tuple[int, int]] | tuple[tuple[int, int], ...], a: int, b: int, minus: int, p: int) -> Iterator[Term]:
+def _signed(
+    terms: Iterator[tuple[int, int]] | tuple[tuple[int, int], ...], a: int, b: int, minus: int, p: int
+) -> Iterator[Term]:
     for j, value in terms:
         yield (p - value if (a + j + minus) % 2 else value), a + b - j, j
 
