@@ -7,16 +7,14 @@ from __future__ import annotations
 
 import gc
 import signal
-import sys
 from collections.abc import Callable, Generator, Iterable, Iterator
 from types import FrameType
 
-from opslang.front.output import Departed, Failed, Output, paint_for
+from opslang.front.output import Departed, Failed, Output, report
 from opslang.front.progress import Progress
 from opslang.front.reading import Script, Unreadable
-from opslang.front.statement import FAULTY, INTERRUPTED, WELL, Answer, Desk, Item, Opened, Settings, Trouble
+from opslang.front.statement import INTERRUPTED, WELL, Answer, Desk, Item, Opened, Settings, Trouble
 from opslang.ground.source import Source
-from opslang.report.render import render_file
 
 TERMINATED = 143
 PROGRAM = "opslang"
@@ -123,10 +121,8 @@ def write(answers: Answers, output: Output, progress: Progress, settings: Settin
         output.flush()
     except Departed:
         return status
-    except Failed as failure:
-        paint = paint_for("never", sys.stderr) if settings.output == "jsonl" else settings.paint
-        output.say("diagnostic", render_file("output-failed", str(failure), PROGRAM, paint=paint) + "\n")
-        return max(status, FAULTY)
+    except Failed as failed:
+        return max(status, report(failed, settings.paint))
     except (KeyboardInterrupt, Terminated):  # a second one, while the first was being attended to
         return INTERRUPTED
     finally:

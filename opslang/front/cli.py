@@ -92,7 +92,7 @@ def run(scripts: tuple[str, ...], jobs: int, **shared: Any) -> int:
 def evaluate(
     context: click.Context, /, expressions: tuple[str, ...], space: str | None, declared: tuple[str, ...], **shared: Any
 ) -> int:
-    """Answer expressions, relations or other statements given on the command line."""
+    """Answer lines given on the command line."""
     from opslang.front.batch import evaluate as evaluate_all
     from opslang.ground.source import Source
 
@@ -111,7 +111,10 @@ def evaluate(
 @click.option("--width", type=click.IntRange(min=20), help="Columns of text; the terminal's, or 80.")
 @click.pass_context
 def explain(context: click.Context, name: str | None, width: int | None) -> int:
-    """Say what a diagnostic or a law is; without a name, list them all."""
+    """Say what a diagnostic or a law is.
+
+    Without a name all of them are listed.
+    """
     from opslang.front import explain as page
     from opslang.front.output import print_result, width_of
 
@@ -127,7 +130,7 @@ def explain(context: click.Context, name: str | None, width: int | None) -> int:
 @opslang.command()
 @click.pass_context
 def shell(context: click.Context) -> int:
-    """Ask and be answered, line by line; a script on standard input is run."""
+    """Ask and be answered, line by line."""
     return _shell(context)
 
 
@@ -171,4 +174,10 @@ def main(arguments: list[str]) -> int:
         return 2
     except (click.Abort, KeyboardInterrupt):
         return 130
+    except SystemExit:  # the reader of a help page has left: that is how click says so
+        return 0
+    except OSError as trouble:  # a help page that cannot be written
+        from opslang.front.output import failure, report
+
+        return report(failure(trouble))
     return status if isinstance(status, int) else 0

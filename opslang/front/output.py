@@ -11,7 +11,7 @@ import sys
 from collections.abc import Callable
 from typing import Literal, TextIO
 
-from opslang.report.render import Paint, plain
+from opslang.report.render import Paint, plain, render_file
 
 BLOCK = 1 << 16
 Channel = Literal["result", "diagnostic"]
@@ -92,9 +92,7 @@ class Output:
             _abandon(sys.stdout)
             raise Departed from trouble
         except (OSError, ValueError) as trouble:
-            _abandon(sys.stdout)
-            reason = getattr(trouble, "strerror", None) or str(trouble)
-            raise Failed(f"standard output cannot be written: {reason.lower()}") from trouble
+            raise failure(trouble) from trouble
 
     def _warn(self, text: str) -> None:
         if sys.stderr is None:
@@ -124,6 +122,20 @@ def _abandon(stream: TextIO) -> None:
         pass
 
 
+def failure(trouble: OSError | ValueError) -> Failed:
+    """What to say of a standard output that could not be written; nothing more will be."""
+    if sys.stdout is not None:
+        _abandon(sys.stdout)
+    reason = getattr(trouble, "strerror", None) or str(trouble)
+    return Failed(f"standard output cannot be written: {reason.lower()}")
+
+
+def report(failed: Failed, paint: Paint = plain) -> int:
+    """Says that standard output has failed, and gives the exit status."""
+    Output().say("diagnostic", render_file("output-failed", str(failed), "opslang", paint=paint) + "\n")
+    return 2
+
+
 def print_result(text: str) -> int:
     """Writes one text to standard output and gives the exit status."""
     output = Output()
@@ -132,7 +144,6 @@ def print_result(text: str) -> int:
         output.flush()
     except Departed:
         return 0
-    except Failed as failure:
-        output.say("diagnostic", f"opslang: error: output-failed: {failure}\n")
-        return 2
+    except Failed as failed:
+        return report(failed)
     return 0
