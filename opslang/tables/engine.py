@@ -44,12 +44,15 @@ class Engine:
         self.budget = Budget(limit)
         self.modulo = False
         """Whether the last element is defined only modulo the images of lower Bocksteins."""
+        self.modulo_order = 1
+        """The highest order of a Bockstein met whose value is so defined."""
         self._rings: dict[int, Ring] = {}
 
     def start(self) -> None:
         """Begin a statement: a full budget, and rings that are not too wide."""
         self.budget.refill()
         self.modulo = False
+        self.modulo_order = 1
         for width, ring in list(self._rings.items()):
             if len(ring.slots.word) > _SLOTS:
                 del self._rings[width]
@@ -275,7 +278,9 @@ class Evaluation:
                 return ring.total(self.cls(tree.argument))
             case ir.HigherBockstein():
                 value, modulo = higher(ring, tree.k, self.cls(tree.argument))
-                self.engine.modulo = self.engine.modulo or modulo
+                if modulo:
+                    self.engine.modulo = True
+                    self.engine.modulo_order = max(self.engine.modulo_order, tree.k)
                 return value
 
     def apply(self, op: ir.Op, element: Any) -> Any:

@@ -1,0 +1,391 @@
+"""The stages from a chunk of text to an outcome, written once: parse, lower, normalise.
+
+A `Session` holds what one script declares.  It prints nothing and reads no files.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, Any, Literal, cast
+
+from attrs import evolve
+
+from opslang.ground.source import Source, Span
+from opslang.ir.measure import element_degree, element_excess
+from opslang.ir.outcome import Kind, Link, Outcome, Verdict
+from opslang.ir.tree import ClassElement, Element
+from opslang.meaning import statements
+from opslang.meaning.indices import number
+from opslang.meaning.lower import Lowering
+from opslang.meaning.scope import Scope, spelled
+from opslang.meaning.spaces import space_value
+from opslang.meaning.value import Value, as_sort
+from opslang.ir.spaces import SpaceValue, localise
+from opslang.report.diagnostic import Diagnostic, Refusal, error, note
+from opslang.syntax import surface as sf
+from opslang.syntax.parser import parse
+from opslang.tables.bockstein import Undefined
+from opslang.tables.budget import DEFAULT_LIMIT, TooLarge
+from opslang.tables.engine import Engine
+from opslang.tables.indeterminacy import within
+
+if TYPE_CHECKING:
+    from opslang.laws.derivation import Derivation
+
+__all__ = ["DEFAULT_LIMIT", "Outcome", "Session"]
+
+_KINDS: dict[str, Kind] = {
+    "prime": "declaration",
+    "space": "declaration",
+    "on": "declaration",
+    "let": "declaration",
+    "map": "declaration",
+    "manifold": "declaration",
+    "bundle": "declaration",
+    "why": "derivation",
+    "basis": "listing",
+    "series": "listing",
+}
+
+
+def kind_of(text: str) -> Kind:
+    """The kind of a statement that could not be read, by its first word and its signs."""
+    words = text.split(None, 1)
+    found = _KINDS.get(words[0]) if words else None
+    return found or ("relation" if "=" in text else "element")
+
+
+class Session:
+    """One script's scope, and the engines that answer its statements.
+
+    `prime` is the prime to begin with; `limit` bounds the terms that one statement may work with; `both` runs the
+    explaining engine beside the fast one on every expression and reports where they differ.
+    """
+
+    def __init__(self, prime: int = 2, limit: int = DEFAULT_LIMIT, both: bool = False) -> None:
+        self.scope = Scope(prime)
+        self.limit = limit
+        self.both = both
+        self._engines: dict[int, Engine] = {}
+
+    def engine(self) -> Engine:
+        """The engine at the current prime."""
+        found = self._engines.get(self.scope.prime)
+        if found is None:
+            found = self._engines[self.scope.prime] = Engine(self.scope.prime, self.limit)
+        return found
+
+    def run(self, source: Source) -> Outcome:
+        """The outcome of one statement.  Never raises, but lets an interrupt pass."""
+        statement, diagnostics = parse(source)
+        if statement is None or any(d.severity == "error" for d in diagnostics):
+            return self._failed(source, (0, len(source.text)), kind_of(source.text), diagnostics)
+        lowering = Lowering(self.scope, source.text, list(diagnostics))
+        span = statement.span
+        kind: Kind = "element"
+        try:
+            kind = _kind(statement)
+            outcome = self._answer(statement, Outcome(source, span, kind, "ok", self.scope.prime), lowering)
+            return evolve(outcome, diagnostics=(*lowering.diagnostics, *outcome.diagnostics))
+        except Refusal as refusal:
+            found = refusal.diagnostic
+        except TooLarge as refusal:
+            found = error(
+                "too-large",
+                f"this needs more than {refusal.limit:,} terms",
+                span,
+                f"the limit is there to keep the memory small; `--limit {10 * refusal.limit}` raises it",
+            )
+        except Undefined as refusal:
+            found = error("bockstein-undefined", str(refusal), span)
+        except (RecursionError, MemoryError):
+            found = error("too-large", "this is nested too deeply or too large for the memory", span)
+        return self._failed(source, span, kind, (*lowering.diagnostics, found))
+
+    def _failed(self, source: Source, span: Span, kind: Kind, diagnostics: tuple[Diagnostic, ...]) -> Outcome:
+        first = next((d for d in diagnostics if d.severity == "error"), None)
+        name, message = (first.name, first.message) if first else (None, None)
+        return Outcome(source, span, kind, "error", self.scope.prime, name=name, message=message, diagnostics=diagnostics)
+
+    # --- statements -----------------------------------------------------------------------------
+
+    def _answer(self, statement: sf.Statement, blank: Outcome, lowering: Lowering) -> Outcome:
+        scope = self.scope
+        match statement:
+            case sf.ExpressionStatement():
+                return self._expression(statement, blank, lowering)
+            case sf.RelationStatement():
+                return self._relation(statement, blank, lowering)
+            case sf.DeclareStatement():
+                lowering.diagnostics += statements.declare(statement, scope)
+            case sf.AbbreviateStatement():
+                value = statements.abbreviate(statement, scope, lowering)
+                self._one_name_one_class(value, statement.span)
+                return self._described(evolve(blank, degree=value.degree), (value,))
+            case sf.OnStatement():
+                lowering.diagnostics += statements.on(statement, scope)
+                return evolve(blank, space=scope.space.text if scope.space else None)
+            case sf.SpaceStatement():
+                lowering.diagnostics += statements.space(statement, scope)
+                return evolve(blank, space=scope.spaces[statement.name].text)
+            case sf.PrimeStatement():
+                lowering.diagnostics += statements.prime(statement, scope)
+                return evolve(blank, prime=scope.prime)
+            case sf.WhyStatement():
+                return self._why(statement, blank, lowering)
+            case sf.BasisStatement():
+                return self._basis(statement, blank)
+            case sf.SeriesStatement():
+                return self._series(statement, blank)
+        return blank
+
+    def _expression(self, statement: sf.ExpressionStatement, blank: Outcome, lowering: Lowering) -> Outcome:
+        value = as_sort_or_class(lowering.sum(statement.body), "class", statement.body.span)
+        self._one_name_one_class(value, statement.span)
+        engine = self.engine()
+        engine.start()
+        element = self.normal(value)
+        outcome = self._measured(self._described(blank, (value,)), element, value.degree)
+        if engine.modulo:
+            lowering.diagnostics.append(self._modulo(statement.span))
+        return self._cross_checked(outcome, (value,), (element,)) if self.both else outcome
+
+    def normal(self, value: Value) -> Element:
+        """The canonical form of a lowered operation or class."""
+        engine = self.engine()
+        if value.sort == "operation":
+            return engine.normal_operation(value.op, value.top)
+        return engine.normal_class(value.cls)
+
+    def _modulo(self, span: Span) -> Diagnostic:
+        return note("modulo-lower-bocksteins", "this value is defined modulo the images of the lower Bocksteins", span)
+
+    def _measured(self, outcome: Outcome, element: Element, written: int | None) -> Outcome:
+        degree = element_degree(element) if element.terms else written
+        return evolve(outcome, element=element, degree=degree, excess=element_excess(element))
+
+    def _described(self, outcome: Outcome, values: tuple[Value, ...]) -> Outcome:
+        """The sort of the values, and the space that their classes live in."""
+        sort = next((value.sort for value in values if value.sort != "scalar"), "class")
+        if sort == "operation":
+            return evolve(outcome, sort="operation")
+        if self.scope.space is not None:
+            return evolve(outcome, sort="class", space=self.scope.space.text)
+        classes = {of for value in values for of in value.classes}
+        space = None
+        if classes and all(of.letter == "iota" for of in classes):
+            space = " x ".join(f"K(Z/{self.scope.prime}, {n})" for n in sorted(of.degree for of in classes))
+        return evolve(outcome, sort="class", space=space)
+
+    def _one_name_one_class(self, value: Value, span: Span) -> None:
+        seen = {}
+        for of in value.classes:
+            key = (of.letter, of.index, of.primes)
+            if key in seen:
+                raise Refusal(
+                    error(
+                        "classes-of-different-spaces",
+                        f"{spelled(key)} stands here for two different classes, from different spaces or declarations",
+                        span,
+                        "give one of them another name",
+                    )
+                )
+            seen[key] = of
+
+    # --- relations ------------------------------------------------------------------------------
+
+    def _sides(self, statement: sf.RelationStatement, lowering: Lowering) -> tuple[Value, ...]:
+        values = [lowering.sum(side) for side in statement.sides]
+        sort = next((value.sort for value in values if value.sort != "scalar"), "class")
+        for value, side in zip(values, statement.sides):
+            if value.sort not in (sort, "scalar"):
+                first, second = ("an operation", "a class") if sort == "operation" else ("a class", "an operation")
+                raise Refusal(error("sorts-differ", f"the left side is {first}, and this side is {second}", side.span))
+        lifted = tuple([as_sort_or_class(value, sort, side.span) for value, side in zip(values, statement.sides)])
+        classes = lifted[0].classes.union(*[value.classes for value in lifted[1:]])
+        self._one_name_one_class(evolve(lifted[0], classes=classes), statement.span)
+        return lifted
+
+    def _relation(self, statement: sf.RelationStatement, blank: Outcome, lowering: Lowering) -> Outcome:
+        values = self._sides(statement, lowering)
+        engine = self.engine()
+        engine.start()
+        elements = tuple([self.normal(value) for value in values])
+        links: list[Link] = []
+        name = message = None
+        for at in range(len(values) - 1):
+            verdict, difference, words = self._compare(values, elements, at, statement)
+            links.append(Link(verdict, difference))
+            if words and message is None:
+                name, message = words
+        if engine.modulo:
+            lowering.diagnostics.append(self._modulo(statement.span))
+        worst = next((v for v in ("false", "undecided", "true") if any(link.verdict == v for link in links)), "true")
+        shown = next((link.difference for link in links if link.verdict == worst), links[0].difference)
+        degrees = {value.degree for value in values if not _bare_zero(value)}
+        degree = degrees.pop() if len(degrees) == 1 else None if degrees else 0
+        outcome = self._described(blank, values)
+        outcome = evolve(
+            outcome,
+            verdict=cast(Verdict, worst),
+            element=shown,
+            sides=elements,
+            degree=degree,
+            excess=element_excess(shown),
+            links=tuple(links) if len(links) > 1 else (),
+            name=name,
+            message=message,
+        )
+        return self._cross_checked(outcome, values, elements) if self.both else outcome
+
+    def _compare(
+        self, values: tuple[Value, ...], elements: tuple[Element, ...], at: int, statement: sf.RelationStatement
+    ) -> tuple[Verdict, Element, tuple[str, str] | None]:
+        left, right = values[at], values[at + 1]
+        difference = subtract(elements[at], elements[at + 1])
+        apart = None not in (left.degree, right.degree) and left.degree != right.degree
+        if apart and not _bare_zero(left) and not _bare_zero(right):
+            words = f"the right side has degree {right.degree}, the left side degree {left.degree}"
+            return "false", difference, ("degrees-differ", words)
+        if not difference.terms:
+            return "true", difference, None
+        if self.engine().modulo and isinstance(difference, ClassElement):
+            classes = left.classes | right.classes
+            decided = within(self.engine(), difference, tuple(classes), max(left.top, right.top))
+            if decided is not None:
+                return ("true" if decided else "false"), difference, None
+            return "undecided", difference, ("modulo-lower-bocksteins", "equal at most modulo the images of the lower Bocksteins; not decided")
+        return "false", difference, None
+
+    # --- derivations ----------------------------------------------------------------------------
+
+    def _why(self, statement: sf.WhyStatement, blank: Outcome, lowering: Lowering) -> Outcome:
+        from opslang.render.derivation import items
+
+        body = statement.body
+        again = Lowering(self.scope, lowering.text)
+        if isinstance(body, sf.RelationStatement):
+            outcome = self._relation(body, blank, lowering)
+            values = self._sides(body, again)
+        else:
+            outcome = self._expression(body, blank, lowering)
+            values = (as_sort_or_class(again.sum(body.body), "class", body.body.span),)
+        derivations = []
+        for value in values:
+            derivation, found = derive_value(value, self.scope.prime)
+            lowering.diagnostics += [evolve(d, span=statement.span) for d in found]
+            derivations.append(derivation)
+        elements = outcome.sides or (cast(Element, outcome.element),)
+        agreed(derivations, elements, statement.span)
+        steps = tuple([item for derivation in derivations for item in items(derivation)])
+        return evolve(outcome, kind="derivation", items=steps, derivations=tuple(derivations))
+
+    def _cross_checked(self, outcome: Outcome, values: tuple[Value, ...], elements: tuple[Element, ...]) -> Outcome:
+        """The outcome, unless the explaining engine finishes with another element."""
+        agreed([derive_value(value, self.scope.prime)[0] for value in values], elements, outcome.span)
+        return outcome
+
+    # --- listings -------------------------------------------------------------------------------
+
+    def _space_of(self, space: sf.Space | None, span: Span) -> SpaceValue:
+        found = self.scope.space if space is None else space_value(space, self.scope)
+        if found is None:
+            raise Refusal(error("no-space", "no space is named, and none is chosen", span, "write one in the brackets, or `on K(Z/2, 3)` before"))
+        return found
+
+    def _basis(self, statement: sf.BasisStatement, blank: Outcome) -> Outcome:
+        from opslang.tables.generators import basis
+
+        space = self._space_of(statement.space, statement.span)
+        degree = number(statement.degree, statement.span)
+        prime = self.scope.prime
+        engine = self.engine()
+        engine.start()
+        found = tuple(basis(prime, localise(space, prime).classes, degree, engine.budget)) if degree >= 0 else ()
+        return evolve(blank, space=space.text, sort="class", degree=degree, basis=found, items=found)
+
+    def _series(self, statement: sf.SeriesStatement, blank: Outcome) -> Outcome:
+        from opslang.tables.generators import series
+
+        space = self._space_of(statement.space, statement.span)
+        to = number(statement.to, statement.span)
+        engine = self.engine()
+        engine.start()
+        if to < 0:
+            raise Refusal(error("index-range", f"a series goes to a degree of at least 0, and here it is {to}", statement.span))
+        engine.budget.spend(to * to // 64)
+        found = tuple(series(self.scope.prime, localise(space, self.scope.prime).classes, to))
+        return evolve(blank, space=space.text, items=found)
+
+
+def derive_value(value: Value, prime: int) -> tuple[Derivation, tuple[Diagnostic, ...]]:
+    """The derivation of a lowered operation or class."""
+    from opslang.rewrite.engine import derive
+
+    return derive(cast(Any, value.tree), prime)
+
+
+def agreed(derivations: Sequence[Derivation], elements: Sequence[Element], span: Span) -> None:
+    """Refuse unless the kernel accepts each derivation and each finished one ends in its element."""
+    from opslang.ir.convert import to_canonical
+    from opslang.kernel.check import Rejected, check
+    from opslang.laws.book import LAWS
+    from opslang.render.text import element_text
+
+    for derivation, element in zip(derivations, elements):
+        try:
+            check(derivation, LAWS)
+            other = to_canonical(derivation.result, derivation.operation) if derivation.finished else element
+        except (Rejected, ValueError) as reason:
+            raise Refusal(error("engines-disagree", f"the derivation does not hold: {reason}", span)) from reason
+        if other != element:
+            words = f"the fast engine gives {element_text(element)}, the explaining engine {element_text(other)}"
+            raise Refusal(error("engines-disagree", words, span, "no answer is given; please report the expression"))
+
+
+def _kind(statement: sf.Statement) -> Kind:
+    match statement:
+        case sf.ExpressionStatement():
+            return "element"
+        case sf.RelationStatement():
+            return "relation"
+        case sf.WhyStatement():
+            return "derivation"
+        case sf.BasisStatement() | sf.SeriesStatement():
+            return "listing"
+    return "declaration"
+
+
+def as_sort_or_class(value: Value, sort: Literal["scalar", "operation", "class"], span: Span) -> Value:
+    """A value, scalars lifted to the sort of their neighbours; to a class where they stand alone."""
+    return as_sort(value, "class" if sort == "scalar" else sort, span)
+
+
+def _bare_zero(value: Value) -> bool:
+    """A literal 0: it has every degree."""
+    terms = getattr(value.tree, "terms", None)
+    return terms == () and value.degree == 0
+
+
+def subtract(left: Element, right: Element) -> Element:
+    """left - right, in canonical order."""
+    if left == right:
+        return evolve(left, terms=())
+    p = left.prime
+    terms = {term: c for term, c in left.terms}
+    order = [term for term, _ in left.terms]
+    for term, c in right.terms:
+        if term not in terms:
+            order.append(term)
+        terms[term] = (terms.get(term, 0) - c) % p
+    return evolve(left, terms=tuple(_sorted(left, [(term, terms[term]) for term in order if terms[term]])))
+
+
+def _sorted(like: Element, terms: list[tuple[Any, int]]) -> list[tuple[Any, int]]:
+    from opslang.ground.grading import degree
+    from opslang.ir.order import monomial_degree, monomial_key, word_key
+
+    p = like.prime
+    if isinstance(like, ClassElement):
+        return sorted(terms, key=lambda pair: (monomial_degree(pair[0], p), monomial_key(pair[0], p)))
+    return sorted(terms, key=lambda pair: (degree(pair[0], p), word_key(pair[0], p)))

@@ -1,0 +1,138 @@
+"""What a statement prints on standard output, in the three notations.  Knows outcomes and widths, no terminals."""
+
+from __future__ import annotations
+
+import unicodedata
+
+from opslang.ir.outcome import Outcome
+from opslang.ir.tree import Element
+from opslang.render.text import Notation, element_text, monomial_text, term_texts
+
+MARGIN = 28
+"""The column at which degree and excess begin, where the result is short."""
+MINUS: dict[str, str] = {"text": "left - right", "unicode": "left − right", "latex": "left - right"}
+
+
+def display_width(text: str) -> int:
+    """The columns that a text takes on a terminal."""
+    if text.isascii():
+        return len(text)
+    return sum(0 if unicodedata.combining(c) else 2 if unicodedata.east_asian_width(c) in "WF" else 1 for c in text)
+
+
+def columns(cells: list[str], width: int, indent: str = "") -> list[str]:
+    """Cells set in as many columns of one width as fit, read along the rows."""
+    widest = max(map(display_width, cells), default=0) + 2
+    count = max(1, (width - len(indent) + 2) // widest)
+    rows = [cells[i : i + count] for i in range(0, len(cells), count)]
+    return [(indent + "".join(cell + " " * (widest - display_width(cell)) for cell in row)).rstrip() for row in rows]
+
+
+def measure(degree: int | None, excess: int | None) -> str:
+    """Degree and excess in words; nothing for what is not known."""
+    parts = [] if degree is None else [f"degree {degree}"]
+    if excess is not None:
+        parts.append(f"excess {excess}")
+    return "   ".join(parts)
+
+
+def sum_lines(element: Element, notation: Notation, width: int, indent: str = "") -> list[str]:
+    """An element on one line where it fits, else its terms in columns, a plus sign before each but the first."""
+    whole = element_text(element, notation)
+    if display_width(whole) + len(indent) <= width or notation == "latex":
+        return [indent + whole]
+    terms = term_texts(element, notation)
+    return columns([terms[0]] + ["+ " + term for term in terms[1:]], width, indent)
+
+
+def with_measure(lines: list[str], words: str, width: int) -> list[str]:
+    """The lines of an element with degree and excess behind the last one, or below it where they do not fit."""
+    if not words:
+        return lines
+    last = lines[-1]
+    padded = last + " " * max(3, MARGIN - display_width(last)) + words
+    if len(lines) == 1 and display_width(padded) <= width:
+        return [padded]
+    return [*lines, "    " + words]
+
+
+def _statement(outcome: Outcome) -> str:
+    """The statement as written, its white space and comments reduced."""
+    start, end = outcome.span
+    lines = [line.split("#", 1)[0].rstrip().removesuffix("\\") for line in outcome.source.text[start:end].split("\n")]
+    return " ".join(" ".join(lines).split())
+
+
+def _relation(outcome: Outcome, notation: Notation, width: int) -> list[str]:
+    assert outcome.element is not None
+    if notation == "latex":
+        sign = " = " if outcome.verdict == "true" else r" \neq "
+        sides = [element_text(side, notation) for side in outcome.sides]
+        if outcome.links:
+            signs = [" = " if link.verdict == "true" else r" \neq " for link in outcome.links]
+            return [sides[0] + "".join(s + side for s, side in zip(signs, sides[1:])) + f" % {outcome.verdict}"]
+        return [sides[0] + sign + sides[1] + f" % {outcome.verdict}"]
+    head = outcome.verdict.ljust(8)
+    first = head + _statement(outcome)
+    if outcome.verdict == "true":
+        return with_measure([first], measure(outcome.degree, None), width) if outcome.degree is not None else [first]
+    lines = [first]
+    indent = " " * 8
+    if outcome.message:
+        lines.append(indent + outcome.message)
+    pairs = list(zip(outcome.links, outcome.sides, outcome.sides[1:])) if outcome.links else []
+    for number, (link, left, right) in enumerate(pairs, 1):
+        if link.verdict != "true":
+            lines += _apart(left, right, link.difference, f"link {number}, ", notation, width)
+    if not pairs:
+        lines += _apart(outcome.sides[0], outcome.sides[1], outcome.element, "", notation, width)
+    return lines
+
+
+def _apart(left: Element, right: Element, difference: Element, which: str, notation: Notation, width: int) -> list[str]:
+    lines = []
+    for words, element in (("left", left), ("right", right), (MINUS[notation], difference)):
+        if words == "right" and len(element.terms) == 0:
+            continue
+        if words == MINUS[notation] and not right.terms:
+            continue
+        lines += _labelled(f"{which}{words}: ", sum_lines(element, notation, width - 24))
+    return lines
+
+
+def _labelled(label: str, lines: list[str]) -> list[str]:
+    pad = " " * 8
+    return [pad + label + lines[0], *[pad + " " * len(label) + line for line in lines[1:]]]
+
+
+def _listing(outcome: Outcome, notation: Notation, width: int) -> list[str]:
+    items = outcome.items or ()
+    if outcome.degree is None:
+        return columns([f"{n}: {dimension}" for n, dimension in enumerate(items)], width)
+    head = f"dimension {len(items)} in degree {outcome.degree}"
+    if not items:
+        return [head]
+    names = [monomial_text(monomial, outcome.prime, notation) for monomial in outcome.basis]
+    return [head, *columns(names, width, "    ")]
+
+
+def show(outcome: Outcome, notation: Notation = "text", width: int = 80) -> str:
+    """What the statement prints, without a final line end; empty for declarations and errors."""
+    if outcome.verdict == "error" or outcome.kind == "declaration":
+        return ""
+    if outcome.kind == "listing":
+        return "\n".join(_listing(outcome, notation, width))
+    lines: list[str] = []
+    if outcome.kind == "derivation":
+        from opslang.render.derivation import align
+        from opslang.render.derivation import lines as steps
+
+        for derivation in outcome.derivations:
+            lines += [align(derivation)] if notation == "latex" else list(steps(derivation, notation, width))
+    if outcome.sides:
+        lines += _relation(outcome, notation, width)
+    elif outcome.element is not None and outcome.kind == "element":
+        words = measure(outcome.degree, outcome.excess) if notation != "latex" else ""
+        lines += with_measure(sum_lines(outcome.element, notation, width), words, width)
+    return "\n".join(lines)
+

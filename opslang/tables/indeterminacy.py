@@ -1,0 +1,105 @@
+"""Whether a class lies in the images of lower Bocksteins, in the ring of the classes it is made from.  Linear algebra mod p."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from opslang.ir.order import monomial_degree
+from opslang.ir.tree import Class, ClassElement, Monomial
+from opslang.tables.bockstein import Undefined, higher
+from opslang.tables.engine import Engine
+from opslang.tables.generators import basis
+
+_MOST_ORDER = 8
+
+
+def within(engine: Engine, element: ClassElement, classes: tuple[Class, ...], top: int) -> bool | None:
+    """Whether a homogeneous element lies in the span of the images of the Bocksteins below the orders met.
+
+    True where it does; False where it is not even in what the first Bockstein and all visible higher ones span and only
+    the first can occur; None where that is not settled.  Raises TooLarge.
+    """
+    p = engine.prime
+    degrees = {monomial_degree(monomial, p) for monomial, _ in element.terms}
+    if len(degrees) != 1:
+        return None
+    degree = degrees.pop()
+    ring: Any = engine.ring(max(top, degree))
+    below = [encode(engine, ring, monomial) for monomial in basis(p, classes, degree - 1, engine.budget)]
+    target = encode_element(engine, ring, element)
+    rows = [ring.letter(1 if p == 2 else 0, f) for f in below]
+    span = Span(p)
+    for row in rows:
+        span.put(_vector(row, p))
+    if span.holds(_vector(target, p)):
+        return True
+    if engine.modulo_order <= 2:
+        return False
+    for order in range(2, min(engine.modulo_order, _MOST_ORDER)):
+        for f in below:
+            try:
+                value, _ = higher(ring, order, f)
+            except Undefined:
+                continue
+            span.put(_vector(value, p))
+    return True if span.holds(_vector(target, p)) else None
+
+
+def encode(engine: Engine, ring: Any, monomial: Monomial) -> Any:
+    """A canonical monomial as an element of the ring."""
+    value = ring.unit()
+    for generator, exponent in monomial:
+        word = generator.word
+        bockstein = -word[-1] if word and word[-1] < 0 else 0
+        f = ring.generator(generator.of, bockstein)
+        for token in reversed(word[:-1] if bockstein else word):
+            f = ring.letter(token, f)
+        value = ring.multiply(value, ring.power(f, exponent))
+    return value
+
+
+def encode_element(engine: Engine, ring: Any, element: ClassElement) -> Any:
+    """A canonical element as an element of the ring."""
+    result = ring.zero()
+    for monomial, c in element.terms:
+        ring.add(result, encode(engine, ring, monomial), c)
+    return result
+
+
+def _vector(f: Any, p: int) -> dict[int, int]:
+    return {x: 1 for x in f} if p == 2 else dict(f)
+
+
+class Span:
+    """A subspace over F_p, kept in echelon form."""
+
+    def __init__(self, prime: int) -> None:
+        self.prime = prime
+        self._rows: dict[int, dict[int, int]] = {}
+
+    def _reduce(self, vector: dict[int, int]) -> dict[int, int]:
+        p = self.prime
+        while True:
+            pivot = next((x for x in vector if x in self._rows), None)
+            if pivot is None:
+                return vector
+            c = vector[pivot]
+            for x, e in self._rows[pivot].items():
+                value = (vector.get(x, 0) - c * e) % p
+                if value:
+                    vector[x] = value
+                else:
+                    vector.pop(x, None)
+
+    def put(self, vector: dict[int, int]) -> None:
+        """Add a vector to the span."""
+        vector = self._reduce(dict(vector))
+        if not vector:
+            return
+        pivot, c = next(iter(vector.items()))
+        inverse = pow(c, -1, self.prime)
+        self._rows[pivot] = {x: e * inverse % self.prime for x, e in vector.items()}
+
+    def holds(self, vector: dict[int, int]) -> bool:
+        """Whether the vector lies in the span."""
+        return not self._reduce(dict(vector))
