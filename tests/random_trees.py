@@ -33,15 +33,36 @@ def random_class(rng: Random, p: int, name: str, biggest: int = 4) -> ir.Class:
     return ir.Class(name, rng.randint(1, biggest), 0, rng.randint(1, biggest), order)
 
 
-def random_operation(rng: Random, p: int, room: int) -> ir.Op | None:
-    """An operation that raises degrees by at most the room; None where nothing fits."""
+def surviving_word(rng: Random, p: int, on: int, room: int) -> Word:
+    """A word on a class of degree `on` in which no letter vanishes for want of degree."""
+    word: Word = ()
+    for _ in range(rng.choice((1, 1, 2, 2, 3))):
+        step = 1 if p == 2 else 2 * (p - 1)
+        most = min(on if p == 2 else on // 2, room // step)
+        if p > 2 and room and (most < 1 or rng.random() < 0.3) and 0 not in word[:1]:
+            token, shift = 0, 1
+        elif most >= 1:
+            least = p * max(word[:2], default=0) if rng.random() < 0.6 else 1
+            token = rng.randint(min(max(1, least), most), most)
+            shift = step * token
+        else:
+            break
+        word, on, room = (token, *word), on + shift, room - shift
+    return word
+
+
+def random_operation(rng: Random, p: int, on: int, room: int) -> ir.Op | None:
+    """An operation for a class of degree `on` that adds at most the room; None where nothing fits."""
     for _ in range(20):
-        word = random_word(rng, p, 3, max(1, room // (1 if p == 2 else 2 * (p - 1))))
+        if rng.random() < 0.9:
+            word = surviving_word(rng, p, on, room)
+        else:
+            word = random_word(rng, p, 3, max(1, room // (1 if p == 2 else 2 * (p - 1))))
         d = degree(word, p)
         if not 0 < d <= room:
             continue
         plain = ir.Composite(word, d)
-        kind = rng.randrange(6)
+        kind = rng.randrange(12)
         if kind == 0:
             return ir.Chi(plain, d)
         if kind == 1:
@@ -56,7 +77,7 @@ def random_operation(rng: Random, p: int, room: int) -> ir.Op | None:
         if kind == 3 and len(word) > 1:
             parts = tuple(ir.Composite(w, degree(w, p)) for w in (word[:1], word[1:]))
             return ir.Compose(parts, d)
-        if kind == 4 and 2 * d <= room:
+        if kind == 4 and 2 * d <= room and 0 not in word:
             return ir.OpPower(plain, 2, 2 * d)
         return plain
     return None
@@ -64,10 +85,10 @@ def random_operation(rng: Random, p: int, room: int) -> ir.Op | None:
 
 def random_tree(rng: Random, p: int, classes: tuple[ir.Class, ...], room: int, depth: int = 3) -> ir.Cls:
     """A homogeneous class of degree at most the room (a bare class may be bigger), made of the given classes."""
-    kind = rng.randrange(8) if depth else 0
+    kind = rng.choice((0, 0, 1, 1, 2, 3, 4, 4, 5, 6)) if depth else 0
     if kind in (1, 2, 3):
-        inner = random_tree(rng, p, classes, room, depth - 1)
-        op = random_operation(rng, p, room - of_degree(inner))
+        inner = random_tree(rng, p, classes, room if depth == 1 else room * 2 // 3, depth - 1)
+        op = random_operation(rng, p, of_degree(inner), room - of_degree(inner))
         if op is not None and op.degree is not None:
             d = of_degree(inner) + op.degree
             return ir.Apply(op, inner, d, d)
@@ -79,7 +100,12 @@ def random_tree(rng: Random, p: int, classes: tuple[ir.Class, ...], room: int, d
         cup = ir.Cup((left, right), d, d)
         if kind == 4:
             return cup
-        other = ir.Cup((right, left), d, d)
+        other = cup if p == 2 else ir.Cup((right, left), d, d)
+        op = random_operation(rng, p, of_degree(left), of_degree(right))
+        if op is not None and op.degree == of_degree(right):
+            other = ir.Apply(op, left, d, d)
+        elif p == 2 and of_degree(left) == of_degree(right):
+            other = ir.ClassPower(left, 2, d, d)
         return ir.ClassSum(((rng.randint(1, 6), cup), (rng.randint(1, 6), other)), d, d)
     if kind == 6:
         inner = random_tree(rng, p, classes, room // p, depth - 1)
