@@ -7,7 +7,9 @@ from __future__ import annotations
 
 from opslang.report.code import Code
 from opslang.report.codes_front import FRONT_CODES
+from opslang.report.codes_meaning import MEANING_CODES
+from opslang.report.codes_syntax import SYNTAX_CODES
 
-CODES: dict[str, Code] = {**FRONT_CODES}
+CODES: dict[str, Code] = {**SYNTAX_CODES, **MEANING_CODES, **FRONT_CODES}
 
 __all__ = ["CODES", "Code"]

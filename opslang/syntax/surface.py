@@ -27,7 +27,8 @@ class IndexExpression:
     """An integer expression that holds a variable (closed ones are folded to `int` by the parser).
 
     kind: "name" (parts: the name), "number" (parts: the int), "sum", "difference", "product",
-    "power", "negative", "binom" (parts: index expressions or ints), "length" (|x|, parts: the name).
+    "power", "negative", "binom" (parts: index expressions or ints), "length" (|x|, parts: the `Name` or `Fundamental`).
+    A sum has two parts or more, a subtracted one being a "negative" or an int below 0; a - b alone is a "difference".
     """
 
     kind: str
@@ -181,7 +182,7 @@ class EilenbergMacLane:
 @frozen
 class NamedSpace:
     """Any other space word, `X`, `BO(3)`, `RP^5(a)`, `thom(BO(3))`: name, the power after `^`, and what stands
-    in its brackets (numbers, names of classes, spaces)."""
+    in its brackets: `Number`s, `Name`s (a lone letter: of a class, or of a space), spaces."""
 
     name: str
     power: Index | None = None

@@ -1,0 +1,122 @@
+"""The rules of groups and spaces, as methods of the builder."""
+
+from __future__ import annotations
+
+import re
+from typing import Any
+
+from attrs import evolve
+from lark.visitors import Transformer_NonRecursive
+
+from opslang.ground.source import Span
+from opslang.report.diagnostic import Refusal, error
+from opslang.syntax import surface as s
+from opslang.syntax.indices import power_of
+from opslang.syntax.parts import Arguments, Copies, Part, Word, nodes_of, single, span_of
+from opslang.syntax.spellings import GREEK_NAMES
+
+
+class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
+    """`space`, `coefficients` and what they are made of."""
+
+    def space_product(self, children: list[Any]) -> s.SpaceProduct:
+        factors: list[Any] = []
+        for child in nodes_of(children):
+            factors.extend(child.factors if isinstance(child, s.SpaceProduct) else (child,))
+        return s.SpaceProduct(tuple(factors), span_of(children))
+
+    def space_group(self, children: list[Any]) -> s.Space:
+        return evolve(children[1], span=span_of(children))  # type: ignore[no-any-return]
+
+    def eilenberg_mac_lane(self, children: list[Any]) -> s.EilenbergMacLane:
+        return s.EilenbergMacLane(children[2], children[4].value, span_of(children))
+
+    def named_space(self, children: list[Any]) -> s.NamedSpace | Word:
+        word, *rest = children
+        if not rest:
+            return s.NamedSpace(word.value, None, (), word.span)
+        power: s.Index | None = None
+        arguments: tuple[object, ...] = ()
+        for child in rest:
+            if isinstance(child, Arguments):
+                arguments = child.value
+            else:
+                power = child.value
+        return s.NamedSpace(word.value, power, arguments, span_of(children))
+
+    def space_word(self, children: list[Any]) -> Word:
+        index, primes = None, 0
+        for child in children[1:]:
+            if isinstance(child, Part):
+                if index is not None:
+                    raise Refusal(error("misplaced-script", "this name has an index already", child.span))
+                index = child.value
+            elif child.type == "PRIME":
+                primes += len(child.value)
+        return Word(children[0].value, index, primes, span_of(children))
+
+    k_word = space_word
+
+    def space_name(self, children: list[Any]) -> Word:
+        return children[0]  # type: ignore[no-any-return]
+
+    def space_power(self, children: list[Any]) -> Part:
+        return Part(single(children[1]), span_of(children))
+
+    def space_arguments(self, children: list[Any]) -> Arguments:
+        return Arguments(tuple(_argument(child) for child in nodes_of(children)), span_of(children))
+
+    def space_number(self, children: list[Any]) -> s.Number:
+        return s.Number(int(children[0].value), span_of(children))
+
+    def coefficients(self, children: list[Any]) -> s.Coefficients:
+        summands: list[s.Summand] = []
+        for child in nodes_of(children):
+            summands.extend(child.value if isinstance(child, Part) else (child,))
+        return s.Coefficients(tuple(summands), span_of(children))
+
+    def summand(self, children: list[Any]) -> s.Summand:
+        order, copies = 0, 1
+        for child in nodes_of(children):
+            if isinstance(child, Copies):
+                copies = child.value
+            else:
+                value = single(child) if isinstance(child.value, tuple) else child.value
+                order = _closed(value, child.span, "the order of a group")
+        return s.Summand(order, copies, children[0].type == "LETTER_F", span_of(children))
+
+    def summand_group(self, children: list[Any]) -> Part:
+        copies = children[3].value if len(children) > 3 else 1
+        inner = children[1].summands
+        return Part(tuple(evolve(one, copies=one.copies * copies) for one in inner), span_of(children))
+
+    def copies(self, children: list[Any]) -> Copies:
+        count = _closed(single(children[1]), children[1].span, "the number of copies")
+        return Copies(count, span_of(children))
+
+    def order(self, children: list[Any]) -> Part:
+        base = children[0]
+        if isinstance(base.value, str):
+            base = Part(s.IndexExpression("name", (base.value,), base.span), base.span)
+        if len(children) == 1:
+            return base  # type: ignore[no-any-return]
+        return power_of(base, Part(single(children[2]), children[2].span), span_of(children))
+
+
+def _closed(value: s.Index, span: Span, what: str) -> int:
+    if not isinstance(value, int) or value < 0:
+        raise Refusal(error("group-number", f"{what} must be a number, 0 or more", span))
+    return value
+
+
+_CLASS = re.compile(r"([A-Za-z]+)(?:_([0-9]+))?('*)\Z")
+
+
+def _argument(space: Any) -> object:
+    """What stands in the brackets of a space: a lone letter is a `Name` (of a class, or of a space)."""
+    if not isinstance(space, s.NamedSpace) or space.power is not None or space.arguments:
+        return space
+    found = _CLASS.match(space.name)
+    if found is None or not (len(found[1]) == 1 or found[1] in GREEK_NAMES):
+        return space
+    return s.Name(found[1], int(found[2]) if found[2] else None, len(found[3]), space.span)

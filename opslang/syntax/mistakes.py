@@ -1,0 +1,256 @@
+"""The usual slips, found before the grammar is asked, each with its likely mend.
+
+Knows tokens and how people misspell them.  What it does not find is left to `expected.py`.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from itertools import islice
+
+from opslang.report.diagnostic import Diagnostic, error
+from opslang.syntax.spelling import MANY, Reading, Token
+from opslang.syntax.spellings import GREEK_NAMES, KEYWORDS, RESERVED, STATEMENT_WORDS
+
+_TAKEN = frozenset(kind for kind, _ in RESERVED.values())
+_LETTERS = frozenset(("NAME", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X"))
+_SPATIAL = frozenset(("PRIME_WORD", "SPACE_WORD", "ON", "BASIS", "SERIES"))
+_PROJECTIVE = frozenset(("RP", "CP", "HP"))
+_SPELLED = sorted(GREEK_NAMES | RESERVED.keys(), key=len, reverse=True)
+
+
+def mistakes(reading: Reading) -> list[Diagnostic]:
+    """The slips of one statement, from left to right, a handful at most."""
+    tokens = reading.tokens
+    first = _first_word(reading)
+    if first is not None:
+        return [first]
+    indices = index_positions(tokens)
+    spaces = _spaces_from(tokens)
+    found = (
+        slip
+        for at, token in enumerate(tokens)
+        if (check := (_AMONG_SPACES if at >= spaces else _CHECKS).get(token.kind)) is not None
+        and (not indices[at] or token.kind == "RUN")
+        and (slip := check(reading, at)) is not None
+    )
+    return list(islice(found, MANY))
+
+
+def _spaces_from(tokens: list[Token]) -> int:
+    """The place from which on names are names of spaces."""
+    if tokens[0].kind in _SPATIAL:
+        return 0
+    if tokens[0].kind == "LET":
+        return next((at for at, token in enumerate(tokens) if token.kind == "IN"), len(tokens))
+    return len(tokens)
+
+
+def index_positions(tokens: list[Token]) -> list[bool]:
+    """For every token whether it stands in an index position."""
+    marks: list[bool] = []
+    depth = 0
+    opened: list[bool] = []
+    previous = ""
+    for token in tokens:
+        raised = previous in ("CARET", "UNDER", "BINOM") or (previous == "MINUS" and marks[-1] and not depth)
+        marks.append(raised or depth > 0)
+        if token.kind in ("LBRACE", "LPAR", "LSQUARE"):
+            opened.append(marks[-1] or token.kind == "LBRACE")
+            depth += opened[-1]
+        elif token.kind in ("RBRACE", "RPAR", "RSQUARE") and opened:
+            depth -= opened.pop()
+        previous = token.kind
+    return marks
+
+
+def split_run(word: str) -> str:
+    """A run of letters taken apart: spelled names where they fit, the longest first, else letters."""
+    pieces = []
+    while word:
+        piece = next((name for name in _SPELLED if word.startswith(name)), word[0])
+        pieces.append(piece)
+        word = word[len(piece) :]
+    return " ".join(pieces)
+
+
+def nearly(word: str, name: str) -> bool:
+    """Whether a word is a name with one slip of the finger: a letter more, less, other, or two exchanged; or in capitals."""
+    if word.lower() == name.lower():
+        return True
+    if abs(len(word) - len(name)) > 1 or len(name) < 3:
+        return sorted(word) == sorted(name)
+    at = next((i for i, (a, b) in enumerate(zip(word, name)) if a != b), min(len(word), len(name)))
+    rest, other = word[at:], name[at:]
+    return rest[1:] == other[1:] or rest[1:] == other or rest == other[1:] or _exchanged(rest, other)
+
+
+def _exchanged(rest: str, other: str) -> bool:
+    return rest[:2] == other[:2][::-1] and rest[2:] == other[2:]
+
+
+def _first_word(reading: Reading) -> Diagnostic | None:
+    """A misspelt keyword, or `in` with no `let` before it."""
+    first, *others = reading.tokens
+    if first.kind == "RUN":
+        for keyword in sorted(STATEMENT_WORDS):
+            if nearly(first.value, keyword) and not (others and others[0].kind in ("EQUALS", "PLUS", "CARET", "UNDER")):
+                help = f"write `{keyword}`" if keyword in KEYWORDS else f"`{keyword}` belongs to the language"
+                message = f"no statement begins with `{first.value}`"
+                return error("unknown-statement", message, (first.start, first.end), help, keyword)
+    if first.kind in _LETTERS | {"RUN"} and any(token.kind == "IN" for token in islice(others, 40)):
+        mend = "let " + reading.text[first.start : first.end]
+        message = "a class is declared by a statement that begins with `let`"
+        return error("unknown-statement", message, (first.start, first.end), f"write {mend} …", mend)
+    return None
+
+
+# --- among operations and classes ----------------------------------------------------------------
+
+
+def _next(reading: Reading, at: int) -> Token | None:
+    return reading.tokens[at + 1] if at + 1 < len(reading.tokens) else None
+
+
+def _written(reading: Reading, token: Token) -> str:
+    return reading.text[token.start : token.end]
+
+
+def _braced(reading: Reading, number: str) -> str:
+    return f"{{{number}}}" if reading.tex and len(number) > 1 else number
+
+
+def _index_place(reading: Reading, token: Token, other: Token, sign: str, end: int, index: str) -> Diagnostic:
+    mend = f"{_written(reading, token)}{sign}{_braced(reading, index)}"
+    message = f"the index of {token.value} stands {'above, behind ^' if sign == '^' else 'below, behind _'}"
+    return error("index-place", message, (token.start, end), f"write {mend}", mend)
+
+
+def _run(reading: Reading, at: int) -> Diagnostic | None:
+    token = reading.tokens[at]
+    split = split_run(token.value)
+    for name in (*RESERVED, *GREEK_NAMES):
+        if len(name) > 1 and token.value.lower() == name.lower():
+            split = name
+    message = f"{token.value} is no name: names are single letters and spelled Greek letters"
+    return error("run-of-letters", message, (token.start, token.end), f"write {split}", split)
+
+
+def _square(reading: Reading, at: int) -> Diagnostic | None:
+    """`Sq 4`, `Sq4` and `Sq_4`; `P` likewise."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if other is None:
+        return None
+    if other.kind == "NUMBER":
+        return _index_place(reading, token, other, "^", other.end, other.value)
+    if other.kind == "UNDER":
+        message = f"the index of {token.value} stands above, behind ^"
+        span = (token.start, max(other.end, token.end))
+        mend = f"{_written(reading, token)}^" if other.end > other.start else None
+        return error("index-place", message, span, f"write {token.value}^4", mend)
+    return None
+
+
+def _below(reading: Reading, at: int) -> Diagnostic | None:
+    """`iota3`, `iota 3`, `iota^3`; `Q` likewise."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if other is None:
+        return None
+    if other.kind == "NUMBER":
+        return _index_place(reading, token, other, "_", other.end, other.value)
+    third = reading.tokens[at + 2] if at + 2 < len(reading.tokens) else None
+    follows = reading.tokens[at + 3].kind if at + 3 < len(reading.tokens) else ""
+    if other.kind == "CARET" and third is not None and third.kind == "NUMBER" and follows != "UNDER":
+        return _index_place(reading, token, third, "_", third.end, third.value)
+    return None
+
+
+def _against(reading: Reading, at: int) -> Diagnostic | None:
+    """`x2`, `beta2`: a number against a name."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if reading.tex or other is None or other.kind != "NUMBER" or other.start != token.end:
+        return None
+    return _index_place(reading, token, other, "_", other.end, other.value)
+
+
+def _chi(reading: Reading, at: int) -> Diagnostic | None:
+    """`chi Sq^4`."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if other is not None and other.kind in ("LPAR", "LSQUARE"):
+        return None
+    span, mend = (token.start, token.end), None
+    end = _symbol_end(reading, at + 1)
+    if end is not None and other is not None:
+        span, mend = (token.start, end), f"{_written(reading, token)}({reading.text[other.start : end]})"
+    help = f"write {mend}" if mend else "write chi(…)"
+    return error("chi-brackets", "chi takes its operation in brackets", span, help, mend)
+
+
+def _symbol_end(reading: Reading, at: int) -> int | None:
+    """Where the symbol at a token ends, its scripts with it; None where no operation stands there."""
+    tokens = reading.tokens
+    if at >= len(tokens) or tokens[at].kind not in ("SQ", "PP", "BETA", "QQ", "NAME", "LETTER_X"):
+        return None
+    marks = index_positions(tokens[at : at + 200])
+    end = at + 1
+    while end < len(tokens) and end - at < len(marks) and (marks[end - at] or tokens[end].kind in ("CARET", "UNDER", "RBRACE")):
+        end += 1
+    return tokens[end - 1].end
+
+
+def _doubled(reading: Reading, at: int) -> Diagnostic | None:
+    """`==` and `**`."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if other is None or other.kind != token.kind or other.start != token.end:
+        return None
+    mend = "=" if token.kind == "EQUALS" else "^"
+    meaning = "an equation has one =" if mend == "=" else "a power is written with ^"
+    return error("expected", meaning, (token.start, other.end), f"write {mend}", mend)
+
+
+def _let(reading: Reading, at: int) -> Diagnostic | None:
+    """A name that is taken, in a `let`."""
+    for token in islice(reading.tokens, 1, None):
+        if token.kind in ("IN", "EQUALS"):
+            return None
+        if token.kind in _TAKEN:
+            message = f"{token.value} is taken: it names an operation or a fundamental class"
+            return error("name-taken", message, (token.start, token.end), "choose another letter")
+        if token.kind not in _LETTERS | {"COMMA"}:
+            continue
+    return None
+
+
+# --- among spaces --------------------------------------------------------------------------------
+
+
+def _space_number(reading: Reading, at: int) -> Diagnostic | None:
+    """`BO3`, `RP5`, `X1`: a number against the name of a space."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if other is None or other.kind != "NUMBER" or other.start != token.end:
+        return None
+    written = _written(reading, token)
+    if token.value in _PROJECTIVE:
+        mend = f"{written}^{_braced(reading, other.value)}"
+    elif token.kind == "RUN":
+        mend = f"{written}({other.value})"
+    else:
+        mend = f"{written}_{_braced(reading, other.value)}"
+    return error("index-place", f"a number stands against {token.value}", (token.start, other.end), f"write {mend}", mend)
+
+
+_Check = Callable[[Reading, int], "Diagnostic | None"]
+_CHECKS: dict[str, _Check] = {
+    "RUN": _run,
+    "SQ": _square,
+    "PP": _square,
+    "QQ": _below,
+    "IOTA": _below,
+    "BETA": _against,
+    "CHI": _chi,
+    "EQUALS": _doubled,
+    "STAR": _doubled,
+    "LET": _let,
+    **{kind: _against for kind in _LETTERS},
+}
+_AMONG_SPACES: dict[str, _Check] = {"RUN": _space_number, **{kind: _space_number for kind in _LETTERS - {"LETTER_X"}}}

@@ -1,0 +1,376 @@
+"""Reads the spelling: text in, tokens with their places out, the same for ASCII, Unicode and TeX.
+
+Knows words, scripts, brackets and TeX layout.  Knows no grammar: what may follow what is settled by
+`grammar/opslang.lark`, and the few mistakes of spelling that have a likely mend by `mistakes.py`.
+Never raises: what cannot be read becomes a diagnostic at its place.
+"""
+
+from __future__ import annotations
+
+import re
+import unicodedata
+from typing import NamedTuple
+
+from opslang.report.diagnostic import Diagnostic, error, warning
+from opslang.syntax.spellings import (
+    COMMANDS,
+    FONTS,
+    KEYWORDS,
+    LATER,
+    LATER_INSIDE,
+    LAYOUT,
+    PRIMES,
+    SUBSCRIPTS,
+    SUPERSCRIPTS,
+    SYMBOLS,
+    WORDS,
+    Meaning,
+    is_tex,
+    letter_meaning,
+)
+
+NESTING_LIMIT = 250
+"""How many brackets may be open at one place."""
+
+DIGIT_LIMIT = 4000
+"""How many digits a number may have."""
+
+MANY = 5
+"""After so many faults of spelling in one statement the rest of it is not read."""
+
+
+class Token(NamedTuple):
+    """A token with the stretch of text it was read from; parts of a Unicode script may have no width."""
+
+    kind: str
+    value: str
+    start: int
+    end: int
+
+
+_FONT = "|".join(re.escape(font) for font in FONTS)
+_SHAPES = rf"""
+      (?P<space>[ \t\r\n\u00a0\u2000-\u200b\u2028\u2029\u202f\u205f\u3000\ufeff]+)
+    | (?P<comment>\#[^\n]*)
+    | (?P<dangling>\\[ \t\r\n]*\Z)
+    | (?P<joint>\\[ \t]*\r?\n)
+    | (?P<number>[0-9]+)
+    | (?P<word>[A-Za-z]+)
+    | (?P<pull>\^\s*(?: \* | ∗ | \\ast(?![A-Za-z]) | \{{\s*(?: \* | ∗ | \\ast )\s*\}} ))
+    | (?P<raised_prime>\^\s*(?: \\prime(?![A-Za-z]) | \{{\s*(?: (?: \\prime(?![A-Za-z]) | ['′″‴’] )\s* )+ \}} ))
+    | (?P<raised>[{"".join(SUPERSCRIPTS)}]+)
+    | (?P<lowered>[{"".join(SUBSCRIPTS)}]+)
+    | (?P<primes>[{"".join(PRIMES)}]+)
+    | (?P<face>\\(?:{_FONT})(?![A-Za-z])\s*(?: \{{\s*(?P<faced>[A-Za-z]+)\s*\}} | (?P<single>[A-Za-z])(?![A-Za-z]) ))
+    | (?P<aside>\\(?:label|tag\*?|hspace\*?|vspace\*?|phantom|hphantom)\s*\{{[^{{}}]*\}} | \\(?:left|right)\s*\.)
+    | (?P<command>\\[A-Za-z]+)
+    | (?P<escape>\\.)
+    | (?P<dots>\.\.+)
+    | (?P<sign>.)
+    """
+_FLAGS = re.VERBOSE | re.DOTALL
+_PLAIN_TOKEN = re.compile(_SHAPES, _FLAGS)
+_TEX_TOKEN = re.compile(_SHAPES.replace(r"(?P<comment>\#", r"(?P<comment>[\#%]"), _FLAGS)
+_SKIPPED = frozenset(("space", "comment", "joint"))
+_PIECES = re.compile(r"Sq|[A-Za-z]")
+_CLOSERS = {"RPAR": "LPAR", "RSQUARE": "LSQUARE", "RBRACE": "LBRACE"}
+_OPENERS = frozenset(_CLOSERS.values())
+_SPATIAL = frozenset(("SPACE_WORD", "ON", "BASIS", "SERIES"))
+_LETTERS = frozenset(("NAME", "RUN", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X", "PP", "QQ"))
+_NEUTRAL_ESCAPES = frozenset(",;:!> \t\\[]()/")
+
+
+class Reading:
+    """The tokens of one statement, what was wrong with its spelling, and whether it is in TeX spelling."""
+
+    def __init__(self, text: str) -> None:
+        self.text = text
+        self.tex = is_tex(text)
+        self.tokens: list[Token] = []
+        self.errors: list[Diagnostic] = []
+        self.warnings: list[Diagnostic] = []
+        self.stop = False
+        self._keyword = ""
+        self._spatial = False
+        self._open: list[tuple[str, str, Token]] = []  # kind, role ("script", "binom", "" or "layout"), token
+        self._closed = ""
+        self._pattern = _TEX_TOKEN if self.tex else _PLAIN_TOKEN
+        for found in self._pattern.finditer(text):
+            group = found.lastgroup or ""
+            if group in _SKIPPED:
+                continue
+            _READERS[group](self, found.group(), *found.span())
+            if self.stop:
+                return
+        self._finish()
+
+    # --- putting tokens down ---------------------------------------------------------------------
+
+    def _put(self, meaning: Meaning, start: int, end: int) -> None:
+        kind, value = meaning
+        self._closed = ""
+        self.tokens.append(Token(kind, value, start, end))
+        if kind == "IN" and self._keyword == "LET":
+            self._spatial = True
+
+    def _previous(self) -> str:
+        return self.tokens[-1].kind if self.tokens else ""
+
+    def _fault(self, name: str, message: str, start: int, end: int, help: str = "", mend: str | None = None) -> None:
+        self.errors.append(error(name, message, (start, end), help, mend))
+        self.stop = self.stop or len(self.errors) >= MANY
+
+    def _later(self, what: str, start: int, end: int) -> None:
+        self.errors = [error("not-yet-supported", f"{what} is not yet supported", (start, end), _LATER_HELP)]
+        self.stop = True
+
+    # --- numbers and words -----------------------------------------------------------------------
+
+    def number(self, text: str, start: int, end: int) -> None:
+        if len(text) > DIGIT_LIMIT:
+            self._fault("number-too-large", f"a number has {len(text):,} digits; the limit is {DIGIT_LIMIT:,}", start, end)
+            return
+        if self.tex and len(text) > 1 and self._previous() in ("CARET", "UNDER"):
+            moved, sign = ("raised", "^") if self._previous() == "CARET" else ("lowered", "_")
+            self.warnings.append(
+                warning(
+                    "tex-script",
+                    f"in TeX spelling only the {text[0]} of {sign}{text} is {moved}: it is followed by {text[1:]}",
+                    (start, end),
+                    f"write {sign}{{{text}}}",
+                    f"{{{text}}}",
+                )
+            )
+            self._put(("NUMBER", text[0]), start, start + 1)
+            text, start = text[1:], start + 1
+        self._put(("NUMBER", text), start, end)
+
+    def word(self, text: str, start: int, end: int) -> None:
+        if not self.tokens and text in KEYWORDS:
+            self._keyword = KEYWORDS[text]
+            self._spatial = self._keyword in _SPATIAL
+            self._put((self._keyword, text), start, end)
+        elif (not self.tokens and text in LATER) or text in LATER_INSIDE:
+            self._later(LATER_INSIDE.get(text) or LATER[text], start, end)
+        elif text == "in" and (not self.tex or self._keyword == "LET"):
+            self._put(("IN", "in"), start, end)
+        elif text == "to" and self._keyword == "SERIES":
+            self._put(("TO", "to"), start, end)
+        elif self._spatial:
+            self._spatial_word(text, start, end)
+        elif text in WORDS:
+            self._put(WORDS[text], start, end)
+        elif self.tex:
+            for piece in _PIECES.finditer(text):
+                self._put(letter_meaning(piece.group()), start + piece.start(), start + piece.end())
+        else:
+            self._put(self._run(text), start, end)
+
+    def _run(self, text: str) -> Meaning:
+        return letter_meaning(text) if len(text) == 1 else ("RUN", text)
+
+    def _spatial_word(self, text: str, start: int, end: int) -> None:
+        """A word among spaces: runs are names of spaces; an x against a closing bracket or a number is the product."""
+        last = self.tokens[-1]
+        if len(text) > 1 and text[0] == "x" and last.kind in ("RPAR", "NUMBER", "RBRACE") and text not in WORDS:
+            self._put(letter_meaning("x"), start, start + 1)
+            text, start = text[1:], start + 1
+        elif last.kind in _LETTERS and last.end == start:  # faces in turn: \mathbb{R}P, B\mathrm{SO}
+            self.tokens.pop()
+            text, start = last.value + text, last.start
+        self._put(WORDS.get(text) or self._run(text), start, end)
+
+    def face(self, text: str, start: int, end: int) -> None:
+        found = self._pattern.match(self.text, start)
+        content = (found and (found.group("faced") or found.group("single"))) or ""
+        if self._spatial or content in WORDS or content in LATER_INSIDE or content == "in":
+            self.word(content, start, end)
+        else:
+            self._put(self._run(content), start, end)
+
+    def command(self, text: str, start: int, end: int) -> None:
+        name = text[1:]
+        if name in LAYOUT:
+            return
+        if name == "prime":
+            self._put(("PRIME", "'"), start, end)
+        elif name in COMMANDS:
+            self._sign(COMMANDS[name], start, end)
+        elif self._spatial and name[0].isupper():
+            self._spatial_word(name, start, end)
+        else:
+            self._fault(
+                "unknown-command",
+                f"the TeX command {text} is not known",
+                start,
+                end,
+                "a class is a letter or a Greek letter, with an index and primes",
+            )
+
+    # --- scripts ---------------------------------------------------------------------------------
+
+    def raised(self, text: str, start: int, end: int) -> None:
+        self._script("CARET", "^", SUPERSCRIPTS, text, start)
+
+    def lowered(self, text: str, start: int, end: int) -> None:
+        self._script("UNDER", "_", SUBSCRIPTS, text, start)
+
+    def _script(self, kind: str, sign: str, table: dict[str, str], text: str, start: int) -> None:
+        """A run of Unicode scripts: what it would be inside braces, every token at its own place."""
+        plain = "".join(table[char] for char in text)
+        self._put((kind, sign), start, start)
+        if plain.isdigit():
+            self._put(("NUMBER", plain), start, start + len(text))
+            return
+        self._put(("LBRACE", "{"), start, start)
+        for piece in re.finditer(r"[0-9]+|.", plain):
+            char = piece.group()
+            meaning = ("NUMBER", char) if char.isdigit() else SYMBOLS.get(char) or letter_meaning(char)
+            self._put(meaning, start + piece.start(), start + piece.end())
+        self._put(("RBRACE", "}"), start + len(text), start + len(text))
+
+    def pull(self, text: str, start: int, end: int) -> None:
+        self._put(("PULL", "^*"), start, end)
+
+    def primes(self, text: str, start: int, end: int) -> None:
+        self._put(("PRIME", "'" * sum(PRIMES[char] for char in text)), start, end)
+
+    def raised_prime(self, text: str, start: int, end: int) -> None:
+        count = text.count("\\prime") + sum(PRIMES.get(char, 0) for char in text)
+        self._put(("PRIME", "'" * count), start, end)
+
+    # --- signs and brackets ----------------------------------------------------------------------
+
+    def escape(self, text: str, start: int, end: int) -> None:
+        if text[1] in _NEUTRAL_ESCAPES or text[1].isspace():
+            return
+        if text[1] == "|":
+            self._sign(("BAR", "|"), start, end)
+            return
+        self._fault("unknown-command", f"the TeX command {_shown(text)} has no meaning here", start, end)
+
+    def aside(self, text: str, start: int, end: int) -> None:
+        """Labels, tags, invisible delimiters: nothing to read."""
+
+    def dangling(self, text: str, start: int, end: int) -> None:
+        self._fault("unfinished", "the line is to go on after \\, and nothing follows", start, start + 1, "", "")
+
+    def dots(self, text: str, start: int, end: int) -> None:
+        self._sign(("DOTS", "…"), start, end)
+
+    def sign(self, text: str, start: int, end: int) -> None:
+        if text in SYMBOLS:
+            self._sign(SYMBOLS[text], start, end)
+        elif self.tex and text in "$~&":
+            return
+        else:
+            self._strange(text, start, end)
+
+    def _sign(self, meaning: Meaning, start: int, end: int) -> None:
+        kind, value = meaning
+        if kind in _OPENERS:
+            self._opened(kind, value, start, end)
+        elif kind in _CLOSERS:
+            self._closing(kind, value, start, end)
+        elif kind == "LATER":
+            self._later(LATER[value], start, end)
+        elif kind == "DOTS":
+            help = "write the terms out: what an ellipsis stands for cannot be checked"
+            self._fault("ellipsis", "an ellipsis is not read", start, end, help)
+        else:
+            self._put(meaning, start, end)
+
+    def _opened(self, kind: str, value: str, start: int, end: int) -> None:
+        if len(self._open) >= NESTING_LIMIT:
+            self._fault("too-deep", f"more than {NESTING_LIMIT} brackets are open at this place", start, end)
+            self.stop = True
+            return
+        if kind == "LSQUARE" and self._spatial:
+            self._later("a presentation of an algebra", start, end)
+            return
+        role = ""
+        if kind == "LBRACE":
+            previous = self._previous()
+            if previous in ("CARET", "UNDER"):
+                role = "script"
+            elif previous == "BINOM":
+                role = "binom"
+            elif self._closed == "binom" or not self.tex:
+                role = "script"
+            else:
+                role = "layout"
+        self._open.append((kind, role, Token(kind, value, start, end)))
+        if role != "layout":
+            self._put((kind, value), start, end)
+
+    def _closing(self, kind: str, value: str, start: int, end: int) -> None:
+        if not self._open:
+            self._fault("unopened-bracket", f"this {value} closes nothing", start, end, "", "")
+            self.stop = True
+            return
+        opener, role, token = self._open.pop()
+        if opener != _CLOSERS[kind]:
+            message = f"this {token.value} is closed by a {value}"
+            self._fault("bracket-mismatch", message, token.start, token.end, f"it needs a {_MATCH[token.value]}")
+            self.stop = True
+            return
+        if role != "layout":
+            self._put((kind, value), start, end)
+            self._closed = role
+
+    def _strange(self, text: str, start: int, end: int) -> None:
+        """A code point that has no meaning of its own: perhaps a letter or digit of another alphabet."""
+        code = ord(text)
+        if 0xDC80 <= code <= 0xDCFF:
+            self._fault("invalid-byte", f"the byte 0x{code - 0xDC00:02X} is no UTF-8", start, end, "save the file as UTF-8")
+            return
+        plain = unicodedata.normalize("NFKC", text)
+        if len(plain) == 1 and plain in SYMBOLS:
+            self._sign(SYMBOLS[plain], start, end)
+        elif len(plain) == 1 and plain.isascii() and plain.isalpha():
+            if self._spatial:
+                self._spatial_word(plain, start, end)
+            else:
+                self._put(letter_meaning(plain), start, end)
+        elif text == "%":
+            help = "a comment begins with #; % begins one in TeX spelling only"
+            self._fault("invalid-character", "% has no meaning here", start, end, help)
+        else:
+            mend = plain if plain.isascii() and plain.isdigit() else None
+            help = "names are Latin or Greek letters" if text.isalpha() else ""
+            self._fault("invalid-character", f"{_shown(text)} has no meaning here", start, end, help, mend)
+
+    # --- the end ---------------------------------------------------------------------------------
+
+    def _finish(self) -> None:
+        """What can be said only at the end: open brackets, and the full stop of a sentence around a formula."""
+        if self._open:
+            _, _, token = self._open[-1]
+            help = f"it needs a {_MATCH[token.value]} before the end of the statement"
+            self._fault("unclosed-bracket", f"this {token.value} is never closed", token.start, token.end, help)
+            self.stop = True
+            return
+        while self.tex and self._previous() in ("DOT", "COMMA"):
+            self.tokens.pop()
+        for token in self.tokens:
+            if token.kind == "DOT":
+                help = "a statement ends with its line; a final full stop falls away in TeX spelling only"
+                self._fault("invalid-character", "a full stop has no meaning here", token.start, token.end, help, "")
+
+
+_MATCH = {"(": ")", "[": "]", "{": "}"}
+_LATER_HELP = "it belongs to the language, and this version does not read it"
+_READERS = {
+    name: getattr(Reading, name)
+    for name in (
+        *("number", "word", "pull", "raised_prime", "raised", "lowered", "primes", "face", "aside", "command"),
+        *("escape", "dots", "dangling", "sign"),
+    )
+}
+
+
+def _shown(text: str) -> str:
+    """A piece of text for a message: itself where it can be printed, else its code point."""
+    if text.isprintable():
+        return text
+    return " ".join(f"U+{ord(char):04X}" for char in text)
