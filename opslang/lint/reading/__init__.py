@@ -1,0 +1,32 @@
+"""Reading a draft: text and formulas in order, macros expanded, each token with its place in the author's file.
+
+Knows TeX, Markdown and notebooks as far as finding mathematics asks; knows no mathematics.
+"""
+
+from __future__ import annotations
+
+from opslang.lint.reading.document import (
+    Directive,
+    Document,
+    Environment,
+    File,
+    Formula,
+    Notice,
+    Piece,
+    Text,
+    Token,
+    Where,
+)
+
+__all__ = [
+    "Directive",
+    "Document",
+    "Environment",
+    "File",
+    "Formula",
+    "Notice",
+    "Piece",
+    "Text",
+    "Token",
+    "Where",
+]
