@@ -16,8 +16,8 @@ SYNTAX_CODES: dict[str, Code] = {
     "unknown-statement": Code(
         title="No statement begins like this",
         explanation=(
-            "The line begins with a word that is nearly a keyword, or declares a class without `let`.  The keywords are "
-            "prime, space, on, let, why, basis and series; every other line is an expression or a relation."
+            "The line begins with a word that is nearly a keyword, or declares a class without `let`.  The keywords "
+            "are prime, space, on, let, why, basis and series; every other line is an expression or a relation."
         ),
         example="lte x in H^2",
     ),
@@ -33,8 +33,8 @@ SYNTAX_CODES: dict[str, Code] = {
     "run-of-letters": Code(
         title="Several letters that are no name",
         explanation=(
-            "Names are single letters and spelled Greek letters.  A product is written with spaces or signs between its "
-            "factors (`x y`, `x * y`).  In TeX spelling, as in TeX, letters side by side are a product."
+            "Names are single letters and spelled Greek letters.  A product is written with spaces or signs between "
+            "its factors (`x y`, `x * y`).  In TeX spelling, as in TeX, letters side by side are a product."
         ),
         example="let x, y in H^2\nxy",
     ),
@@ -77,8 +77,8 @@ SYNTAX_CODES: dict[str, Code] = {
     "number-too-large": Code(
         title="A number beyond the limit",
         explanation=(
-            "Numbers are written with up to 4,000 digits, and an index may be worth up to 14,000 binary ones.  Larger "
-            "ones, such as 2^{10^9}, are not computed."
+            "Numbers are written with up to 4,000 digits; an index may be worth up to 14,000 binary ones, and be made "
+            "of up to 2,000 symbols.  Larger ones, such as 2^{10^9}, are not computed."
         ),
         example="Sq^{2^{10^9}}",
     ),
@@ -89,7 +89,9 @@ SYNTAX_CODES: dict[str, Code] = {
     ),
     "bad-name": Code(
         title="What stands behind `let` is no name",
-        explanation="A class is named by a letter or a Greek letter, with an index below and primes; a power names nothing.",
+        explanation=(
+            "A class is named by a letter or a Greek letter, with an index below and primes; a power names nothing."
+        ),
         example="let x^2 in H^4",
     ),
     "name-taken": Code(
@@ -99,7 +101,10 @@ SYNTAX_CODES: dict[str, Code] = {
     ),
     "chi-brackets": Code(
         title="chi without brackets",
-        explanation="The conjugation takes its operation in brackets, `chi(Sq^4)`: without them it cannot be seen how far it reaches.",
+        explanation=(
+            "The conjugation takes its operation in brackets, `chi(Sq^4)`: without them it cannot be seen how far it "
+            "reaches."
+        ),
         example="chi Sq^4",
     ),
     "unclosed-bracket": Code(
@@ -127,19 +132,24 @@ SYNTAX_CODES: dict[str, Code] = {
     ),
     "long-statement": Code(
         title="A statement beyond the limit of length",
-        explanation="A statement has at most 100,000 characters, unless the limit is raised.  Name its parts with `let`.",
+        explanation=(
+            "A statement has at most 100,000 characters, unless the limit is raised.  Name its parts with `let`."
+        ),
         example="iota_2" + " + iota_2" * 12_000,
     ),
     "unfinished": Code(
         title="A line that is to go on, and does not",
-        explanation="A backslash at the end of a line joins the next line to it; a blank line, a keyword or the end of the script follows.",
+        explanation=(
+            "A backslash at the end of a line joins the next line to it; here a blank line, a statement's keyword or "
+            "the end of the script follows."
+        ),
         example="Sq^2 iota_3 \\\n",
     ),
     "unknown-command": Code(
         title="A TeX command that is not known",
         explanation=(
-            "TeX spelling takes the usual commands for operations, Greek letters, products, brackets, faces and spacing.  "
-            "Macros of one's own are not expanded."
+            "TeX spelling takes the usual commands for operations, Greek letters, products, brackets, faces and "
+            "spacing.  Macros of one's own are not expanded."
         ),
         example="\\frac{1}{2} \\iota_3",
     ),
@@ -150,7 +160,9 @@ SYNTAX_CODES: dict[str, Code] = {
     ),
     "invalid-character": Code(
         title="A character that has no meaning",
-        explanation="Formulas are made of Latin and Greek letters, digits, brackets and the signs of the language reference.",
+        explanation=(
+            "Formulas are made of Latin and Greek letters, digits, brackets and the signs of the language reference."
+        ),
         example="Sq^2 iota_3 ? Sq^3 iota_2",
     ),
     "invalid-byte": Code(

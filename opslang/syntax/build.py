@@ -12,7 +12,7 @@ from typing import Any
 from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
 from opslang.syntax.build_index import IndexRules
-from opslang.syntax.build_space import SpaceRules
+from opslang.syntax.build_space import SpaceRules, label_of
 from opslang.syntax.parts import Glue, Part, Pull, Script, Sign, Word, nodes_of, single, span_of, start
 from opslang.syntax.scripts import bare, operation_indices, sorted_scripts, with_power
 
@@ -53,14 +53,8 @@ class Builder(IndexRules, SpaceRules):
             if isinstance(child, s.Coefficients):
                 coefficients = child
             else:
-                label = self._label(child)
+                label = label_of(child, self.text)
         return Part((label, coefficients), span_of(children))
-
-    def _label(self, space: s.Space) -> str:
-        """A space as a mere label: its name as it is spelled here, or what was written, without white space."""
-        if isinstance(space, s.NamedSpace) and space.power is None and not space.arguments:
-            return space.name
-        return "".join(self.text[space.span[0] : space.span[1]].split())
 
     def abbreviate_statement(self, children: list[Any]) -> s.AbbreviateStatement:
         return s.AbbreviateStatement(bare(children[1]), children[3], span_of(children))
@@ -172,7 +166,7 @@ class Builder(IndexRules, SpaceRules):
         return Script("lower", children[1].value, span_of(children))
 
     def prime(self, children: list[Any]) -> Script:
-        return Script("prime", (len(children[0].value),), span_of(children))
+        return Script("prime", (1,) * len(children[0].value), span_of(children))
 
     def pull_back(self, children: list[Any]) -> Script:
         return Script("pull_back", (), span_of(children))

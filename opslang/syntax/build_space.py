@@ -109,6 +109,25 @@ def _closed(value: s.Index, span: Span, what: str) -> int:
     return value
 
 
+def label_of(space: Any, text: str) -> str:
+    """A space as a mere label, spelled alike however it was written; a K(G, n) as it stands."""
+    if isinstance(space, s.SpaceProduct):
+        return " x ".join(label_of(factor, text) for factor in space.factors)
+    if isinstance(space, s.NamedSpace):
+        power = "" if space.power is None else f"^{_index(space.power, text)}"
+        inner = ", ".join(label_of(one, text) for one in space.arguments)
+        return space.name + power + (f"({inner})" if inner else "")
+    if isinstance(space, s.Name):
+        return Word(space.letter, space.index if isinstance(space.index, int) else None, space.primes, space.span).value
+    if isinstance(space, s.Number):
+        return str(space.value)
+    return "".join(text[space.span[0] : space.span[1]].split())
+
+
+def _index(index: s.Index, text: str) -> str:
+    return str(index) if isinstance(index, int) else "{" + text[index.span[0] : index.span[1]] + "}"
+
+
 _CLASS = re.compile(r"([A-Za-z]+)(?:_([0-9]+))?('*)\Z")
 
 

@@ -9,7 +9,7 @@ from collections.abc import Set
 
 from opslang.ground.source import Span
 from opslang.report.diagnostic import Diagnostic, error
-from opslang.syntax.spelling import Reading, Token
+from opslang.syntax.spelling import Reading, Token, shown
 
 USAGE: dict[str, str] = {
     "PRIME_WORD": "prime 3",
@@ -117,6 +117,10 @@ def _special(reading: Reading, at: int, accepted: Set[str]) -> Diagnostic | None
         return error("expected", "expected `in` before H", span, "", "in " + reading.text[span[0] : span[1]])
     if token.kind == "UNDER" and at and reading.tokens[at - 1].kind == "LETTER_H":
         return error("expected", "the degree of a cohomology group stands above, behind ^", span, "", "^")
+    if token.kind == "SLASH" and reading.tokens[0].kind == "LETTER_H":
+        first = reading.tokens[0]
+        message = "a cohomology group is no statement: `basis` lists a basis of it"
+        return error("unknown-statement", message, (first.start, first.end), "write basis H^n(…)", "basis H")
     if token.kind == "EQUALS" and reading.tokens[0].kind == "PRIME_WORD":
         return error("expected", "the prime follows its word at once", span, "it is written: prime 3", "")
     return None
@@ -140,4 +144,4 @@ def _wide(reading: Reading, token: Token) -> Span:
 
 def _shown(reading: Reading, token: Token) -> str:
     start, end = _wide(reading, token)
-    return reading.text[start:end]
+    return shown(reading.text[start:end])

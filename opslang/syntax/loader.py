@@ -46,7 +46,7 @@ def build(text: str, strict: bool = False) -> Lark:
 
 
 def cache_folder() -> Path | None:
-    """Where tables are kept, by the conventions of the XDG base directory specification; None where there is no home."""
+    """Where tables are kept (the XDG base directory specification); None where there is no home."""
     chosen = os.environ.get("XDG_CACHE_HOME")
     if chosen and os.path.isabs(chosen):
         return Path(chosen) / "opslang"

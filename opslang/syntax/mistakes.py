@@ -9,13 +9,19 @@ from collections.abc import Callable
 from itertools import islice
 
 from opslang.report.diagnostic import Diagnostic, error
-from opslang.syntax.spelling import MANY, Reading, Token
+from opslang.syntax.spelling import MANY, Reading, Token, shown
 from opslang.syntax.spellings import GREEK_NAMES, KEYWORDS, RESERVED, STATEMENT_WORDS
 
 _TAKEN = frozenset(kind for kind, _ in RESERVED.values())
 _LETTERS = frozenset(("NAME", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X"))
 _SPATIAL = frozenset(("PRIME_WORD", "SPACE_WORD", "ON", "BASIS", "SERIES"))
 _PROJECTIVE = frozenset(("RP", "CP", "HP"))
+LONGEST_SPLIT = 40
+"""No mend is offered for longer runs of letters."""
+
+INDEX_LIMIT = 2_000
+"""How many symbols one index may be made of."""
+
 _SPELLED = sorted(GREEK_NAMES | RESERVED.keys(), key=len, reverse=True)
 
 
@@ -26,6 +32,9 @@ def mistakes(reading: Reading) -> list[Diagnostic]:
     if first is not None:
         return [first]
     indices = index_positions(tokens)
+    long = _long_index(tokens, indices)
+    if long is not None:
+        return [long]
     spaces = _spaces_from(tokens)
     found = (
         slip
@@ -64,6 +73,18 @@ def index_positions(tokens: list[Token]) -> list[bool]:
     return marks
 
 
+def _long_index(tokens: list[Token], indices: list[bool]) -> Diagnostic | None:
+    """An index with more symbols than anybody reads."""
+    length = 0
+    for at, inside in enumerate(indices):
+        length = length + 1 if inside else 0
+        if length > INDEX_LIMIT:
+            first = tokens[at - INDEX_LIMIT]
+            message = f"this index is made of more than {INDEX_LIMIT:,} symbols"
+            return error("number-too-large", message, (first.start, max(first.end, first.start + 1)))
+    return None
+
+
 def split_run(word: str) -> str:
     """A run of letters taken apart: spelled names where they fit, the longest first, else letters."""
     pieces = []
@@ -75,7 +96,7 @@ def split_run(word: str) -> str:
 
 
 def nearly(word: str, name: str) -> bool:
-    """Whether a word is a name with one slip of the finger: a letter more, less, other, or two exchanged; or in capitals."""
+    """Whether a word is a name with one slip of the finger: a letter more, less or other, two exchanged, capitals."""
     if word.lower() == name.lower():
         return True
     if abs(len(word) - len(name)) > 1 or len(name) < 3:
@@ -96,8 +117,12 @@ def _first_word(reading: Reading) -> Diagnostic | None:
         for keyword in sorted(STATEMENT_WORDS):
             if nearly(first.value, keyword) and not (others and others[0].kind in ("EQUALS", "PLUS", "CARET", "UNDER")):
                 help = f"write `{keyword}`" if keyword in KEYWORDS else f"`{keyword}` belongs to the language"
-                message = f"no statement begins with `{first.value}`"
+                message = f"no statement begins with `{shown(first.value)}`"
                 return error("unknown-statement", message, (first.start, first.end), help, keyword)
+    if first.kind == "LETTER_K" and others and others[0].kind == "LPAR" and len(others) > 3:
+        if others[1].kind == "LETTER_Z" and others[2].kind in ("SLASH", "COMMA", "UNDER", "PLUS"):
+            message = "a space is no statement: `on` chooses one"
+            return error("unknown-statement", message, (first.start, first.end), "write on K(…)", "on K")
     if first.kind in _LETTERS | {"RUN"} and any(token.kind == "IN" for token in islice(others, 40)):
         mend = "let " + reading.text[first.start : first.end]
         message = "a class is declared by a statement that begins with `let`"
@@ -128,12 +153,17 @@ def _index_place(reading: Reading, token: Token, other: Token, sign: str, end: i
 
 def _run(reading: Reading, at: int) -> Diagnostic | None:
     token = reading.tokens[at]
+    span = (token.start, token.end)
+    if reading.text[token.start] == "\\":
+        return error("run-of-letters", f"the word {shown(token.value)} has no meaning in a formula", span)
+    message = f"{shown(token.value)} is no name: names are single letters and spelled Greek letters"
+    if len(token.value) > LONGEST_SPLIT:
+        return error("run-of-letters", message, span)
     split = split_run(token.value)
-    for name in (*RESERVED, *GREEK_NAMES):
+    for name in _SPELLED:
         if len(name) > 1 and token.value.lower() == name.lower():
             split = name
-    message = f"{token.value} is no name: names are single letters and spelled Greek letters"
-    return error("run-of-letters", message, (token.start, token.end), f"write {split}", split)
+    return error("run-of-letters", message, span, f"write {split}", split)
 
 
 def _square(reading: Reading, at: int) -> Diagnostic | None:
@@ -191,11 +221,12 @@ def _symbol_end(reading: Reading, at: int) -> int | None:
     tokens = reading.tokens
     if at >= len(tokens) or tokens[at].kind not in ("SQ", "PP", "BETA", "QQ", "NAME", "LETTER_X"):
         return None
-    marks = index_positions(tokens[at : at + 200])
-    end = at + 1
-    while end < len(tokens) and end - at < len(marks) and (marks[end - at] or tokens[end].kind in ("CARET", "UNDER", "RBRACE")):
+    symbol = tokens[at : at + 200]
+    marks = index_positions(symbol)
+    end = 1
+    while end < len(symbol) and (marks[end] or symbol[end].kind in ("CARET", "UNDER", "RBRACE")):
         end += 1
-    return tokens[end - 1].end
+    return symbol[end - 1].end
 
 
 def _doubled(reading: Reading, at: int) -> Diagnostic | None:
@@ -236,7 +267,8 @@ def _space_number(reading: Reading, at: int) -> Diagnostic | None:
         mend = f"{written}({other.value})"
     else:
         mend = f"{written}_{_braced(reading, other.value)}"
-    return error("index-place", f"a number stands against {token.value}", (token.start, other.end), f"write {mend}", mend)
+    message = f"a number stands against {shown(token.value)}"
+    return error("index-place", message, (token.start, other.end), f"write {mend}", mend)
 
 
 _Check = Callable[[Reading, int], "Diagnostic | None"]
@@ -251,6 +283,6 @@ _CHECKS: dict[str, _Check] = {
     "EQUALS": _doubled,
     "STAR": _doubled,
     "LET": _let,
-    **{kind: _against for kind in _LETTERS},
+    **dict.fromkeys(_LETTERS, _against),
 }
-_AMONG_SPACES: dict[str, _Check] = {"RUN": _space_number, **{kind: _space_number for kind in _LETTERS - {"LETTER_X"}}}
+_AMONG_SPACES: dict[str, _Check] = {"RUN": _space_number, **dict.fromkeys(_LETTERS - {"LETTER_X"}, _space_number)}

@@ -6,7 +6,7 @@ Plain lines are read by `plain.py` at once.  The rest goes by the grammar: `spel
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from opslang.ground.source import Source
 from opslang.report.diagnostic import Diagnostic, Refusal, error
@@ -63,15 +63,15 @@ def _tree(reading: Reading) -> Statement:
     from opslang.syntax.expected import unexpected
     from opslang.syntax.loader import parser
 
-    state = parser().parse_interactive()
-    at = 0
+    state: Any = parser().parse_interactive()
+    read = 0
     try:
-        for at, (kind, value, start, end) in enumerate(reading.tokens):
+        for kind, value, start, end in reading.tokens:
             state.feed_token(Token(kind, value, start_pos=start, end_pos=end))
-        at = len(reading.tokens)
+            read += 1
         tree = state.feed_eof(Token("$END", ""))
     except UnexpectedInput:
-        raise Refusal(unexpected(reading, at, state.accepts())) from None
+        raise Refusal(unexpected(reading, read, state.accepts())) from None
     try:
         return Builder(reading.text).transform(tree)  # type: ignore[no-any-return]
     except VisitError as fault:

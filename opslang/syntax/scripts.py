@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Any, TypeVar
 
 from opslang.ground.source import Span
 from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
 from opslang.syntax.parts import Part, Script, Scripted, end, single, start
+from opslang.syntax.spelling import shown
+
+Base = TypeVar("Base", s.Bockstein, s.Milnor, s.Fundamental, s.Name, s.Number, s.Group, s.Conjugate)
 
 
 def sorted_scripts(base: Any, scripts: list[Script], text: str, allowed: str) -> Scripted:
@@ -36,7 +39,7 @@ def sorted_scripts(base: Any, scripts: list[Script], text: str, allowed: str) ->
             if power is not None:
                 help = "primes belong to the name and stand before its power"
                 raise Refusal(error("misplaced-script", "a prime stands behind a power", script.span, help))
-            primes += int(script.indices[0])  # type: ignore[call-overload]
+            primes += len(script.indices)
         else:
             if lowered:
                 raise Refusal(error("misplaced-script", "this symbol has an index already", script.span))
@@ -47,7 +50,7 @@ def sorted_scripts(base: Any, scripts: list[Script], text: str, allowed: str) ->
 
 def _misplaced(script: Script, text: str) -> Refusal:
     what = {"power": "a power", "lower": "an index below", "prime": "a prime", "pull_back": "^*"}[script.kind]
-    written = text[script.span[0] : script.span[1]]
+    written = shown(text[script.span[0] : script.span[1]])
     return Refusal(error("misplaced-script", f"{what} ({written}) has no meaning at this symbol", script.span))
 
 
@@ -55,18 +58,12 @@ def two_powers(begin: int, first: Script, second: Script, text: str) -> Refusal:
     """The refusal of `Sq^2^2`: which of the two readings is meant cannot be told."""
     base, top = text[begin : first.span[1]], text[second.span[0] : second.span[1]]
     mend = f"({base}){top}"
-    first_index, second_index = _inner(first, text), _inner(second, text)
-    help = f"write {mend}, or {text[begin:first.span[0]]}^{{{first_index}^{second_index}}}"
-    message = f"two powers stand behind {text[begin:first.span[0]]}"
-    return Refusal(error("two-powers", message, (begin, second.span[1]), help, mend))
+    symbol, inner = text[begin : first.span[0]], text[first.span[0] : first.span[1]].removeprefix("^")
+    help = f"write {mend}, or {symbol}^{{{inner}{top}}}" if len(mend) < 40 else ""
+    return Refusal(error("two-powers", f"two powers stand behind {shown(symbol)}", (begin, second.span[1]), help, mend))
 
 
-def _inner(script: Script, text: str) -> str:
-    written = text[script.span[0] : script.span[1]].removeprefix("^").strip()
-    return written
-
-
-def with_power(base: Any, scripts: Scripted) -> Any:
+def with_power(base: Base, scripts: Scripted) -> Base | s.Power:
     """The symbol itself, or its power."""
     if scripts.power is None:
         return base

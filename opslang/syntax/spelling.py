@@ -128,7 +128,8 @@ class Reading:
 
     def number(self, text: str, start: int, end: int) -> None:
         if len(text) > DIGIT_LIMIT:
-            self._fault("number-too-large", f"a number has {len(text):,} digits; the limit is {DIGIT_LIMIT:,}", start, end)
+            message = f"a number has {len(text):,} digits; the limit is {DIGIT_LIMIT:,}"
+            self._fault("number-too-large", message, start, end)
             return
         if self.tex and len(text) > 1 and self._previous() in ("CARET", "UNDER"):
             moved, sign = ("raised", "^") if self._previous() == "CARET" else ("lowered", "_")
@@ -201,7 +202,7 @@ class Reading:
         else:
             self._fault(
                 "unknown-command",
-                f"the TeX command {text} is not known",
+                f"the TeX command {shown(text)} is not known",
                 start,
                 end,
                 "a class is a letter or a Greek letter, with an index and primes",
@@ -247,7 +248,7 @@ class Reading:
         if text[1] == "|":
             self._sign(("BAR", "|"), start, end)
             return
-        self._fault("unknown-command", f"the TeX command {_shown(text)} has no meaning here", start, end)
+        self._fault("unknown-command", f"the TeX command {shown(text)} has no meaning here", start, end)
 
     def aside(self, text: str, start: int, end: int) -> None:
         """Labels, tags, invisible delimiters: nothing to read."""
@@ -322,7 +323,8 @@ class Reading:
         """A code point that has no meaning of its own: perhaps a letter or digit of another alphabet."""
         code = ord(text)
         if 0xDC80 <= code <= 0xDCFF:
-            self._fault("invalid-byte", f"the byte 0x{code - 0xDC00:02X} is no UTF-8", start, end, "save the file as UTF-8")
+            message = f"the byte 0x{code - 0xDC00:02X} is no UTF-8"
+            self._fault("invalid-byte", message, start, end, "save the file as UTF-8")
             return
         plain = unicodedata.normalize("NFKC", text)
         if len(plain) == 1 and plain in SYMBOLS:
@@ -338,7 +340,7 @@ class Reading:
         else:
             mend = plain if plain.isascii() and plain.isdigit() else None
             help = "names are Latin or Greek letters" if text.isalpha() else ""
-            self._fault("invalid-character", f"{_shown(text)} has no meaning here", start, end, help, mend)
+            self._fault("invalid-character", f"{shown(text)} has no meaning here", start, end, help, mend)
 
     # --- the end ---------------------------------------------------------------------------------
 
@@ -369,8 +371,10 @@ _READERS = {
 }
 
 
-def _shown(text: str) -> str:
-    """A piece of text for a message: itself where it can be printed, else its code point."""
+def shown(text: str) -> str:
+    """A piece of text for a message: its beginning where it is long, its code points where it cannot be printed."""
+    if len(text) > 40:
+        text = text[:30] + "…"
     if text.isprintable():
         return text
     return " ".join(f"U+{ord(char):04X}" for char in text)

@@ -8,15 +8,12 @@ from __future__ import annotations
 
 from typing import Union
 
-from attrs import field, frozen
+import attrs
+from attrs import frozen
 
 from opslang.ground.source import Span
 
 HERE: Span = (0, 0)
-
-
-def _span() -> Span:
-    return field(default=HERE, eq=False, repr=False)  # type: ignore[no-any-return]
 
 
 # --- integer expressions in index positions -----------------------------------------------------
@@ -33,7 +30,7 @@ class IndexExpression:
 
     kind: str
     parts: tuple[object, ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 Index = Union[int, IndexExpression]
@@ -48,7 +45,7 @@ class Operation:
 
     head: str
     indices: tuple[Index, ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -56,7 +53,7 @@ class Bockstein:
     """`beta` (order None) or `beta_k`."""
 
     order: Index | None
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -64,7 +61,7 @@ class Milnor:
     """`Q_k`."""
 
     index: Index
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -73,7 +70,7 @@ class Fundamental:
 
     degree: Index
     primes: int = 0
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -83,7 +80,7 @@ class Name:
     letter: str
     index: Index | None = None
     primes: int = 0
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -91,7 +88,7 @@ class Number:
     """A non-negative integer written as a factor."""
 
     value: int
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -99,7 +96,7 @@ class Group:
     """A bracketed expression."""
 
     body: "Sum"
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -107,7 +104,7 @@ class Conjugate:
     """`chi(…)`."""
 
     body: "Sum"
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -116,7 +113,7 @@ class PullBack:
 
     name: str
     body: "Sum"
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -125,7 +122,7 @@ class Power:
 
     base: "Factor"
     exponent: Index
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 Factor = Union[Operation, Bockstein, Milnor, Fundamental, Name, Number, Group, Conjugate, PullBack, Power]
@@ -138,7 +135,7 @@ class Product:
 
     factors: tuple[Factor, ...]
     glues: tuple[str, ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -146,7 +143,7 @@ class Sum:
     """A flat sum: pairs (sign +1 or -1, product)."""
 
     terms: tuple[tuple[int, Product], ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 # --- groups and spaces --------------------------------------------------------------------------
@@ -159,7 +156,7 @@ class Summand:
     order: int
     copies: int = 1
     field: bool = False
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -167,7 +164,7 @@ class Coefficients:
     """A finitely generated abelian group, or a field F_p, as written."""
 
     summands: tuple[Summand, ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -176,7 +173,7 @@ class EilenbergMacLane:
 
     group: Coefficients
     degree: Index
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -187,7 +184,7 @@ class NamedSpace:
     name: str
     power: Index | None = None
     arguments: tuple[object, ...] = ()
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -195,7 +192,7 @@ class SpaceProduct:
     """Spaces joined by `x`, `×` or `\\times`; two factors or more."""
 
     factors: tuple[Union[EilenbergMacLane, NamedSpace], ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 Space = Union[EilenbergMacLane, NamedSpace, SpaceProduct]
@@ -209,7 +206,7 @@ class PrimeStatement:
     """`prime 3`."""
 
     value: int
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -218,7 +215,7 @@ class SpaceStatement:
 
     name: str
     space: Space
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -226,7 +223,7 @@ class OnStatement:
     """`on X`."""
 
     space: Space
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -237,7 +234,7 @@ class DeclareStatement:
     degree: Index
     label: str | None = None
     coefficients: Coefficients | None = None
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -246,7 +243,7 @@ class AbbreviateStatement:
 
     name: Name
     body: Sum
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -254,7 +251,7 @@ class ExpressionStatement:
     """A bare expression."""
 
     body: Sum
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -262,7 +259,7 @@ class RelationStatement:
     """`a = b`, or a chain `a = b = c`; two sides or more."""
 
     sides: tuple[Sum, ...]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -270,7 +267,7 @@ class WhyStatement:
     """`why …` of an expression or a relation."""
 
     body: Union[ExpressionStatement, RelationStatement]
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -279,7 +276,7 @@ class BasisStatement:
 
     degree: Index
     space: Space | None = None
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 @frozen
@@ -288,7 +285,7 @@ class SeriesStatement:
 
     space: Space | None
     to: Index
-    span: Span = _span()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
 Statement = Union[
