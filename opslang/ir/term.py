@@ -20,7 +20,7 @@ from attrs import frozen
 from opslang.ir.order import class_key, word_key
 from opslang.ir.tree import Class as Class
 
-TERM_LIMIT = 20_000
+TERM_LIMIT = 2_000
 """Terms that an element may have here: nobody reads more than a few dozen."""
 
 Index = Union[int, tuple["Letter", ...]]
@@ -159,13 +159,19 @@ def _letter_key(letter: Letter) -> tuple[Any, ...]:
 
 @lru_cache(maxsize=1 << 15)
 def factor_key(factor: Factor, p: int) -> tuple[Any, ...]:
-    """Sorts factors: words on classes in the order of generators, then everything else."""
+    """Sorts factors: words on classes in the order of generators, then everything else by its letters."""
     plain = word_on_class(factor, p)
     if plain:
         word, of = plain
         return 0, class_key(of), (degree_of(factor, p) or 0) - of.degree, word_key(word, p)
-    assert isinstance(factor, Apply)
-    return 1, _letter_key((factor.key, factor.index)), _blocks_key(factor.argument, p)
+    letters = []
+    while isinstance(factor, Apply):
+        letters.append(_letter_key((factor.key, factor.index)))
+        inner = factor.argument
+        if len(inner.blocks) != 1 or inner.blocks[0][1] != 1:
+            return 1, tuple(letters), 1, _blocks_key(inner, p)
+        factor = inner.blocks[0][0]
+    return 1, tuple(letters), 0, class_key(factor)
 
 
 def _blocks_key(monomial: Monomial, p: int) -> tuple[Any, ...]:
@@ -296,21 +302,27 @@ def factor_at(element: Element, path: Path) -> Block:
     return factor, exponent
 
 
-def _replace_inside(monomial: Monomial, path: Path, lhs_power: int, rhs: Element) -> Element:
+Pairs = list[tuple[Monomial, int]]
+
+
+def _replace_inside(monomial: Monomial, path: Path, lhs_power: int, rhs: Element) -> Pairs:
     p, at = rhs.prime, path[0]
     factor, exponent = monomial.blocks[at]
     if len(path) == 1:
         whole, rest = divmod(exponent, lhs_power)
-        middle = power(rhs, whole)
+        middle = list(power(rhs, whole).terms)
         if rest:
-            middle = cup(middle, of_factor(p, factor, rest))
+            middle = list(cup(collect(p, middle), of_factor(p, factor, rest)).terms)
     else:
         assert isinstance(factor, Apply)
         inner = _replace_inside(factor.argument, path[1:], lhs_power, rhs)
-        middle = power(apply(factor.key, factor.index, inner), exponent)
-    return cup(
-        of_monomial(p, Monomial(monomial.blocks[:at])), middle, of_monomial(p, Monomial(monomial.blocks[at + 1 :]))
-    )
+        middle = [(Monomial(((Apply(factor.key, factor.index, m), 1),)), c) for m, c in inner]
+        if exponent > 1:
+            middle = list(power(collect(p, middle), exponent).terms)
+    if len(monomial.blocks) == 1:
+        return middle
+    left, right = Monomial(monomial.blocks[:at]), Monomial(monomial.blocks[at + 1 :])
+    return list(cup(of_monomial(p, left), collect(p, middle), of_monomial(p, right)).terms)
 
 
 def replace(element: Element, path: Path, lhs_power: int, rhs: Element) -> Element:
@@ -318,4 +330,4 @@ def replace(element: Element, path: Path, lhs_power: int, rhs: Element) -> Eleme
     monomial, coefficient = element.terms[path[0]]
     fresh = _replace_inside(monomial, path[1:], lhs_power, rhs)
     others = element.terms[: path[0]] + element.terms[path[0] + 1 :]
-    return collect(element.prime, [*others, *((m, coefficient * c) for m, c in fresh.terms)])
+    return collect(element.prime, [*others, *((m, coefficient * c) for m, c in fresh)])

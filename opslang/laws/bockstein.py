@@ -87,7 +87,7 @@ def _match_integral(factor: Factor, exponent: int, p: int) -> Bindings | None:
 
 INTEGRAL = Law(
     name="integral",
-    title="the Bockstein of an integral or Z/p^k class",
+    title="the Bockstein of a class that lifts",
     formula=r"\beta x = 0 \text{ (at 2: } \mathrm{Sq}^{1}x = 0)",
     condition="x the reduction of an integral class or of a Z/p^k class, k >= 2",
     source="Serre 1953; Cartan 1954; the Bockstein sequence",

@@ -163,7 +163,7 @@ def _match_beta_squared(factor: Factor, exponent: int, p: int) -> Bindings | Non
 
 BETA_SQUARED = Law(
     name="beta-squared",
-    title="beta beta = 0",
+    title="the Bockstein has square 0",
     formula=r"\beta\beta = 0",
     condition="p odd (at 2 it is an Adem relation)",
     source="Steenrod and Epstein 1962, chapter VI",

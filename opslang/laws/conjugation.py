@@ -111,7 +111,7 @@ def _match_straffin(factor: Factor, exponent: int, p: int) -> Bindings | None:
 
 CHI_STRAFFIN = Law(
     name="conjugate-of-a-full-square",
-    title="the conjugate of Sq^{2^r - 1}",
+    title="the conjugate of a square one below a power of 2",
     formula=r"\chi(\mathrm{Sq}^{2^{r}-1}) = \mathrm{Sq}^{2^{r-1}}\chi(\mathrm{Sq}^{2^{r-1}-1})",
     condition="p = 2, n = 2^r - 1, r >= 2",
     source="Davis 1974; Straffin 1975",

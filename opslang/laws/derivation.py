@@ -20,12 +20,20 @@ class Step:
 
 @frozen
 class Derivation:
-    """A start and the steps from it.  `operation` says which sort it is; `finished` whether no law applies any more."""
+    """A start and the steps from it; `operation` says which sort it is.
+
+    `stopped` is empty where no law applies to the result any more, else it says why the steps end there.
+    """
 
     start: Element
     steps: tuple[Step, ...]
     operation: bool = False
-    finished: bool = True
+    stopped: str = ""
+
+    @property
+    def finished(self) -> bool:
+        """Whether the last element is normal."""
+        return not self.stopped
 
     @property
     def result(self) -> Element:

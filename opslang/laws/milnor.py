@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from opslang.ir.term import Apply, Class, Factor, Monomial, add, of_factor, of_monomial, zero
+from opslang.ir.term import Apply, Class, Factor, Monomial, TooMany, add, of_factor, of_monomial, zero
 from opslang.laws.cartan import Parts, blocks_of, is_product, leibniz
 from opslang.laws.law import Bindings, Equation, Law, bockstein, head, only, require, single, word
 
@@ -22,7 +22,7 @@ def _match_zeroth(factor: Factor, exponent: int, p: int) -> Bindings | None:
 
 Q_ZERO = Law(
     name="milnor-zero",
-    title="Q_0 is the Bockstein",
+    title="the first primitive is the Bockstein",
     formula=r"Q_{0} = \beta",
     condition="every prime; at 2 the Bockstein is Sq^1",
     source="Milnor 1958",
@@ -34,6 +34,8 @@ Q_ZERO = Law(
 
 def _commutator(p: int, k: int, x: Monomial) -> Equation:
     require(k > 0, "Q_0 is the Bockstein")
+    if k > 40:
+        raise TooMany(f"a chain of {k:,} commutators")
     power = (head(p), p ** (k - 1) if p > 2 else 2**k)
     lower = ("Q", k - 1)
     forth, back = word((power, lower), x), word((lower, power), x)

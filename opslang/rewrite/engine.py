@@ -10,9 +10,6 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from attrs import evolve
-
-from opslang.ground.source import Span
 from opslang.ir.convert import from_tree
 from opslang.ir.term import Apply, Element, Monomial, Path, TooMany, replace, zero
 from opslang.ir.tree import OPS, Tree
@@ -23,6 +20,9 @@ from opslang.report.diagnostic import Diagnostic, warning
 
 FUEL = 500
 """Steps of a derivation, unless asked for more."""
+
+LENGTH = 120
+"""Letters that a line of a derivation may have on average, for each step of fuel."""
 
 Redex = tuple[Path, Law, Bindings]
 
@@ -75,27 +75,30 @@ class Search:
 
 
 def run(start: Element, laws: Sequence[Law] = BOOK, fuel: int = FUEL, operation: bool = False) -> Derivation:
-    """The derivation from an element to where no law applies or the fuel ends.  TooMany where a sum grows too long."""
+    """The derivation from an element to where no law applies, or to where it grows too long to read."""
     search = Search(start.prime, laws)
     current: Element = start
     steps: list[Step] = []
-    while True:
+    length, stopped = 0, ""
+    while not stopped:
         redex = search.first(current)
-        if redex is None or len(steps) >= fuel:
-            return Derivation(start, tuple(steps), operation, finished=redex is None)
-        path, law, bindings = redex
-        equation = law.instance(**bindings)
-        current = replace(current, path, equation.power, equation.rhs)
-        steps.append(Step(law.name, bindings, path, current))
-
-
-def _stopped(message: str, span: Span) -> Diagnostic:
-    return warning(
-        "derivation-too-long",
-        message,
-        span,
-        help="explain a smaller expression; the value itself does not need the derivation",
-    )
+        if redex is None:
+            break
+        if len(steps) >= fuel:
+            stopped = f"it has more than {fuel:,} steps"
+        elif length > LENGTH * fuel:
+            stopped = f"its lines have more than {LENGTH * fuel:,} letters together"
+        else:
+            path, law, bindings = redex
+            try:
+                equation = law.instance(**bindings)
+                current = replace(current, path, equation.power, equation.rhs)
+            except TooMany as reason:
+                stopped = f"the next step has {reason}"
+            else:
+                steps.append(Step(law.name, bindings, path, current))
+                length += len(current.terms) * len(path)
+    return Derivation(start, tuple(steps), operation, stopped)
 
 
 def derive(tree: Tree, prime: int, fuel: int = FUEL) -> tuple[Derivation, tuple[Diagnostic, ...]]:
@@ -105,12 +108,12 @@ def derive(tree: Tree, prime: int, fuel: int = FUEL) -> tuple[Derivation, tuple[
     unfinished, with a warning `derivation-too-long`.
     """
     operation = isinstance(tree, OPS)
-    derivation = Derivation(zero(prime), (), operation, finished=False)
     try:
-        derivation = evolve(derivation, start=from_tree(tree, prime))
-        derivation = run(derivation.start, BOOK, fuel, operation)
+        derivation = run(from_tree(tree, prime), BOOK, fuel, operation)
     except TooMany as reason:
-        return derivation, (_stopped(f"the derivation cannot be written out: {reason}", tree.span),)
-    if not derivation.finished:
-        return derivation, (_stopped(f"the derivation has more than {fuel:,} steps; these are the first", tree.span),)
-    return derivation, ()
+        derivation = Derivation(zero(prime), (), operation, stopped=f"its first line has {reason}")
+    if derivation.finished:
+        return derivation, ()
+    message = f"the derivation is not written out to its end: {derivation.stopped}"
+    help_ = "explain a smaller expression; to have only the value, leave `why` out"
+    return derivation, (warning("derivation-too-long", message, tree.span, help_),)
