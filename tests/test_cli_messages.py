@@ -18,7 +18,9 @@ from opslang.report.render import cells, excerpt, render, render_file, visible
 
 def test_the_gnu_form_with_the_place_marked() -> None:
     text = "Sq^2 Sq^2 iota_3 = Sq^3 iota_3"
-    found = error("degrees-differ", "the right side has degree 6", (19, 30), "an equation is possible in one degree only")
+    found = error(
+        "degrees-differ", "the right side has degree 6", (19, 30), "an equation is possible in one degree only"
+    )
     assert render(found, Source("paper.ops", text, 2)) == "\n".join(
         [
             "paper.ops:2:20: error: degrees-differ: the right side has degree 6",
@@ -61,7 +63,9 @@ def test_a_long_line_is_cut_to_a_window_around_the_place() -> None:
 
 def test_a_span_over_several_lines_is_marked_on_its_first() -> None:
     source = Source("a.ops", "(a +\nb", 7)
-    said = render(Diagnostic("error", "unclosed", "never closed", (0, 6), labels=(Label((5, 6), "the line ends here"),)), source)
+    said = render(
+        Diagnostic("error", "unclosed", "never closed", (0, 6), labels=(Label((5, 6), "the line ends here"),)), source
+    )
     assert said.splitlines() == [
         "a.ops:7:1: error: unclosed: never closed",
         "    (a +",

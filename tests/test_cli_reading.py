@@ -41,7 +41,9 @@ def test_lines(tmp_path: Path, data: bytes, lines: list[str]) -> None:
 
 @settings(deadline=None, max_examples=60)
 @given(st.lists(st.sampled_from([b"a", b"\n", b"\r", b"\r\n", "ι₃".encode(), b"\xff", b"\xe2\x82"])), st.integers(1, 5))
-def test_the_size_of_the_blocks_does_not_matter(tmp_path_factory: pytest.TempPathFactory, parts: list[bytes], size: int) -> None:
+def test_the_size_of_the_blocks_does_not_matter(
+    tmp_path_factory: pytest.TempPathFactory, parts: list[bytes], size: int
+) -> None:
     path = tmp_path_factory.mktemp("blocks") / "a.ops"
     data = b"".join(parts)
     whole = data.decode("utf-8", "surrogateescape").replace("\r\n", "\n").replace("\r", "\n").split("\n")
@@ -90,7 +92,11 @@ def test_binary_files_are_refused(tmp_path: Path, data: bytes, says: str) -> Non
 def test_files_that_are_none(tmp_path: Path) -> None:
     round_link = tmp_path / "round"
     os.symlink(round_link, round_link)
-    for path, name in ((tmp_path / "none", "missing-file"), (tmp_path, "folder-for-file"), (round_link, "unreadable-file")):
+    for path, name in (
+        (tmp_path / "none", "missing-file"),
+        (tmp_path, "folder-for-file"),
+        (round_link, "unreadable-file"),
+    ):
         with pytest.raises(Unreadable) as refusal:
             Script(str(path))
         assert refusal.value.fault.name == name

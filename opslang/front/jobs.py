@@ -11,7 +11,6 @@ from __future__ import annotations
 
 import os
 import pickle
-import re
 import signal
 from collections.abc import Callable, Generator, Iterable
 from threading import Thread
@@ -22,10 +21,9 @@ from opslang.front.progress import Progress
 from opslang.front.reading import Fault
 from opslang.front.statement import Answer, Desk, Item, Opened, Settings, Trouble
 from opslang.ground.source import Source
+from opslang.pipeline import kind_of
 
 BLOCK = 16
-_DECLARATION = re.compile(r"(?:\s|#[^\n]*\n)*(?:prime|space|on|let|map|manifold)\b")
-
 Task = list[tuple[Item, bool]]
 """Items in order, each with whether the worker is to show its answer; no task at all means the end."""
 
@@ -95,7 +93,7 @@ class _Dealer:
         for number, hand in enumerate(self._hands):
             if number == owner:
                 hand.append((item, True))
-            elif isinstance(item, Opened) or (isinstance(item, Source) and _DECLARATION.match(item.text)):
+            elif isinstance(item, Opened) or (isinstance(item, Source) and kind_of(item.text) == "declaration"):
                 hand.append((item, False))
         self._count += 1
         if self._count == BLOCK:
@@ -131,8 +129,6 @@ def shared(
     names: tuple[str, ...], settings: Settings, jobs: int, progress: Progress, after_block: Callable[[], None]
 ) -> Generator[Answer, None, None]:
     """The answers to all statements of the scripts, in order; after `after_block` the next may be long in coming."""
-    import opslang.pipeline  # noqa: F401  (once, before the processes part)
-
     workers: list[Worker] = []
     try:
         for _ in range(jobs):

@@ -18,7 +18,6 @@ from opslang.front.reading import Script
 from opslang.front.statement import FAULTY, Answer
 
 DELAY = 0.5
-_CLEAR = b"\r\x1b[K"
 
 
 class Progress:
@@ -29,7 +28,7 @@ class Progress:
         self.errors = 0
         self._script: Script | None = None
         self._started = monotonic()
-        self._shown = False
+        self._shown = 0
         self._timed = False
 
     def reads(self, script: Script) -> None:
@@ -58,8 +57,8 @@ class Progress:
     def clear(self) -> None:
         """Takes the line away, so that something else can be written in its place."""
         if self._shown:
-            self._shown = False
-            self._put(_CLEAR)
+            self._put(b"\r" + b" " * self._shown + b"\r")
+            self._shown = 0
 
     def text(self) -> str:
         """The line itself."""
@@ -72,8 +71,9 @@ class Progress:
         return ", ".join(words)
 
     def _tick(self, number: int, frame: FrameType | None) -> None:
-        self._shown = True
-        self._put(_CLEAR + self.text().encode("ascii", "replace"))
+        line = self.text()
+        self._put(f"\r{line:{self._shown}}".encode())  # spaces, not escapes: any terminal takes them
+        self._shown = max(len(line), self._shown)
 
     def _put(self, data: bytes) -> None:
         # Straight to the descriptor: a signal may arrive in the middle of a buffered write to the same stream.

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from time import monotonic
-from typing import TYPE_CHECKING, Any, Union
+from typing import TYPE_CHECKING, Any, Union, cast
 
 from attrs import frozen
 
@@ -18,7 +18,9 @@ from opslang.report.diagnostic import error
 from opslang.report.render import Paint, plain, render, render_file
 
 if TYPE_CHECKING:
-    from opslang.pipeline import Outcome, Session
+    from opslang.ir.outcome import Outcome
+    from opslang.pipeline import Session
+    from opslang.render.text import Notation
 
 PATIENCE = 0.5
 """Seconds that a statement must have taken for Ctrl-C to stop it alone, and not the run."""
@@ -95,14 +97,15 @@ class Desk:
             if now - started < PATIENCE or now - self._interrupted < SECOND:
                 raise
             self._interrupted = now
-            return self._shown(_failed(item, "interrupted", f"interrupted after {now - started:.1f} s"), INTERRUPTED)
+            return self._shown(
+                self._failed(item, "interrupted", f"interrupted after {now - started:.1f} s"), INTERRUPTED
+            )
 
     def _new_session(self) -> Session:
         from opslang.pipeline import Session
 
-        if self._settings.limit is None:
-            return Session(self._settings.prime)
-        return Session(self._settings.prime, self._settings.limit)
+        limit = {} if self._settings.limit is None else {"limit": self._settings.limit}
+        return Session(self._settings.prime, both=self._settings.both, **limit)
 
     def _outcome(self, source: Source) -> Outcome:
         if self._session is None:
@@ -110,7 +113,7 @@ class Desk:
         try:
             return self._session.run(source)
         except Exception as fault:  # the session promises not to raise; a fault of ours must not end the user's run
-            return _failed(source, "internal-fault", f"opslang failed here: {type(fault).__name__}: {fault}")
+            return self._failed(source, "internal-fault", f"opslang failed here: {type(fault).__name__}: {fault}")
 
     def _shown(self, outcome: Outcome, status: int = WELL) -> Answer:
         status = max(status, _STATUS.get(outcome.verdict, WELL))
@@ -122,7 +125,7 @@ class Desk:
         for diagnostic in outcome.diagnostics:
             text = render(diagnostic, outcome.source, self._settings.paint, self._settings.width)
             pieces.append(("diagnostic", text + "\n"))
-        text = show(outcome, self._settings.output, self._settings.width)
+        text = show(outcome, cast("Notation", self._settings.output), self._settings.width)
         if text:
             pieces.append(("result", text + "\n"))
         return Answer(tuple(pieces), status, True)
@@ -139,16 +142,18 @@ class Desk:
     def _troubled(self, trouble: Trouble) -> Answer:
         fault = trouble.fault
         if fault.line is not None and self._settings.output == "jsonl":
-            return self._shown(_failed(Source(trouble.name, "", fault.line), fault.name, fault.message))
+            return self._shown(self._failed(Source(trouble.name, "", fault.line), fault.name, fault.message))
         text = render_file(fault.name, fault.message, trouble.name, fault.line, self._settings.paint)
         return Answer((("diagnostic", text + "\n"),), FAULTY, unread=fault.line is None)
 
+    def _failed(self, source: Source, name: str, message: str) -> Outcome:
+        """The outcome of a statement that could not be worked on."""
+        from opslang.ir.outcome import Outcome
+        from opslang.pipeline import kind_of
 
-def _failed(source: Source, name: str, message: str) -> Outcome:
-    """The outcome of a statement that could not be worked on."""
-    from opslang.pipeline import Outcome
-
-    text = source.text
-    start = len(text) - len(text.lstrip())
-    end = max(start, len(text.rstrip()))
-    return Outcome(source=source, span=(start, end), verdict="error", diagnostics=(error(name, message, (start, end)),))
+        text = source.text
+        start = len(text) - len(text.lstrip())
+        span = (start, max(start, len(text.rstrip())))
+        prime = self._settings.prime if self._session is None else self._session.scope.prime
+        found = (error(name, message, span),)
+        return Outcome(source, span, kind_of(text), "error", prime, name=name, message=message, diagnostics=found)

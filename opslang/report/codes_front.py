@@ -63,7 +63,7 @@ FRONT_CODES: dict[str, Code] = {
             "has no result, and the run goes on with the next one.  A second Ctrl-C within two seconds, or one "
             "that comes between statements, ends the run.  Either way the exit status is 130."
         ),
-        example="$ { echo 'Sq^1 iota_2'; sleep 1; } | timeout --signal INT 0.6 opslang run -",
+        example="$ timeout --signal INT 3 opslang eval --limit 1000000000000 'series K(Z/2, 3) to 200000'",
     ),
     "worker-lost": Code(
         title="A worker process ended before its time",

@@ -1,0 +1,155 @@
+"""Looks at a statement without computing: sort, degree, or what is wrong and where.  Knows parsing and lowering only."""
+
+from __future__ import annotations
+
+from typing import Literal
+
+from attrs import evolve, frozen
+
+from opslang.ground.source import Source, Span
+from opslang.meaning.lower import Lowering
+from opslang.meaning.scope import Scope
+from opslang.meaning.spaces import space_value
+from opslang.meaning.statements import abbreviate, declare, on, prime, space
+from opslang.meaning.value import Sort, Value
+from opslang.report.diagnostic import Diagnostic, Refusal
+from opslang.syntax import surface as sf
+from opslang.syntax.parser import parse
+
+Tone = Literal["quiet", "warning", "error"]
+
+LONGEST = 6_000
+"""A text of more characters is not looked at while it is typed: reading it takes longer than a keystroke may."""
+
+
+@frozen
+class Glance:
+    """What a text is, in a few words; for an error or a warning with its place."""
+
+    words: str = ""
+    tone: Tone = "quiet"
+    span: Span | None = None
+
+
+def copy_of(scope: Scope) -> Scope:
+    """A scope that later declarations do not change."""
+    return Scope(scope.prime, scope.space, dict(scope.spaces), dict(scope.names))
+
+
+def glance(source: Source, scope: Scope) -> Glance:
+    """What one statement is.  The scope stays as it is."""
+    statement, found = parse(source)
+    wrong = next((d for d in found if d.severity == "error"), None)
+    if wrong is not None:
+        return _trouble(wrong, "error")
+    if statement is None:
+        return Glance()
+    trial = copy_of(scope)
+    lowering = Lowering(trial, source.text, list(found))
+    try:
+        words = _words(statement, trial, lowering)
+    except Refusal as refusal:
+        return _trouble(refusal.diagnostic, "error")
+    except (RecursionError, MemoryError):
+        return Glance("nested too deeply", "error")
+    for diagnostic in lowering.diagnostics:
+        if diagnostic.severity == "warning":
+            return evolve(_trouble(diagnostic, "warning"), words=f"{words}; {diagnostic.message}")
+    return Glance(words)
+
+
+def _trouble(diagnostic: Diagnostic, tone: Tone) -> Glance:
+    return Glance(diagnostic.message, tone, diagnostic.span)
+
+
+def lowered(statement: sf.Statement, scope: Scope, text: str) -> tuple[Value, ...] | None:
+    """The values of the sides of a formula; None for a statement that holds none.  Raises Refusal."""
+    if isinstance(statement, sf.WhyStatement):
+        return lowered(statement.body, scope, text)
+    lowering = Lowering(scope, text)
+    if isinstance(statement, sf.RelationStatement):
+        return tuple([lowering.sum(side) for side in statement.sides])
+    if isinstance(statement, sf.ExpressionStatement):
+        return (lowering.sum(statement.body),)
+    return None
+
+
+def reads_alike(text: str, scope: Scope, other: Scope) -> bool:
+    """Whether a statement says the same in two scopes."""
+    if (scope.prime, scope.space) != (other.prime, other.space):
+        return False
+    statement, _ = parse(Source("input", text))
+    if statement is None:
+        return False
+    try:
+        if isinstance(statement, (sf.BasisStatement, sf.SeriesStatement)):
+            named = statement.space
+            return named is None or space_value(named, scope) == space_value(named, other)
+        return lowered(statement, scope, text) == lowered(statement, other, text)
+    except Refusal:
+        return False
+
+
+# --- in words -----------------------------------------------------------------------------------
+
+
+def _words(statement: sf.Statement, scope: Scope, lowering: Lowering) -> str:
+    match statement:
+        case sf.ExpressionStatement():
+            return of_value(lowering.sum(statement.body))
+        case sf.RelationStatement():
+            return _relation(statement, lowering)
+        case sf.WhyStatement():
+            return f"derivation, {_words(statement.body, scope, lowering)}"
+        case sf.AbbreviateStatement():
+            return of_value(abbreviate(statement, scope, lowering))
+        case sf.DeclareStatement():
+            lowering.diagnostics += declare(statement, scope)
+            return f"{'class' if len(statement.names) == 1 else 'classes'} of degree {statement.degree}"
+        case sf.PrimeStatement():
+            lowering.diagnostics += prime(statement, scope)
+            return "the prime from here on"
+        case sf.SpaceStatement():
+            lowering.diagnostics += space(statement, scope)
+            return "a space"
+        case sf.OnStatement():
+            lowering.diagnostics += on(statement, scope)
+            return _classes_here(scope)
+        case sf.BasisStatement():
+            return "basis of one degree"
+    return "dimensions, degree by degree"
+
+
+def _classes_here(scope: Scope) -> str:
+    from opslang.render.text import class_text
+
+    here = scope.localised()
+    names = ", ".join(class_text(of) for of in here.classes) if here else ""
+    return f"space with {names}" if names else "a point at this prime"
+
+
+def of_value(value: Value) -> str:
+    """Sort and degree of a value."""
+    if value.sort == "scalar":
+        return "scalar"
+    return f"{value.sort}, {_degree(value)}"
+
+
+def _degree(value: Value) -> str:
+    return "of several degrees" if value.degree is None else f"degree {value.degree}"
+
+
+def _relation(statement: sf.RelationStatement, lowering: Lowering) -> str:
+    values = [lowering.sum(side) for side in statement.sides]
+    sorts: list[Sort] = [value.sort for value in values if value.sort != "scalar"]
+    if len(set(sorts)) > 1:
+        at = next(k for k, value in enumerate(values) if value.sort not in (sorts[0], "scalar"))
+        one, other = ("an operation", "a class") if sorts[0] == "operation" else ("a class", "an operation")
+        raise Refusal(Diagnostic("error", "sorts-differ", f"the left side is {one}, this side {other}", statement.sides[at].span))
+    kind = "relation" if not sorts else f"relation of {'classes' if sorts[0] == 'class' else 'operations'}"
+    degrees = list(dict.fromkeys(value.degree for value in values if value.sort != "scalar"))
+    if len(degrees) == 1:
+        return f"{kind}, {'of several degrees' if degrees[0] is None else f'degree {degrees[0]}'}"
+    if not degrees or None in degrees:
+        return kind
+    return f"{kind}: degrees {' and '.join(str(d) for d in degrees)} differ"
