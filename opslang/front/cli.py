@@ -10,6 +10,7 @@ from collections.abc import Callable
 from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
+from attrs import evolve
 
 from opslang import __version__
 
@@ -78,7 +79,7 @@ def run(scripts: tuple[str, ...], jobs: int, **shared: Any) -> int:
     """
     from opslang.front.batch import run as run_scripts
 
-    return run_scripts(scripts, _settings(**shared), jobs)
+    return run_scripts(scripts, evolve(_settings(**shared), echo=True), jobs)
 
 
 @opslang.command(name="eval", context_settings={"ignore_unknown_options": True})

@@ -43,6 +43,8 @@ class Settings:
     width: int = 80
     both: bool = False
     paint: Paint = plain
+    echo: bool = False
+    """Whether an expression is shown behind its result, as in a script of many."""
 
 
 @frozen
@@ -125,7 +127,7 @@ class Desk:
         for diagnostic in outcome.diagnostics:
             text = render(diagnostic, outcome.source, self._settings.paint, self._settings.width)
             pieces.append(("diagnostic", text + "\n"))
-        text = show(outcome, cast("Notation", self._settings.output), self._settings.width)
+        text = show(outcome, cast("Notation", self._settings.output), self._settings.width, self._settings.echo)
         if text:
             pieces.append(("result", text + "\n"))
         return Answer(tuple(pieces), status, True)

@@ -10,6 +10,10 @@ from opslang.render.text import Notation, element_text, monomial_text, term_text
 
 MARGIN = 28
 """The column at which degree and excess begin, where the result is short."""
+RELATION_MARGIN = 44
+"""The same for the degree of a relation."""
+ECHO = 52
+"""The same for the statement as written, behind its result."""
 MINUS: dict[str, str] = {"text": "left - right", "unicode": "left − right", "latex": "left - right"}
 
 
@@ -45,12 +49,12 @@ def sum_lines(element: Element, notation: Notation, width: int, indent: str = ""
     return columns([terms[0]] + ["+ " + term for term in terms[1:]], width, indent)
 
 
-def with_measure(lines: list[str], words: str, width: int) -> list[str]:
+def with_measure(lines: list[str], words: str, width: int, margin: int = MARGIN) -> list[str]:
     """The lines of an element with degree and excess behind the last one, or below it where they do not fit."""
     if not words:
         return lines
     last = lines[-1]
-    padded = last + " " * max(3, MARGIN - display_width(last)) + words
+    padded = last + " " * max(3, margin - display_width(last)) + words
     if len(lines) == 1 and display_width(padded) <= width:
         return [padded]
     return [*lines, "    " + words]
@@ -60,7 +64,8 @@ def _statement(outcome: Outcome) -> str:
     """The statement as written, its white space and comments reduced."""
     start, end = outcome.span
     lines = [line.split("#", 1)[0].rstrip().removesuffix("\\") for line in outcome.source.text[start:end].split("\n")]
-    return " ".join(" ".join(lines).split())
+    text = " ".join(" ".join(lines).split())
+    return text.removeprefix("why ") if outcome.kind == "derivation" else text
 
 
 def _relation(outcome: Outcome, notation: Notation, width: int) -> list[str]:
@@ -75,7 +80,11 @@ def _relation(outcome: Outcome, notation: Notation, width: int) -> list[str]:
     head = outcome.verdict.ljust(8)
     first = head + _statement(outcome)
     if outcome.verdict == "true":
-        return with_measure([first], measure(outcome.degree, None), width) if outcome.degree is not None else [first]
+        return (
+            with_measure([first], measure(outcome.degree, None), width, RELATION_MARGIN)
+            if outcome.degree is not None
+            else [first]
+        )
     lines = [first]
     indent = " " * 8
     if outcome.message:
@@ -116,23 +125,46 @@ def _listing(outcome: Outcome, notation: Notation, width: int) -> list[str]:
     return [head, *columns(names, width, "    ")]
 
 
-def show(outcome: Outcome, notation: Notation = "text", width: int = 80) -> str:
-    """What the statement prints, without a final line end; empty for declarations and errors."""
+def _derivations(outcome: Outcome, notation: Notation, width: int) -> list[str]:
+    """The derivations of a statement; of the sides of a relation those that have steps, each under its name."""
+    from opslang.render.derivation import align
+    from opslang.render.derivation import lines as steps
+
+    lines: list[str] = []
+    for number, derivation in enumerate(outcome.derivations):
+        if outcome.sides and not derivation.steps:
+            continue
+        if outcome.sides and notation != "latex":
+            lines.append(f"side {number + 1}" if len(outcome.sides) > 2 else ("left side", "right side")[number])
+        lines += [align(derivation)] if notation == "latex" else list(steps(derivation, notation, width))
+    return lines
+
+
+def show(outcome: Outcome, notation: Notation = "text", width: int = 80, echo: bool = False) -> str:
+    """What the statement prints, without a final line end; empty for declarations and errors.
+
+    With `echo` an expression that was not in canonical form stands behind its result, as a comment.
+    """
     if outcome.verdict == "error" or outcome.kind == "declaration":
         return ""
     if outcome.kind == "listing":
         return "\n".join(_listing(outcome, notation, width))
-    lines: list[str] = []
-    if outcome.kind == "derivation":
-        from opslang.render.derivation import align
-        from opslang.render.derivation import lines as steps
-
-        for derivation in outcome.derivations:
-            lines += [align(derivation)] if notation == "latex" else list(steps(derivation, notation, width))
+    lines = _derivations(outcome, notation, width) if outcome.kind == "derivation" else []
     if outcome.sides:
         lines += _relation(outcome, notation, width)
     elif outcome.element is not None and outcome.kind == "element":
         words = measure(outcome.degree, outcome.excess) if notation != "latex" else ""
-        lines += with_measure(sum_lines(outcome.element, notation, width), words, width)
+        shown = with_measure(sum_lines(outcome.element, notation, width), words, width)
+        written = _statement(outcome)
+        if echo and notation != "latex" and written != element_text(outcome.element, notation):
+            shown = _echoed(shown, written, width)
+        lines += shown
     return "\n".join(lines)
 
+
+def _echoed(lines: list[str], written: str, width: int) -> list[str]:
+    last = lines[-1] + " " * max(3, ECHO - display_width(lines[-1])) + "# " + written
+    if display_width(last) <= width:
+        return [*lines[:-1], last]
+    room = max(width - 6, 20)
+    return [*lines, "    # " + (written if display_width(written) <= room else written[: room - 1] + "…")]

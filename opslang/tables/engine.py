@@ -153,6 +153,7 @@ class Evaluation:
         Factors are tried in order of length; each is a letter times the factor one shorter, while those stay small.
         """
         budget, algebra = self.engine.budget, self.algebra
+        budget.left = _EASY
         factors: list[Any] = [algebra.normal(word[at : at + 1]) for at in range(len(word))]
         for length in range(2, len(word) + 1):
             longer: list[Any] = []

@@ -145,22 +145,39 @@ def series(p: int, classes: Sequence[Class], to: int) -> list[int]:
 def basis(p: int, classes: Sequence[Class], degree: int, budget: Budget) -> list[Monomial]:
     """The monomials of one degree, in canonical order; TooLarge when they are more than the budget allows."""
     available = generators(p, classes, degree, budget)
+    reach = _reachable(p, available, degree)
     found: list[Monomial] = []
     # Depth first over the generators: what is left of the degree, where to go on, the monomial so far.
     stack: list[tuple[int, int, Monomial]] = [(degree, 0, ())]
     while stack:
         left, at, monomial = stack.pop()
-        if left == 0:
-            budget.spend(1)
+        while left and reach[at] >> left & 1:
+            generator, d = available[at]
+            at += 1
+            for exponent in range(1, (1 if squares_to_zero(generator, d, p) else left // d) + 1 if d <= left else 1):
+                rest = left - exponent * d
+                if reach[at] >> rest & 1:
+                    budget.spend(1)
+                    stack.append((rest, at, (*monomial, (generator, exponent))))
+        if not left:
             found.append(monomial)
-            continue
-        for k in range(at, len(available)):
-            generator, d = available[k]
-            if d > left:
-                continue
-            most = 1 if squares_to_zero(generator, d, p) else left // d
-            for exponent in range(1, most + 1):
-                stack.append((left - exponent * d, k + 1, (*monomial, (generator, exponent))))
-            budget.spend(most)
     found.sort(key=lambda monomial: monomial_key(monomial, p))
     return found
+
+
+def _reachable(p: int, available: list[tuple[Generator, int]], degree: int) -> list[int]:
+    """For each number of generators passed over, the degrees that the others reach, as bits of an int."""
+    within = (1 << degree + 1) - 1
+    reach = [1]
+    for generator, d in reversed(available):
+        bits = reach[-1]
+        if squares_to_zero(generator, d, p):
+            bits |= bits << d & within
+        else:
+            step = d
+            while step <= degree:
+                bits |= bits << step & within
+                step *= 2
+        reach.append(bits)
+    reach.reverse()
+    return reach

@@ -11,7 +11,7 @@ coefficient; the decoding is then done by `itertools.compress` in C.
 
 from __future__ import annotations
 
-from collections.abc import Collection, Iterable
+from collections.abc import Callable, Collection, Iterable
 from itertools import compress
 
 from opslang.laws.adem import iter_squares
@@ -51,6 +51,72 @@ def _row_table(b: int) -> list[int]:
     return _ROWS[b]
 
 
+class Products(dict[int, Collection[int]]):
+    """Remembered products Sq^a w, w admissible and Sq^a w not: the key is w << width | a.  Missing ones are computed.
+
+    Values are distinct words in no order, and are not to be changed.
+    """
+
+    __slots__ = ("_budget", "_entries", "_held", "_mask", "_pair", "_stored", "_width")
+
+    def __init__(self, pair: Callable[[int, int], list[int]], width: int, budget: Budget, entries: int, stored: int) -> None:
+        super().__init__()
+        self._pair = pair
+        self._width = width
+        self._mask = (1 << width) - 1
+        self._budget = budget
+        self._entries = entries
+        self._stored = stored
+        self._held = 0
+
+    def __missing__(self, key: int) -> Collection[int]:
+        width, mask = self._width, self._mask
+        a = key & mask
+        word = key >> width
+        b = word & mask
+        rest = word >> width
+        if not rest:
+            return self._keep(key, self._pair(a, b))
+        bound = 2 * (rest & mask)
+        shifted = rest << width
+        result: set[int] = set()
+        toggle = result.symmetric_difference_update
+        for x in self[b << width | a]:
+            k = x & mask
+            j = x >> width
+            if j >= bound:
+                toggle(((shifted | j) << width | k,))
+            elif j:
+                inner = self[shifted | j]
+                if inner:
+                    half = k >> 1
+                    part = []
+                    for y in inner:
+                        if y & mask <= half:
+                            part.append(y << width | k)
+                        else:
+                            other = self[y << width | k]
+                            if other:
+                                toggle(other)
+                    if part:
+                        toggle(part)
+            elif k >= bound:
+                toggle((shifted | k,))
+            else:
+                toggle(self[shifted | k])
+        return self._keep(key, result or EMPTY)
+
+    def _keep(self, key: int, value: Collection[int]) -> Collection[int]:
+        held = len(value)
+        self._budget.spend(held + 1)
+        if len(self) >= self._entries or self._held > self._stored:
+            self.clear()
+            self._held = 0
+        self._held += held
+        self[key] = value
+        return value
+
+
 class Squares:
     """Products in the Steenrod algebra at p = 2 of words whose exponents are below 2**width."""
 
@@ -58,11 +124,7 @@ class Squares:
         self.width = width
         self.mask = (1 << width) - 1
         self.budget = budget
-        self._memo: dict[int, Collection[int]] = {}
-        self._rows: dict[int, Collection[int]] = {}
-        self._entries = entries
-        self._stored = stored
-        self._held = 0
+        self._products = Products(self.pair, width, budget, entries, stored)
 
     def pack(self, word: Iterable[int]) -> Packed:
         """The packed form of a word without Sq^0."""
@@ -83,12 +145,10 @@ class Squares:
 
     def pair(self, a: int, b: int) -> list[Packed]:
         """Sq^a Sq^b, 0 < a < 2b, in canonical order."""
+        step, first = self.mask, a + b
         if b < _TABLE:
             lanes = (_ROWS[b] if b < len(_ROWS) else _row_table(b))[a]
-            step = self.mask
-            first = a + b
             return list(compress(range(first, first + step * (a // 2 + 1), step), lanes.to_bytes(a // 2 + 1, "little")))
-        step, first = self.mask, a + b
         spend = self.budget.spend
         terms = []
         for _, j in iter_squares(a, b):
@@ -96,90 +156,34 @@ class Squares:
             terms.append(first + step * j)
         return terms
 
-    def row(self, a: int, b: int) -> Collection[Packed]:
-        """`pair`, remembered."""
-        key = b << self.width | a
-        found = self._rows.get(key)
-        if found is None:
-            found = self.pair(a, b)
-            if len(found) < _TABLE:
-                if len(self._rows) >= self._entries:
-                    self._rows.clear()
-                self._rows[key] = found
-        return found
-
     def product(self, a: int, word: Packed) -> Collection[Packed]:
         """Sq^a times an admissible word with which it is not admissible; distinct words, in no order."""
-        width, mask = self.width, self.mask
-        rest = word >> width
-        if not rest:
-            return self.pair(a, word)
-        memo = self._memo
-        key = word << width | a
-        found = memo.get(key)
-        if found is not None:
-            return found
-        product = self.product
-        bound = 2 * (rest & mask)
-        shifted = rest << width
-        result: set[int] = set()
-        toggle = result.symmetric_difference_update
-        add = result.add
-        for pair in self.row(a, word & mask):
-            k, j = pair & mask, pair >> width
-            if j >= bound:
-                add((shifted | j) << width | k)
-            elif j:
-                inner = memo.get(shifted | j)
-                if inner is None:
-                    inner = product(j, rest)
-                half = k >> 1
-                good = [x << width | k for x in inner if x & mask <= half]
-                if good:
-                    toggle(good)
-                if len(good) != len(inner):
-                    for x in inner:
-                        if x & mask > half:
-                            other = memo.get(x << width | k)
-                            toggle(product(k, x) if other is None else other)
-            elif k >= bound:
-                toggle((shifted | k,))
-            else:
-                toggle(product(k, rest))
-        held = len(result)
-        self.budget.spend(held + 1)
-        if len(memo) >= self._entries or self._held > self._stored:
-            memo.clear()
-            self._held = 0
-        self._held += held
-        memo[key] = result if result else EMPTY
-        return result
+        return self._products[word << self.width | a]
 
-    def times(self, a: int, element: Iterable[Packed]) -> set[Packed]:
+    def times(self, a: int, element: Collection[Packed]) -> set[Packed]:
         """Sq^a (a > 0) times an element in canonical form."""
         width, mask = self.width, self.mask
         half = a >> 1
         result: set[int] = set()
-        tops = []
         for x in element:
             if x & mask <= half:
                 result.add(x << width | a)
-            else:
-                tops.append(x)
-        toggle = result.symmetric_difference_update
-        for x in tops:
-            toggle(self.product(a, x))
+        if len(result) != len(element):
+            products, toggle = self._products, result.symmetric_difference_update
+            for x in element:
+                if x & mask > half:
+                    other = products[x << width | a]
+                    if other:
+                        toggle(other)
         self.budget.spend(len(result))
         return result
 
-    def normal(self, word: tuple[int, ...]) -> Iterable[Packed]:
+    def normal(self, word: tuple[int, ...]) -> Collection[Packed]:
         """The canonical form of a word of positive exponents: distinct admissible words, in no order."""
         if len(word) == 2:
             a, b = word
-            if a < 2 * b:
-                return self.pair(a, b)
-            return (b << self.width | a,)
-        element: Iterable[int] = (0,)
+            return self.pair(a, b) if a < 2 * b else (b << self.width | a,)
+        element: Collection[int] = (0,)
         for a in reversed(word):
             element = self.times(a, element)
             if not element:
