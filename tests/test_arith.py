@@ -25,13 +25,7 @@ def test_small_binomials(p: int) -> None:
 def test_binomials_outside_the_triangle_are_zero() -> None:
     """A lower argument outside 0 … upper, and every negative upper argument (the convention of Adem's relations)."""
     for p in PRIMES:
-        assert (
-            binomial_mod(-1, 0, p)
-            == binomial_mod(-3, 2, p)
-            == binomial_mod(5, -1, p)
-            == binomial_mod(5, 6, p)
-            == 0
-        )
+        assert binomial_mod(-1, 0, p) == binomial_mod(-3, 2, p) == binomial_mod(5, -1, p) == binomial_mod(5, 6, p) == 0
         assert binomial_mod(0, 0, p) == 1
 
 
@@ -85,9 +79,7 @@ def test_digits_rebuild_the_number(n: int, p: int) -> None:
 
 
 def test_primes_against_sympy() -> None:
-    assert [n for n in range(-3, 5000) if is_prime(n)] == [
-        n for n in range(-3, 5000) if isprime(n)
-    ]
+    assert [n for n in range(-3, 5000) if is_prime(n)] == [n for n in range(-3, 5000) if isprime(n)]
 
 
 @settings(deadline=None, max_examples=100)

@@ -51,14 +51,8 @@ def test_degree_is_additive(p: int, letters: list[int]) -> None:
 
 def test_admissible_words_by_hand() -> None:
     """i_j >= 2 i_(j+1); s_j >= p s_(j+1) + eps_j (Steenrod and Epstein 1962, ch. I and VI)."""
-    assert all(
-        is_admissible(w, 2)
-        for w in [(), (1,), (7,), (2, 1), (4, 2, 1), (5, 2, 1), (2, -2)]
-    )
-    assert not any(
-        is_admissible(w, 2)
-        for w in [(1, 1), (1, 2), (2, 2), (4, 2, 2), (3, 2), (1, -2)]
-    )
+    assert all(is_admissible(w, 2) for w in [(), (1,), (7,), (2, 1), (4, 2, 1), (5, 2, 1), (2, -2)])
+    assert not any(is_admissible(w, 2) for w in [(1, 1), (1, 2), (2, 2), (4, 2, 2), (3, 2), (1, -2)])
     assert all(
         is_admissible(w, 3)
         for w in [
@@ -72,10 +66,7 @@ def test_admissible_words_by_hand() -> None:
             (1, -2),
         ]
     )
-    assert not any(
-        is_admissible(w, 3)
-        for w in [(0, 0), (1, 1), (2, 1), (3, 0, 1), (0, -2), (5, 2)]
-    )
+    assert not any(is_admissible(w, 3) for w in [(0, 0), (1, 1), (2, 1), (3, 0, 1), (0, -2), (5, 2)])
 
 
 def test_dimensions_of_the_algebra() -> None:
@@ -126,9 +117,7 @@ def of_generators(words: list[Word], p: int, n: int, top: int) -> Series:
         if excess(word, p) < n or (p > 2 and begins and excess(word, p) == n):
             total = n + degree(word, p)
             if total <= top:
-                (times_exterior if p > 2 and total % 2 else times_geometric)(
-                    series, total
-                )
+                (times_exterior if p > 2 and total % 2 else times_geometric)(series, total)
     return series
 
 
@@ -157,14 +146,10 @@ def test_excess_gives_cartans_series(p: int, top: int, n: int) -> None:
         assert of_generators(integral, p, n, top) == iterated_bar(p, 0, n, top)
 
 
-@pytest.mark.parametrize(
-    ("p", "n", "top"), [(2, 2, 40), (2, 3, 30), (3, 2, 50), (3, 3, 40), (5, 2, 90)]
-)
+@pytest.mark.parametrize(("p", "n", "top"), [(2, 2, 40), (2, 3, 30), (3, 2, 50), (3, 3, 40), (5, 2, 90)])
 def test_words_that_end_in_a_higher_bockstein(p: int, n: int, top: int) -> None:
     """K(Z/p^k, n), k >= 2: the last Bockstein read as beta_k has the degree and excess of the Bockstein."""
-    plain = [
-        word for word in admissible_words(p, top - n) if not ends_in_bockstein(word, p)
-    ]
+    plain = [word for word in admissible_words(p, top - n) if not ends_in_bockstein(word, p)]
     higher = admissible_words(p, top - n, last=(-2,))
     expected = serre(n, top) if p == 2 else iterated_bar(p, 1, n, top)
     assert of_generators(plain + higher, p, n, top) == expected
@@ -191,10 +176,7 @@ def test_words_vanish_below_their_excess(p: int, top: int) -> None:
 
 def test_excess_by_hand() -> None:
     """e(Sq^I) = 2 i_1 - |I|; e = 2p s_1 + 2 eps_0 - |I| at odd p (Serre 1953; Cartan 1954-55)."""
-    assert [
-        excess(w, 2)
-        for w in [(), (1,), (4,), (2, 1), (4, 2, 1), (5, 2), (2, -2), (-2,)]
-    ] == [
+    assert [excess(w, 2) for w in [(), (1,), (4,), (2, 1), (4, 2, 1), (5, 2), (2, -2), (-2,)]] == [
         0,
         1,
         4,
@@ -204,9 +186,7 @@ def test_excess_by_hand() -> None:
         1,
         1,
     ]
-    assert [
-        excess(w, 3) for w in [(), (0,), (1,), (0, 1), (1, 0), (0, 1, 0), (3, 1), (-2,)]
-    ] == [
+    assert [excess(w, 3) for w in [(), (0,), (1,), (0, 1), (1, 0), (0, 1, 0), (3, 1), (-2,)]] == [
         0,
         1,
         2,

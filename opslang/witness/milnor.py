@@ -190,7 +190,7 @@ def conjugate_letter(token: int, p: int) -> Milnor:
 
 
 def conjugate(word: Word, p: int) -> Milnor:
-    """chi of a word: the conjugates of its letters in the other order, with the sign for Bocksteins passing each other."""
+    """chi of a word: the conjugates of its letters in reverse, with the sign for Bocksteins passing each other."""
     result: Milnor = {UNIT: 1}
     odd = word.count(0)
     for token in reversed(word):

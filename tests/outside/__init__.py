@@ -1,1 +1,1 @@
-"""Reference computations for the tests, made with other people's libraries or by other theorems.  Imports nothing of opslang."""
+"""Reference computations for the tests, with general libraries or by other theorems.  Imports nothing of opslang."""

@@ -43,14 +43,10 @@ class FlintPolynomials:
                 if m[self.n + j]:
                     key = list(m)
                     key[self.n + j], key[j] = 0, key[j] + 1
-                    total[tuple(key)] = (
-                        total.get(tuple(key), 0) + sign * int(c)
-                    ) % self.p
+                    total[tuple(key)] = (total.get(tuple(key), 0) + sign * int(c)) % self.p
                     sign = -sign
         return self.context.from_dict(total)
 
     def terms(self, f: Any) -> dict[tuple[int, ...], int]:
         """From the exponents (x_1 … x_n, y_1 … y_n) to coefficients 1 … p-1."""
-        return {
-            m[:-1]: int(c) % self.p for m, c in f.to_dict().items() if int(c) % self.p
-        }
+        return {m[:-1]: int(c) % self.p for m, c in f.to_dict().items() if int(c) % self.p}

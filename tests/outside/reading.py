@@ -37,9 +37,7 @@ class Reader:
             if not found:
                 raise ValueError(f"cannot read {text[at:]!r}")
             name, index, word, number, mark = found.groups()
-            self.tokens.append(
-                (name or word or mark or "number", index or number or "")
-            )
+            self.tokens.append((name or word or mark or "number", index or number or ""))
             at = found.end()
         self.tokens.append(("end", ""))
         self.at = 0

@@ -34,9 +34,7 @@ def one(top: int) -> Series:
     return [1] + [0] * top
 
 
-def _heights(
-    length: int, room: int, most: int | None = None
-) -> Iterator[tuple[int, ...]]:
+def _heights(length: int, room: int, most: int | None = None) -> Iterator[tuple[int, ...]]:
     """h_1 >= … >= h_length >= 0 with the sum of 2^h at most the room."""
     if length == 0:
         yield ()

@@ -29,9 +29,7 @@ class SympyPolynomials:
     def power(self, i: int, f: Any) -> Any:
         """P^i f (at p = 2: Sq^i f)."""
         total = f.compose([(x, x + self.t * x**self.p) for x in self.x])
-        return self.ring.from_dict(
-            {(*m[:-1], 0): c for m, c in total.terms() if m[-1] == i}
-        )
+        return self.ring.from_dict({(*m[:-1], 0): c for m, c in total.terms() if m[-1] == i})
 
     sq = power
 
@@ -42,9 +40,7 @@ class SympyPolynomials:
             sign = 1
             for j in range(self.n):
                 if m[self.n + j]:
-                    total += (
-                        sign * self.x[j] * self.ring.from_dict({m: c}).diff(self.y[j])
-                    )
+                    total += sign * self.x[j] * self.ring.from_dict({m: c}).diff(self.y[j])
                     sign = -sign
         return total
 
