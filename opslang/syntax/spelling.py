@@ -72,6 +72,7 @@ _FLAGS = re.VERBOSE | re.DOTALL
 _PLAIN_TOKEN = re.compile(_SHAPES, _FLAGS)
 _TEX_TOKEN = re.compile(_SHAPES.replace(r"(?P<comment>\#", r"(?P<comment>[\#%]"), _FLAGS)
 _SKIPPED = frozenset(("space", "comment", "joint"))
+_EMPTY = re.compile(r"\s*\}")
 _PIECES = re.compile(r"Sq|[A-Za-z]")
 _CLOSERS = {"RPAR": "LPAR", "RSQUARE": "LSQUARE", "RBRACE": "LBRACE"}
 _OPENERS = frozenset(_CLOSERS.values())
@@ -269,7 +270,9 @@ class Reading:
 
     def _sign(self, meaning: Meaning, start: int, end: int) -> None:
         kind, value = meaning
-        if kind in _OPENERS:
+        if kind == "LBRACE" and _EMPTY.match(self.text, end) and self._previous() not in ("CARET", "UNDER"):
+            self._open.append((kind, "layout", Token(kind, value, start, end)))
+        elif kind in _OPENERS:
             self._opened(kind, value, start, end)
         elif kind in _CLOSERS:
             self._closing(kind, value, start, end)
@@ -352,11 +355,11 @@ class Reading:
             self._fault("unclosed-bracket", f"this {token.value} is never closed", token.start, token.end, help)
             self.stop = True
             return
-        while self.tex and self._previous() in ("DOT", "COMMA"):
+        while len(self.tokens) > 1 and self._previous() in ("DOT", "COMMA"):
             self.tokens.pop()
         for token in self.tokens:
             if token.kind == "DOT":
-                help = "a statement ends with its line; a final full stop falls away in TeX spelling only"
+                help = "a statement ends with its line; only a final full stop falls away"
                 self._fault("invalid-character", "a full stop has no meaning here", token.start, token.end, help, "")
 
 

@@ -226,11 +226,11 @@ SUBSCRIPTS: dict[str, str] = {
 }
 PRIMES: dict[str, int] = {"'": 1, "′": 1, "’": 1, "″": 2, "‴": 3, "⁗": 4}
 
-_TEX = re.compile(r"#[^\n]*|(\\(?![ \t]*(?:\r?\n|\Z))|\$)")
+_TEX = re.compile(r"#[^\n]*|(\\(?![ \t]*(?:\r?\n|\Z))|[$&~])")
 
 
 def is_tex(text: str) -> bool:
-    """Whether a statement is in TeX spelling: it holds a TeX command or a dollar sign outside its comments."""
-    if "\\" not in text and "$" not in text:
+    """Whether a statement is in TeX spelling: it holds a TeX command, `$`, `&` or `~` outside its comments."""
+    if "\\" not in text and "$" not in text and "&" not in text and "~" not in text:
         return False
     return any(found.group(1) for found in _TEX.finditer(text))
