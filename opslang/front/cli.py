@@ -5,6 +5,7 @@ Everything heavy is loaded by the command that needs it, so that a single line i
 
 from __future__ import annotations
 
+import os
 import sys
 from collections.abc import Callable
 from typing import TYPE_CHECKING, Any, TypeVar
@@ -65,7 +66,7 @@ def opslang(context: click.Context) -> int:
     Exit status: 0 all well; 1 a relation is false or undecided; 2 an error in the input or its use;
     130 after an interrupt.
     """
-    return _shell(context) if context.invoked_subcommand is None else 0
+    return _shell() if context.invoked_subcommand is None else 0
 
 
 @opslang.command()
@@ -129,26 +130,32 @@ def explain(context: click.Context, name: str | None, width: int | None) -> int:
 
 
 @opslang.command()
-@click.pass_context
-def shell(context: click.Context) -> int:
-    """Ask and be answered, line by line."""
-    return _shell(context)
+@click.option(
+    "--keys", type=click.Choice(("emacs", "vi")), default="emacs", show_default=True, help="Keys of the editor."
+)
+@_shared
+def shell(keys: str, **shared: Any) -> int:
+    """Ask and be answered, line by line.
+
+    What does not come from a terminal is run as a script.
+    """
+    return _shell(keys, **shared)
 
 
-def _shell(context: click.Context) -> int:
-    from importlib import import_module
+def _shell(
+    keys: str = "emacs", prime: int = 2, output: str = "text", limit: int | None = None, width: int | None = None,
+    both: bool = False, colour: str = "auto",
+) -> int:  # fmt: skip
+    from opslang.front.output import on_terminal
 
-    from opslang.front.output import on_terminal, print_result
-
-    if not on_terminal(sys.stdin):
+    dumb = os.environ.get("TERM") == "dumb"
+    if dumb or output == "jsonl" or not on_terminal(sys.stdin) or not on_terminal(sys.stdout):
         from opslang.front.batch import run as run_scripts
 
-        return run_scripts(("-",), _settings("text", 2, None, None, False, "auto"))
-    try:
-        room = import_module("opslang.front.shell")
-    except ModuleNotFoundError:
-        return print_result((context.parent or context).get_help())
-    return int(room.main())
+        return run_scripts(("-",), _settings(output, prime, limit, width, both, colour))
+    from opslang.front.shell import main as converse
+
+    return converse(prime, limit, output, both, keys, colour)
 
 
 def _like(word: str, context: click.Context) -> list[str]:

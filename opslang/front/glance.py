@@ -1,4 +1,4 @@
-"""Looks at a statement without computing: sort, degree, or what is wrong and where.  Knows parsing and lowering only."""
+"""Looks at a statement without computing: sort, degree, or what is wrong.  Knows parsing and lowering only."""
 
 from __future__ import annotations
 
@@ -145,7 +145,9 @@ def _relation(statement: sf.RelationStatement, lowering: Lowering) -> str:
     if len(set(sorts)) > 1:
         at = next(k for k, value in enumerate(values) if value.sort not in (sorts[0], "scalar"))
         one, other = ("an operation", "a class") if sorts[0] == "operation" else ("a class", "an operation")
-        raise Refusal(Diagnostic("error", "sorts-differ", f"the left side is {one}, this side {other}", statement.sides[at].span))
+        raise Refusal(
+            Diagnostic("error", "sorts-differ", f"the left side is {one}, this side {other}", statement.sides[at].span)
+        )
     kind = "relation" if not sorts else f"relation of {'classes' if sorts[0] == 'class' else 'operations'}"
     degrees = list(dict.fromkeys(value.degree for value in values if value.sort != "scalar"))
     if len(degrees) == 1:

@@ -46,7 +46,7 @@ class Entry:
 
 @frozen
 class Expanded:
-    """A line as it is run; `edits` are (start, end, start, end): where a reference was typed and where its name stands."""
+    """A line as it is run; `edits`: start and end of each reference as typed, start and end of the name for it."""
 
     text: str
     edits: tuple[tuple[int, int, int, int], ...] = ()
@@ -125,7 +125,9 @@ class Logbook:
             entry = self.result(int(digits) if digits else None, found.span())
             number = entry.number or 0
             if entry.before.prime != scope.prime:
-                words = f"result {number} was found at the prime {entry.before.prime}, and the prime is now {scope.prime}"
+                words = (
+                    f"result {number} was found at the prime {entry.before.prime}, and the prime is now {scope.prime}"
+                )
                 raise Refusal(error("no-such-result", words, found.span()))
             self._check_length(entry, found.span())
             key = self._key(number, text, scope)
@@ -274,5 +276,10 @@ def as_typed(diagnostic: Diagnostic, line: Expanded) -> Diagnostic:
         help=words(diagnostic.help),
         mend=diagnostic.mend and words(diagnostic.mend),
         span=line.typed_span(diagnostic.span),
-        labels=tuple([evolve(label, span=line.typed_span(label.span), message=words(label.message)) for label in diagnostic.labels]),
+        labels=tuple(
+            [
+                evolve(label, span=line.typed_span(label.span), message=words(label.message))
+                for label in diagnostic.labels
+            ]
+        ),
     )

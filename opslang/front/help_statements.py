@@ -1,0 +1,122 @@
+"""Help on statements: of the language, and of the shell.  Text only; the tests and `help` run the examples."""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+
+class Topic(NamedTuple):
+    """One page: what the word means, lines to try, and words that lead to the same page."""
+
+    text: str
+    example: tuple[str, ...] = ()
+    also: tuple[str, ...] = ()
+
+
+STATEMENTS: dict[str, Topic] = {
+    "expression": Topic(
+        "A line that is a formula is brought to its canonical form, with degree and excess. "
+        "An operation acts on the one factor at its right: brackets let it act on a product.",
+        ("let x, y in H^2", "Sq^2 (x y)", "Sq^4 Sq^2 iota_3"),
+        ("formula", "normalise"),
+    ),
+    "relation": Topic(
+        "Formulas with = between them are compared: true, or false with the difference. Chains a = b = c are "
+        "compared link by link.",
+        ("Sq^2 Sq^2 = Sq^3 Sq^1", "Sq^2 Sq^2 iota_3 = Sq^3 Sq^1 iota_3"),
+        ("=", "compare"),
+    ),
+    "let": Topic(
+        "Declares classes, of which nothing but the degree is known, or abbreviates an expression. With "
+        "coefficients Z or Z/m the class is the reduction of an integral or a Z/m class, and its Bocksteins "
+        "follow.",
+        ("let x, y in H^2", "let c in H^3(X; Z)", "let u = Sq^1 x + c", "Sq^1 u"),
+    ),
+    "prime": Topic(
+        "Chooses the prime. Classes and abbreviations declared so far are dropped; spaces stay.",
+        ("prime 3", "P^1 P^1 = 2 P^2"),
+    ),
+    "space": Topic(
+        "Names a space: an Eilenberg-MacLane space or a product of them.",
+        ("space X = K(Z/4, 3) x K(Z, 5)", "on X", "beta_2 iota_3"),
+    ),
+    "on": Topic("Chooses the space that iota_n belongs to from here on.", ("on K(Z, 3)", "Sq^1 iota_3 = 0")),
+    "why": Topic(
+        "Derives an expression or a relation, law by law. In the shell `why` alone derives the last answer, and "
+        "`why that_3` result 3.",
+        ("why Sq^2 Sq^2 iota_3",),
+        ("derivation", "explain"),
+    ),
+    "basis": Topic(
+        "Lists the basis of one degree of the cohomology of a space; without a space, of the current one.",
+        ("basis H^9(K(Z/2, 3))",),
+    ),
+    "series": Topic(
+        "Gives the dimensions of the cohomology of a space from degree 0 on.",
+        ("series K(Z/4, 3) to 12",),
+        ("dimension", "poincare series"),
+    ),
+    "comment": Topic(
+        "Everything from # to the end of the line is a comment. A line that is one is kept in a saved session.",
+        ("# the first relation", "Sq^1 Sq^1 = 0"),
+        ("#",),
+    ),
+}
+"""The statements of the language."""
+
+SHELL: dict[str, Topic] = {
+    "help": Topic(
+        "`help` lists the topics; `help excess` opens one. Names of diagnostics and laws are topics too.",
+        ("help excess",),
+    ),
+    "that": Topic(
+        "`that` stands for the last result, `that_3` for result 3: the number of the prompt at which it was "
+        "found. A false relation leaves its difference as a result. In a saved session a reference becomes a name"
+        " with a `let` line of its own.",
+        ("Sq^2 iota_3", "Sq^1 that"),
+        ("result", "last"),
+    ),
+    "declared": Topic("Lists the prime, the space, and every name with its meaning.", ("let x in H^2", "declared")),
+    "results": Topic("Lists the results by number.", ("Sq^2 Sq^2", "results")),
+    "undo": Topic(
+        "Takes back the last declaration (let, space, on, prime), and those results after it that rest on it; "
+        "others stay.",
+        ("let x in H^2", "undo"),
+    ),
+    "notation": Topic(
+        "Chooses how results are written: as text, in Unicode, or in TeX. All three can be read back.",
+        ("notation unicode", "Sq^2 Sq^2 iota_3", "notation latex", "that"),
+    ),
+    "keys": Topic(
+        "Chooses the keys of the line editor: those of Emacs or those of vi.",
+        ("keys vi", "keys emacs"),
+        ("emacs", "vi"),
+    ),
+    "copy": Topic(
+        "Writes the TeX of the last answer, or of a result by number, and puts it on the clipboard where the "
+        "terminal allows it (by the escape OSC 52).",
+        ("Sq^2 Sq^2 iota_3", "copy"),
+        ("clipboard",),
+    ),
+    "save": Topic(
+        "Writes the session as a script that `opslang run` answers alike. A file that exists is kept, unless "
+        "`save over FILE` says otherwise.",
+        (),
+        ("script",),
+    ),
+    "read": Topic("Runs the lines of a script as if they were typed here.", ()),
+    "limit": Topic(
+        "Shows or sets the number of terms that one computation may work with. Ctrl-C stops a computation at any time.",
+        ("limit 5000000",),
+    ),
+    "afresh": Topic("Forgets everything said in this session and begins a new one.", ("afresh",)),
+    "leave": Topic("Ends the session, as Ctrl-D on an empty line does.", ()),
+    "editing": Topic(
+        "Enter runs the input, or goes on to a next line while a bracket is open or an operator stands at the "
+        "end; Alt-Enter always begins a next line. Tab completes: \\iota becomes its sign. Ctrl-R searches earlier"
+        " lines; Up finds those that begin alike. Ctrl-C drops the input, or stops a computation.",
+        (),
+        ("tab", "enter", "history", "search", "keyboard"),
+    ),
+}
+"""The statements of the shell, and what else belongs to it."""
