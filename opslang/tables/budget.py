@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-DEFAULT_LIMIT = 3_000_000
-"""Terms that one statement may work with, unless a flag says otherwise: about two seconds and 300 MB here."""
+DEFAULT_LIMIT = 1_000_000
+"""Terms that one statement may work with, unless a flag says otherwise: one to two seconds, and at most some 300 MB."""
 
 
 class TooLarge(Exception):

@@ -8,6 +8,7 @@ large the rest of it is.
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import Any
 
 from opslang.ir.order import word_key
@@ -81,6 +82,12 @@ class Engine:
         pairs = [(unpack(x), 1) for x in element] if p == 2 else [(unpack(x), c) for x, c in element.items()]
         pairs.sort(key=lambda pair: (word_degree(pair[0], p), word_key(pair[0], p)))
         return OperationElement(p, tuple(pairs))
+
+
+def sorted_keys(waiting: dict[int, Any], below: int) -> Iterator[int]:
+    """The keys below a bound, least first, of a dict that grows at greater keys meanwhile."""
+    while (least := min(waiting, default=below)) < below:
+        yield least
 
 
 class Evaluation:
@@ -182,16 +189,22 @@ class Evaluation:
         return self.times(self.operation(op), element)
 
     def times(self, f: Any, g: Any) -> Any:
-        """The product of two elements of the algebra."""
-        result = self.ring.zero()
+        """The product of two elements of the algebra.  Words of the left one with a common end share the work on it."""
         unpack = self.algebra.unpack
-        for x in f:
-            part = g
-            for token in reversed(unpack(x)):
-                part = self.algebra.times(token, part)
-                if not part:
-                    break
-            self.ring.add(result, part, 1 if self.prime == 2 else f[x])
+        return self._times([(unpack(x), 1 if self.prime == 2 else f[x]) for x in f], g)
+
+    def _times(self, words: list[tuple[ir.Word, int]], g: Any) -> Any:
+        result = self.ring.zero()
+        by_end: dict[int, list[tuple[ir.Word, int]]] = {}
+        for word, c in words:
+            if word:
+                by_end.setdefault(word[-1], []).append((word[:-1], c))
+            else:
+                self.ring.add(result, g, c)
+        for token, rest in by_end.items():
+            part = self.algebra.times(token, g)
+            if part:
+                self.ring.add(result, self._times(rest, part))
         return result
 
     def op_power(self, base: Any, exponent: int) -> Any:
@@ -345,13 +358,15 @@ class Evaluation:
         waiting: dict[int, Any] = {0: element}
         top = max((ring.degree(x) for x in element), default=0)
         step = 1 if self.prime == 2 else 2 * (self.prime - 1)
-        for n in range(token):
-            value = waiting.pop(n, None)
+        for n in sorted_keys(waiting, token):
+            value = waiting.pop(n)
             if not value:
                 continue
             reach = top + n * step if self.prime == 2 else (top + n * step) // 2
-            for i in range(1, min(token - n, reach) + 1):
-                self.engine.budget.spend(1)
+            # on the p^j-th power of something only every p^j-th operation is not 0
+            every = min(ring.root_exponent(x) for x in value)
+            for i in range(every, min(token - n, reach) + 1, every):
+                self.engine.budget.spend(4)
                 part = ring.letter(i, value)
                 if part:
                     ring.add(waiting.setdefault(n + i, ring.zero()), part, -1)

@@ -9,7 +9,7 @@ from collections.abc import Iterable, Iterator, Sequence
 from operator import mul
 
 from opslang.ground.grading import Word
-from opslang.ir.order import generator_key, monomial_key
+from opslang.ir.order import generator_key
 from opslang.ir.tree import Class, Generator, Monomial
 from opslang.tables.budget import Budget
 
@@ -147,21 +147,23 @@ def basis(p: int, classes: Sequence[Class], degree: int, budget: Budget) -> list
     available = generators(p, classes, degree, budget)
     reach = _reachable(p, available, degree)
     found: list[Monomial] = []
-    # Depth first over the generators: what is left of the degree, where to go on, the monomial so far.
+    # Depth first, highest power of the first generator first, which is the canonical order: what is left of the
+    # degree, the next generator, the monomial so far.
     stack: list[tuple[int, int, Monomial]] = [(degree, 0, ())]
     while stack:
         left, at, monomial = stack.pop()
-        while left and reach[at] >> left & 1:
-            generator, d = available[at]
-            at += 1
-            for exponent in range(1, (1 if squares_to_zero(generator, d, p) else left // d) + 1 if d <= left else 1):
-                rest = left - exponent * d
-                if reach[at] >> rest & 1:
-                    budget.spend(1)
-                    stack.append((rest, at, (*monomial, (generator, exponent))))
         if not left:
+            budget.spend(1)
             found.append(monomial)
-    found.sort(key=lambda monomial: monomial_key(monomial, p))
+            continue
+        if not reach[at] >> left & 1:
+            continue
+        budget.spend(1)
+        generator, d = available[at]
+        at += 1
+        stack.append((left, at, monomial))
+        for exponent in range(1, (min(1, left // d) if squares_to_zero(generator, d, p) else left // d) + 1):
+            stack.append((left - exponent * d, at, (*monomial, (generator, exponent))))
     return found
 
 

@@ -59,6 +59,15 @@ class Ring2:
         degrees = self.slots.degree
         return sum([degrees[slot] * exponent for slot, exponent in exponents(monomial, self.width)])
 
+    def root_exponent(self, monomial: int) -> int:
+        """The greatest 2^j of which the monomial is a power; 1 for the unit."""
+        width, least = self.width, self.width
+        while monomial:
+            low = monomial & -monomial
+            least = min(least, (low.bit_length() - 1) % width)
+            monomial ^= low
+        return 1 << least if least < width else 1
+
     def multiply(self, f: Collection[int], g: Collection[int]) -> Poly:
         """The cup product."""
         if len(f) > len(g):

@@ -11,8 +11,9 @@ of each exponent, the digit at p^j contributing the p^j-th power of the total po
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Mapping
+from math import gcd
 
-from opslang.ground.arith import digits
+from opslang.ground.arith import digits, p_part
 from opslang.ir.tree import Class, Monomial
 from opslang.tables.budget import Budget
 from opslang.tables.powers import Powers
@@ -63,6 +64,11 @@ class RingOdd:
         """The degree of a packed monomial."""
         degrees = self.slots.degree
         return sum([degrees[slot] * exponent for slot, exponent in exponents(monomial, self.width)])
+
+    def root_exponent(self, monomial: int) -> int:
+        """The greatest p^j of which the monomial is a power; 1 for the unit."""
+        found = gcd(*[exponent for _, exponent in exponents(monomial, self.width)])
+        return self.prime ** p_part(found, self.prime) if found else 1
 
     def _negative(self, x: int, y: int) -> bool:
         """Whether putting the odd generators of x y in order changes the sign; x, y hold lowest bits of odd slots only."""
