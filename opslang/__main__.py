@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import gc
 import os
 import signal
 import sys
@@ -18,9 +19,19 @@ def main() -> NoReturn:
     if signal.getsignal(signal.SIGINT) is signal.default_int_handler:
         # While modules are loaded there is nothing to save, and no traceback that anybody wants to see.
         signal.signal(signal.SIGINT, _leave)
+    gc.disable()  # what the modules hold stays to the end; whoever works long turns the collector on
+    sys.exit(_run(sys.argv[1:]))
+
+
+def _run(arguments: list[str]) -> int:
+    """Answers plain lines at once, without the time that it takes to load click; all else goes to the command line."""
+    if len(arguments) > 1 and arguments[0] == "eval" and not any(text.startswith("-") for text in arguments):
+        from opslang.front.batch import evaluate, named, settings_for
+
+        return evaluate((), named(tuple(arguments[1:])), settings_for())
     from opslang.front.cli import main as command
 
-    sys.exit(command(sys.argv[1:]))
+    return command(arguments)
 
 
 if __name__ == "__main__":

@@ -7,10 +7,11 @@ from __future__ import annotations
 
 import gc
 import signal
+import sys
 from collections.abc import Callable, Generator, Iterable, Iterator
 from types import FrameType
 
-from opslang.front.output import Departed, Failed, Output, report
+from opslang.front.output import Departed, Failed, Output, paint_for, report, width_of
 from opslang.front.progress import Progress
 from opslang.front.reading import Script, Unreadable
 from opslang.front.statement import INTERRUPTED, WELL, Answer, Desk, Item, Opened, Settings, Trouble
@@ -22,6 +23,25 @@ PROGRAM = "opslang"
 
 class Terminated(BaseException):
     """The process was asked to end."""
+
+
+def settings_for(
+    output: str = "text",
+    prime: int = 2,
+    limit: int | None = None,
+    width: int | None = None,
+    both: bool = False,
+    colour: str = "auto",
+) -> Settings:
+    """Settings as they are asked for on a command line, fitted to the streams of this process."""
+    return Settings(output, prime, limit, width or width_of(sys.stdout), both, paint_for(colour, sys.stderr))
+
+
+def named(expressions: tuple[str, ...]) -> tuple[Source, ...]:
+    """Expressions of a command line under the names that messages call them by."""
+    if len(expressions) == 1:
+        return (Source("argument", expressions[0]),)
+    return tuple([Source(f"argument {number}", text) for number, text in enumerate(expressions, 1)])
 
 
 def items(names: Iterable[str], before_read: Callable[[], None], progress: Progress) -> Iterator[Item]:
@@ -133,6 +153,7 @@ def write(answers: Answers, output: Output, progress: Progress, settings: Settin
 def _prepare() -> None:
     """What lasts is taken out of the collector's sight; Ctrl-C and SIGTERM become exceptions."""
     gc.freeze()
+    gc.enable()
     gc.set_threshold(50_000, 20, 50)
     if signal.getsignal(signal.SIGINT) is not signal.SIG_IGN:
         signal.signal(signal.SIGINT, signal.default_int_handler)

@@ -5,18 +5,16 @@ Everything heavy is loaded by the command that needs it, so that a single line i
 
 from __future__ import annotations
 
+import gc
 import os
 import sys
 from collections.abc import Callable
-from typing import TYPE_CHECKING, Any, TypeVar
+from typing import Any, TypeVar
 
 import click
 from attrs import evolve
 
 from opslang import __version__
-
-if TYPE_CHECKING:
-    from opslang.front.statement import Settings
 
 Command = TypeVar("Command", bound=Callable[..., Any])
 
@@ -50,13 +48,6 @@ def _shared(command: Command) -> Command:
     return command
 
 
-def _settings(output: str, prime: int, limit: int | None, width: int | None, both: bool, colour: str) -> Settings:
-    from opslang.front.output import paint_for, width_of
-    from opslang.front.statement import Settings
-
-    return Settings(output, prime, limit, width or width_of(sys.stdout), both, paint_for(colour, sys.stderr))
-
-
 @click.group(invoke_without_command=True, context_settings={"help_option_names": ["--help"]})
 @click.version_option(__version__, prog_name="opslang", message="%(prog)s %(version)s")
 @click.pass_context
@@ -79,8 +70,9 @@ def run(scripts: tuple[str, ...], jobs: int, **shared: Any) -> int:
     Every expression is normalised, every relation decided.  Each script begins afresh.
     """
     from opslang.front.batch import run as run_scripts
+    from opslang.front.batch import settings_for
 
-    return run_scripts(scripts, evolve(_settings(**shared), echo=True), jobs)
+    return run_scripts(scripts, evolve(settings_for(**shared), echo=True), jobs)
 
 
 @opslang.command(name="eval", context_settings={"ignore_unknown_options": True})
@@ -96,6 +88,7 @@ def evaluate(
 ) -> int:
     """Answer lines given on the command line."""
     from opslang.front.batch import evaluate as evaluate_all
+    from opslang.front.batch import named, settings_for
     from opslang.ground.source import Source
 
     for text in expressions:  # an expression may begin with a minus sign, but hardly with two and a letter
@@ -103,9 +96,7 @@ def evaluate(
             raise click.NoSuchOption(text, possibilities=_like(text, context), ctx=context)
     prelude = [Source("--on", f"on {space}")] if space is not None else []
     prelude += [Source("--let", f"let {text}") for text in declared]
-    several = len(expressions) > 1
-    sources = [Source(f"argument {k}" if several else "argument", text) for k, text in enumerate(expressions, 1)]
-    return evaluate_all(tuple(prelude), tuple(sources), _settings(**shared))
+    return evaluate_all(tuple(prelude), named(expressions), settings_for(**shared))
 
 
 @opslang.command()
@@ -151,10 +142,12 @@ def _shell(
     dumb = os.environ.get("TERM") == "dumb"
     if dumb or output == "jsonl" or not on_terminal(sys.stdin) or not on_terminal(sys.stdout):
         from opslang.front.batch import run as run_scripts
+        from opslang.front.batch import settings_for
 
-        return run_scripts(("-",), _settings(output, prime, limit, width, both, colour))
+        return run_scripts(("-",), settings_for(output, prime, limit, width, both, colour))
     from opslang.front.shell import main as converse
 
+    gc.enable()
     return converse(prime, limit, output, both, keys, colour)
 
 

@@ -13,7 +13,6 @@ the terminal.
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
-from unicodedata import category, east_asian_width
 
 from opslang.ground.source import Place, Source
 from opslang.report.diagnostic import Diagnostic
@@ -61,6 +60,8 @@ def cells(text: str) -> int:
 def _width(character: str) -> int:
     if character < "\u0300":
         return 1
+    from unicodedata import category, east_asian_width  # not there for plain lines, which are answered at once
+
     if category(character) in ("Mn", "Me"):
         return 0
     return 2 if east_asian_width(character) in "WF" else 1
