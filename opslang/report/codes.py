@@ -10,6 +10,6 @@ from opslang.report.codes_front import FRONT_CODES
 from opslang.report.codes_meaning import MEANING_CODES
 from opslang.report.codes_syntax import SYNTAX_CODES
 
-CODES: dict[str, Code] = {**SYNTAX_CODES, **MEANING_CODES, **FRONT_CODES}
+CODES: dict[str, Code] = {**MEANING_CODES, **SYNTAX_CODES, **FRONT_CODES}
 
 __all__ = ["CODES", "Code"]

@@ -25,8 +25,8 @@ SYNTAX_CODES: dict[str, Code] = {
         title="The language has this, this version does not read it",
         explanation=(
             "Maps, bundles, manifolds, presentations, families `for all`, sums over a variable, and the statements "
-            "kernel, image, rank, solve, relations and compare belong to the language.  They are recognised, so that "
-            "they are never read as something else."
+            "kernel, image, rank, solve, relations and compare belong to the language, and so do Pontryagin squares.  "
+            "They are recognised, so that they are never read as something else."
         ),
         example="kernel Sq^2 on H^5(K(Z/2, 3))",
     ),

@@ -40,11 +40,12 @@ _DECLARED = re.compile(
     rf"{_GAP}(let{_SPACE}({LETTER}{LOWERED}?'*(?:{_GAP},{_GAP}{LETTER}{LOWERED}?'*)*){_SPACE}in{_SPACE}H"
     rf"\^({_DEGREE})(?:\({_GAP}({_LABEL})?{_GAP}(?:[;,]{_GAP}({_GROUP}))?{_GAP}\))?){_GAP}\Z"
 )
-_PRIME = re.compile(rf"{_GAP}(prime{_SPACE}({NUMBER})){_GAP}\Z")
-_ON = re.compile(rf"{_GAP}(on{_SPACE}({_SPACES})){_GAP}\Z")
-_SPACE_IS = re.compile(rf"{_GAP}(space{_SPACE}({_LABEL}){_GAP}={_GAP}({_SPACES})){_GAP}\Z")
-_BASIS = re.compile(rf"{_GAP}(basis{_SPACE}H\^({_DEGREE})(?:\({_GAP}({_SPACES}){_GAP}\))?){_GAP}\Z")
-_SERIES = re.compile(rf"{_GAP}(series(?:{_SPACE}({_SPACES}))?{_SPACE}to{_SPACE}({NUMBER})){_GAP}\Z")
+# Compiled when first asked for: a script of relations needs none of these.
+_PRIME = rf"{_GAP}(prime{_SPACE}({NUMBER})){_GAP}\Z"
+_ON = rf"{_GAP}(on{_SPACE}({_SPACES})){_GAP}\Z"
+_SPACE_IS = rf"{_GAP}(space{_SPACE}({_LABEL}){_GAP}={_GAP}({_SPACES})){_GAP}\Z"
+_BASIS = rf"{_GAP}(basis{_SPACE}H\^({_DEGREE})(?:\({_GAP}({_SPACES}){_GAP}\))?){_GAP}\Z"
+_SERIES = rf"{_GAP}(series(?:{_SPACE}({_SPACES}))?{_SPACE}to{_SPACE}({NUMBER})){_GAP}\Z"
 _ONE_FACTOR = re.compile(rf"K\({_GAP}({_GROUP}){_GAP},{_GAP}({NUMBER}){_GAP}\)|({_LABEL})")
 _READ = re.compile(rf"([ZF])(?:[/_]({NUMBER}))?")
 
@@ -100,18 +101,18 @@ def _let(text: str) -> Statement | None:
 
 
 def _prime(text: str) -> Statement | None:
-    found = _PRIME.match(text)
+    found = re.match(_PRIME, text)
     return None if found is None else PrimeStatement(int(found.group(2)), found.span(1))
 
 
 def _on(text: str) -> Statement | None:
-    found = _ON.match(text)
+    found = re.match(_ON, text)
     space = None if found is None else _space(text, found.span(2))
     return None if found is None or space is None else OnStatement(space, found.span(1))
 
 
 def _space_is(text: str) -> Statement | None:
-    found = _SPACE_IS.match(text)
+    found = re.match(_SPACE_IS, text)
     if found is None or found.group(2) in WORDS:
         return None
     space = _space(text, found.span(3))
@@ -119,7 +120,7 @@ def _space_is(text: str) -> Statement | None:
 
 
 def _basis(text: str) -> Statement | None:
-    found = _BASIS.match(text)
+    found = re.match(_BASIS, text)
     if found is None:
         return None
     degree = int(found.group(2).strip("{}"))
@@ -130,7 +131,7 @@ def _basis(text: str) -> Statement | None:
 
 
 def _series(text: str) -> Statement | None:
-    found = _SERIES.match(text)
+    found = re.match(_SERIES, text)
     if found is None:
         return None
     if found.group(2) is None:
