@@ -6,13 +6,16 @@ A `Session` holds what one script declares.  It prints nothing and reads no file
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import pairwise
 from typing import TYPE_CHECKING, Any, Literal, cast
 
 from attrs import evolve
 
+from opslang.ground.grading import degree
 from opslang.ground.source import Source, Span
 from opslang.ir.measure import element_degree, element_excess
 from opslang.ir.outcome import Kind, Link, Outcome, Verdict
+from opslang.ir.order import word_key
 from opslang.ir.tree import ClassElement, Element
 from opslang.meaning import statements
 from opslang.meaning.indices import number
@@ -210,11 +213,12 @@ class Session:
         values = self._sides(statement, lowering)
         engine = self.engine()
         engine.start()
-        elements = tuple([self.normal(value) for value in values])
+        elements, differences = self._normal_sides(values)
         links: list[Link] = []
         name = message = None
         for at in range(len(values) - 1):
-            verdict, difference, words = self._compare(values, elements, at, statement)
+            difference = differences[at]
+            verdict, words = self._compare(values, difference, at)
             links.append(Link(verdict, difference))
             if words and message is None:
                 name, message = words
@@ -238,24 +242,29 @@ class Session:
         )
         return self._cross_checked(outcome, values, elements) if self.both else outcome
 
-    def _compare(
-        self, values: tuple[Value, ...], elements: tuple[Element, ...], at: int, statement: sf.RelationStatement
-    ) -> tuple[Verdict, Element, tuple[str, str] | None]:
+    def _normal_sides(self, values: tuple[Value, ...]) -> tuple[tuple[Element, ...], tuple[Element, ...]]:
+        """The canonical forms of the sides, and left minus right of each equation."""
+        if values[0].sort == "class":
+            sides, differences = self.engine().normal_classes([value.cls for value in values])
+            return tuple(sides), tuple(differences)
+        elements = tuple([self.normal(value) for value in values])
+        return elements, tuple([subtract(left, right) for left, right in pairwise(elements)])
+
+    def _compare(self, values: tuple[Value, ...], difference: Element, at: int) -> tuple[Verdict, tuple[str, str] | None]:
+        """The verdict on one equation, and the name and the words of what is to be said first."""
         left, right = values[at], values[at + 1]
-        difference = subtract(elements[at], elements[at + 1])
-        apart = None not in (left.degree, right.degree) and left.degree != right.degree
+        apart = left.degree is not None and right.degree is not None and left.degree != right.degree
         if apart and not _bare_zero(left) and not _bare_zero(right):
-            words = f"the right side has degree {right.degree}, the left side degree {left.degree}"
-            return "false", difference, ("degrees-differ", words)
+            return "false", ("degrees-differ", f"the right side has degree {right.degree}, the left side degree {left.degree}")
         if not difference.terms:
-            return "true", difference, None
+            return "true", None
         if self.engine().modulo and isinstance(difference, ClassElement):
             classes = left.classes | right.classes
             decided = within(self.engine(), difference, tuple(classes), max(left.top, right.top))
-            if decided is not None:
-                return ("true" if decided else "false"), difference, None
-            return "undecided", difference, ("modulo-lower-bocksteins", "equal at most modulo the images of the lower Bocksteins; not decided")
-        return "false", difference, None
+            if decided is None:
+                return "undecided", ("modulo-lower-bocksteins", "equal at most modulo the images of the lower Bocksteins; not decided")
+            return ("true" if decided else "false"), None
+        return "false", None
 
     # --- derivations ----------------------------------------------------------------------------
 
@@ -368,24 +377,11 @@ def _bare_zero(value: Value) -> bool:
 
 
 def subtract(left: Element, right: Element) -> Element:
-    """left - right, in canonical order."""
-    if left == right:
-        return evolve(left, terms=())
+    """left - right of two operations, in canonical order."""
     p = left.prime
-    terms = {term: c for term, c in left.terms}
-    order = [term for term, _ in left.terms]
+    terms: dict[Any, int] = dict(left.terms)
     for term, c in right.terms:
-        if term not in terms:
-            order.append(term)
         terms[term] = (terms.get(term, 0) - c) % p
-    return evolve(left, terms=tuple(_sorted(left, [(term, terms[term]) for term in order if terms[term]])))
-
-
-def _sorted(like: Element, terms: list[tuple[Any, int]]) -> list[tuple[Any, int]]:
-    from opslang.ground.grading import degree
-    from opslang.ir.order import monomial_degree, monomial_key, word_key
-
-    p = like.prime
-    if isinstance(like, ClassElement):
-        return sorted(terms, key=lambda pair: (monomial_degree(pair[0], p), monomial_key(pair[0], p)))
-    return sorted(terms, key=lambda pair: (degree(pair[0], p), word_key(pair[0], p)))
+    kept = [(term, c) for term, c in terms.items() if c]
+    kept.sort(key=lambda pair: (degree(pair[0], p), word_key(pair[0], p)))
+    return evolve(left, terms=tuple(kept))

@@ -49,8 +49,26 @@ def word_value(word: ir.Word, prime: int, span: Span) -> Value:
     return operation(ir.Composite(word, degree, span), degree)
 
 
+_SEEN: dict[tuple[int, str, tuple[sf.Index, ...]], Value] = {}
+"""Words met before: scripts say the same few letters over and over."""
+_MOST_SEEN = 1 << 12
+
+
 def _squares_or_powers(factor: sf.Operation, prime: int) -> Value | Marker:
     head = factor.head
+    key = (prime, head, factor.indices)
+    seen = _SEEN.get(key)
+    if seen is not None:
+        return seen
+    value = _read_squares_or_powers(factor, head, prime)
+    if isinstance(value, Value):
+        if len(_SEEN) >= _MOST_SEEN:
+            _SEEN.clear()
+        _SEEN[key] = value
+    return value
+
+
+def _read_squares_or_powers(factor: sf.Operation, head: str, prime: int) -> Value | Marker:
     if head == "Sq" and prime != 2:
         raise Refusal(error("prime-of-operation", f"Sq is an operation at the prime 2, and the prime is {prime}", factor.span, "write P^i or beta"))
     if head == "P" and prime == 2:

@@ -179,9 +179,8 @@ class Lowering:
         merged: list[ir.Op] = []
         for value in values:
             op = value.op
-            if merged and isinstance(op, ir.Composite) and isinstance(merged[-1], ir.Composite):
-                head = merged[-1]
-                merged[-1] = ir.Composite(head.word + op.word, head.degree + op.degree, (head.span[0], op.span[1]))
+            if merged and type(op) is ir.Composite and type(merged[-1]) is ir.Composite:
+                merged[-1] = ir.Composite(merged[-1].word + op.word, merged[-1].degree + op.degree, span)
             else:
                 merged.append(op)
         if len(merged) == 1:
@@ -197,13 +196,13 @@ class Lowering:
                 run = []
                 argument = self._apply_marker(value, argument)
             else:
-                run.insert(0, value)
+                run.append(value)
         return self._apply_run(run, argument, span)
 
     def _apply_run(self, run: list[Value], argument: Value, span: Span) -> Value:
         if not run:
             return argument
-        op = self._compose(run, span)
+        op = self._compose(run[::-1], span)
         degree = None if op.degree is None or argument.degree is None else op.degree + argument.degree
         top = bounded(op.top + argument.top, span)
         return cls(ir.Apply(op.op, argument.cls, degree, top, span), argument.classes)

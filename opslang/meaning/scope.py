@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from difflib import get_close_matches
+from functools import lru_cache
 
 from attrs import define, field
 
@@ -18,6 +18,12 @@ def spelled(key: Key) -> str:
     """A name as it is typed."""
     letter, index, primes = key
     return letter + ("" if index is None else f"_{index}") + "'" * primes
+
+
+@lru_cache(maxsize=1 << 10)
+def universal(degree: int) -> Class:
+    """The fundamental class of K(Z/p, n), under its common name."""
+    return Class("iota", degree, 0, degree)
 
 
 @define
@@ -47,7 +53,7 @@ class Scope:
         if here is None:
             if primes or degree < 1:
                 raise KeyError((degree, primes))
-            return Class("iota", degree, 0, degree)
+            return universal(degree)
         for of in here.classes:
             if of.degree == degree and of.primes == primes:
                 return of
@@ -66,6 +72,8 @@ class Scope:
 
     def like(self, key: Key) -> str | None:
         """A declared name that a mistyped one may stand for."""
+        from difflib import get_close_matches
+
         known = {spelled(name): name for name in self.names}
         close = get_close_matches(spelled(key), known, 1, 0.5)
         return close[0] if close else None

@@ -42,10 +42,11 @@ def measure(degree: int | None, excess: int | None) -> str:
 
 def sum_lines(element: Element, notation: Notation, width: int, indent: str = "") -> list[str]:
     """An element on one line where it fits, else its terms in columns, a plus sign before each but the first."""
-    whole = element_text(element, notation)
-    if display_width(whole) + len(indent) <= width or notation == "latex":
-        return [indent + whole]
     terms = term_texts(element, notation)
+    if len(terms) < width or notation == "latex":
+        whole = " + ".join(terms) or "0"
+        if display_width(whole) + len(indent) <= width or notation == "latex":
+            return [indent + whole]
     return columns([terms[0]] + ["+ " + term for term in terms[1:]], width, indent)
 
 

@@ -69,6 +69,7 @@ def generator_text(generator: Generator, prime: int, notation: Notation = "text"
     return word_text(generator.word, prime, notation) + between + name
 
 
+@lru_cache(maxsize=1 << 13)
 def factor_text(generator: Generator, exponent: int, last: bool, prime: int, notation: Notation = "text") -> str:
     """A factor of a monomial; a word that another factor follows, or that carries a power, stands in brackets."""
     name = generator_text(generator, prime, notation)
@@ -77,6 +78,7 @@ def factor_text(generator: Generator, exponent: int, last: bool, prime: int, not
     return name + superscript(exponent, notation) if exponent > 1 else name
 
 
+@lru_cache(maxsize=1 << 12)
 def monomial_text(monomial: Monomial, prime: int, notation: Notation = "text") -> str:
     """A monomial; "1" for the unit."""
     last = len(monomial) - 1
@@ -84,23 +86,17 @@ def monomial_text(monomial: Monomial, prime: int, notation: Notation = "text") -
     return (r"\," if notation == "latex" else " ").join(factors) or "1"
 
 
-def _sum_text(terms: list[tuple[str, int]], notation: Notation) -> str:
-    written = []
-    for name, coefficient in terms:
-        if coefficient == 1:
-            written.append(name)
-        elif name == "1":
-            written.append(str(coefficient))
-        else:
-            written.append(f"{coefficient}{chr(92) + ',' if notation == 'latex' else ' '}{name}")
-    return " + ".join(written) or "0"
+def _multiple_text(coefficient: int, name: str, notation: Notation) -> str:
+    if name == "1":
+        return str(coefficient)
+    return f"{coefficient}{chr(92) + ',' if notation == 'latex' else ' '}{name}"
 
 
 def term_texts(element: Element, notation: Notation = "text") -> list[str]:
     """The terms of an element, each with its coefficient."""
     p = element.prime
     one: Callable[..., str] = word_text if isinstance(element, OperationElement) else monomial_text
-    return [_sum_text([(one(term, p, notation), c)], notation) for term, c in element.terms]
+    return [one(term, p, notation) if c == 1 else _multiple_text(c, one(term, p, notation), notation) for term, c in element.terms]
 
 
 def element_text(element: Element, notation: Notation = "text") -> str:

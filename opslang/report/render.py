@@ -87,6 +87,25 @@ def _shown(text: str, filled: int) -> Iterator[tuple[str, int]]:
 
 def excerpt(line: str, start: int, end: int, room: int) -> tuple[str, str]:
     """The line as shown and the marks under code points start … end; what is wider than `room` cells is cut away."""
+    if line.isascii() and line.isprintable():
+        return _plain_excerpt(line, start, end, room)
+    return _excerpt_by_cells(line, start, end, room)
+
+
+def _plain_excerpt(line: str, start: int, end: int, room: int) -> tuple[str, str]:
+    """`excerpt` of a line in which every code point fills one cell."""
+    low, high = 0, len(line)
+    if high > room:
+        room -= 2 * len(CUT)
+        low = max(0, start - max(room // 2, room - (len(line) - start)))
+        high = min(len(line), low + room)
+    before = CUT if low else ""
+    text = before + line[low:high] + (CUT if high < len(line) else "")
+    length = min(max(start, end), high) - start
+    return text.rstrip(), " " * (len(before) + start - low) + ("~" * length if length > 1 else "^")
+
+
+def _excerpt_by_cells(line: str, start: int, end: int, room: int) -> tuple[str, str]:
     first = max(0, start - room)
     last = min(len(line), max(start, min(end, start + room)) + room)
     shown = list(_shown(line[first:last], 0))

@@ -8,7 +8,8 @@ large the rest of it is.
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
+from itertools import pairwise
 from typing import Any
 
 from opslang.ir.order import word_key
@@ -73,6 +74,20 @@ class Engine:
         """The canonical form of a class.  Raises TooLarge, Undefined."""
         ring = self.ring(tree.top)
         return ClassElement(self.prime, ring.decode(Evaluation(self, ring).cls(tree)))
+
+    def normal_classes(self, trees: Sequence[ir.Cls]) -> tuple[list[ClassElement], list[ClassElement]]:
+        """The canonical forms of several classes, and the differences of each with the next.  Raises TooLarge, Undefined."""
+        ring: Any = self.ring(max([tree.top for tree in trees]))
+        walk = Evaluation(self, ring)
+        values = [walk.cls(tree) for tree in trees]
+        differences = []
+        for left, right in pairwise(values):
+            difference = ring.zero()
+            if left != right:
+                ring.add(difference, left)
+                ring.add(difference, right, -1)
+            differences.append(ClassElement(self.prime, ring.decode(difference)))
+        return [ClassElement(self.prime, ring.decode(value)) for value in values], differences
 
     def normal_operation(self, tree: ir.Op, top: int) -> OperationElement:
         """The canonical form of an operation all of whose parts have degree at most `top`.  Raises TooLarge."""
@@ -262,6 +277,8 @@ class Evaluation:
 
     def cls(self, tree: ir.Cls) -> Any:
         """A class as a packed element; not to be changed in place."""
+        if type(tree) is ir.Fundamental:
+            return self.ring.generator(tree.of)
         found = self._values.get(id(tree))
         if found is None:
             found = self._values[id(tree)] = self._cls(tree)
@@ -280,8 +297,8 @@ class Evaluation:
                     ring.add(result, self.cls(term), c)
                 return result
             case ir.Cup():
-                element = ring.unit()
-                for factor in tree.factors:
+                element = self.cls(tree.factors[0])
+                for factor in tree.factors[1:]:
                     element = ring.multiply(element, self.cls(factor))
                 return element
             case ir.ClassPower():

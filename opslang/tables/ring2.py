@@ -32,6 +32,7 @@ class Ring2:
         self.algebra = Squares(width, budget)
         self.slots = Slots(2, width)
         self._squares: dict[tuple[int, int], Terms] = {}
+        self._classes: dict[tuple[Class, int], Poly] = {}
         self._primitives: dict[tuple[int, int], frozenset[int]] = {}
 
     # --- elements -------------------------------------------------------------------------------
@@ -45,7 +46,13 @@ class Ring2:
         return {0}
 
     def generator(self, of: Class, bockstein: int = 0) -> Poly:
-        """A class, or its beta_k."""
+        """A class, or its beta_k.  Not to be changed in place."""
+        found = self._classes.get((of, bockstein))
+        if found is None:
+            found = self._classes[of, bockstein] = self._generator(of, bockstein)
+        return found
+
+    def _generator(self, of: Class, bockstein: int) -> Poly:
         root = self.slots.root_of(of, bockstein)
         return {1 << self.width * self.slots.slot(root, 0, self.slots.roots[root].degree)}
 
@@ -72,9 +79,13 @@ class Ring2:
         """The cup product."""
         if len(f) > len(g):
             f, g = g, f
+        nilpotent = self.slots.nilpotent
+        if len(f) == 1:
+            (x,) = f
+            if not x & nilpotent:
+                return {x + y for y in g}
         self.budget.spend(len(f) * len(g))
         result: Poly = set()
-        nilpotent = self.slots.nilpotent
         for x in f:
             if x & nilpotent:
                 result ^= {x + y for y in g if not x & y & nilpotent}
@@ -181,44 +192,57 @@ class Ring2:
         rest = sum(reach)
         if k >= rest:
             return {monomial << 1} if k == rest and not monomial & self.slots.nilpotent else set()
-        spend = self.budget.spend
-        sums: dict[int, Poly] = {0: {0}}
-        for (digit, slot), most in zip(pieces, reach):
+        square = self.square
+        sums: dict[int, Collection[int]] = {0: (0,)}
+        last = len(pieces) - 1
+        for at in range(last):
+            digit, slot = pieces[at]
+            most = reach[at]
             rest -= most
-            following: dict[int, Poly] = {}
-            square = self.square
-            needed = max(sums)
             series = []
-            for i in range(max(0, k - rest - needed) >> digit, (min(k, most) >> digit) + 1):
-                spend(1)
+            for i in range(max(0, k - rest - max(sums)) + (1 << digit) - 1 >> digit, (min(k, most) >> digit) + 1):
                 terms = square(slot, i)
                 if terms:
                     series.append((i << digit, [t << digit for t in terms] if digit else terms))
+            self.budget.spend(len(series) + 1)
+            following: dict[int, Collection[int]] = {}
             for d, f in sums.items():
                 low, high = k - rest - d, k - d
                 for i, g in series:
-                    if i < low or i > high:
-                        continue
-                    spend(len(f) * len(g))
-                    if len(g) == 1:
-                        y = g[0]
-                        part = {x + y for x in f}
-                    else:
-                        part = set()
-                        if len(g) > len(f):
-                            for x in f:
-                                part ^= {x + y for y in g}
-                        else:
-                            for y in g:
-                                part ^= {x + y for x in f}
-                    if d + i in following:
-                        following[d + i] ^= part
-                    else:
-                        following[d + i] = part
+                    if low <= i <= high:
+                        self._accumulate(following, d + i, f, g)
             sums = following
             if not sums:
                 return set()
-        return sums.get(k, set())
+        digit, slot = pieces[last]
+        found: dict[int, Collection[int]] = {}
+        for d, f in sums.items():
+            i = k - d
+            if not i & ((1 << digit) - 1):
+                terms = square(slot, i >> digit)
+                if terms:
+                    self._accumulate(found, k, f, [t << digit for t in terms] if digit else terms)
+        result = found.get(k)
+        return result if isinstance(result, set) else set(result) if result else set()
+
+    def _accumulate(self, sums: dict[int, Collection[int]], d: int, f: Collection[int], g: Collection[int]) -> None:
+        """Add the product of two sums of monomials to the entry d."""
+        if len(g) > len(f):
+            f, g = g, f
+        into = sums.get(d)
+        if len(g) == 1:
+            (y,) = g
+            if into is None:
+                sums[d] = {x + y for x in f}
+            else:
+                into.symmetric_difference_update([x + y for x in f])  # type: ignore[attr-defined]
+        else:
+            self.budget.spend(len(f) * len(g) >> 2)
+            part: Poly = set() if into is None else into  # type: ignore[assignment]
+            toggle = part.symmetric_difference_update
+            for y in g:
+                toggle([x + y for x in f])
+            sums[d] = part
 
     def total(self, f: Iterable[int]) -> Poly:
         """The total square of an element."""
@@ -249,9 +273,6 @@ class Ring2:
 
     def decode(self, f: Iterable[int]) -> tuple[tuple[Monomial, int], ...]:
         """The terms of an element in canonical order."""
-        found = []
-        for x in f:
-            monomial, _, key = decode(self.slots, self.algebra.unpack, x)
-            found.append((self.degree(x), key, monomial))
-        found.sort(key=lambda term: term[:2])
+        slots, unpack = self.slots, self.algebra.unpack
+        found = sorted([decode(slots, unpack, x)[:3] for x in f])
         return tuple([(monomial, 1) for _, _, monomial in found])

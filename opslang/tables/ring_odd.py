@@ -260,9 +260,6 @@ class RingOdd:
 
     def decode(self, f: Mapping[int, int]) -> tuple[tuple[Monomial, int], ...]:
         """The terms of an element in canonical order."""
-        found = []
-        for x, c in f.items():
-            monomial, negative, key = decode(self.slots, self.algebra.unpack, x)
-            found.append((self.degree(x), key, monomial, self.prime - c if negative else c))
-        found.sort(key=lambda term: term[:2])
-        return tuple([(monomial, c) for _, _, monomial, c in found])
+        slots, unpack = self.slots, self.algebra.unpack
+        found = sorted([(*decode(slots, unpack, x), c) for x, c in f.items()], key=lambda term: term[:2])
+        return tuple([(monomial, self.prime - c if negative else c) for _, _, monomial, negative, c in found])

@@ -7,6 +7,9 @@ the words on it are those that do not end in one (Serre 1953; Cartan 1954-55; Ma
 
 from __future__ import annotations
 
+from collections.abc import Callable
+from typing import Any
+
 from attrs import frozen
 
 from opslang.ground.grading import Word
@@ -38,8 +41,10 @@ class Slots:
         self.degree: list[int] = []
         self.nilpotent = 0
         """The lowest bit of every slot whose generator squares to 0: odd degree at an odd prime; at 2 degree 1 and killed by Sq^1."""
+        self.decoded: dict[int, Decoded] = {}
+        """Monomials decoded lately."""
         self._generators: list[Generator] = []
-        self._keys: list[tuple[object, ...]] = []
+        self._keys: list[tuple[Any, ...]] = []
 
     def root_of(self, of: Class, bockstein: int = 0) -> int:
         """The number of the root of a class (bockstein 0) or of its beta_k."""
@@ -67,12 +72,12 @@ class Slots:
                 self.nilpotent |= 1 << self.width * found
         return found
 
-    def name(self, unpack: "type[object] | object", slot: int) -> tuple[Generator, tuple[object, ...]]:
+    def name(self, unpack: Callable[[int], Word], slot: int) -> tuple[Generator, tuple[Any, ...]]:
         """The generator in a slot and its key in the canonical order; `unpack` turns packed words into tokens."""
         while len(self._generators) <= slot:
             at = len(self._generators)
             root = self.roots[self.root[at]]
-            word: Word = unpack(self.word[at])  # type: ignore[operator]
+            word = unpack(self.word[at])
             if root.bockstein:
                 word = (*word, -root.bockstein)
             generator = Generator(word, root.of)
@@ -94,20 +99,34 @@ def exponents(monomial: int, width: int) -> list[tuple[int, int]]:
     return found
 
 
-def decode(slots: Slots, unpack: object, monomial: int) -> tuple[Monomial, bool, tuple[object, ...]]:
-    """A packed monomial in canonical order, whether its sign changes on the way, and its key in the canonical order."""
+Decoded = tuple[int, tuple[Any, ...], Monomial, bool]
+"""Degree, key in the canonical order, monomial, and whether its sign changes on the way to it."""
+
+
+def decode(slots: Slots, unpack: Callable[[int], Word], monomial: int) -> Decoded:
+    """A packed monomial in canonical order."""
+    found = slots.decoded.get(monomial)
+    if found is not None:
+        return found
     parts = []
+    degree = 0
     for slot, exponent in exponents(monomial, slots.width):
         generator, key = slots.name(unpack, slot)
-        parts.append((key, slot, exponent, generator))
+        parts.append((key, -exponent, generator, slot))
+        degree += slots.degree[slot] * exponent
     negative = False
     if len(parts) > 1:
         if slots.prime != 2:
-            odd = [(key, slot) for key, slot, _, _ in parts if slots.degree[slot] % 2]
-            negative = sum(a[0] > b[0] for i, a in enumerate(odd) for b in odd[i + 1 :]) % 2 == 1  # type: ignore[operator]
-        parts.sort(key=lambda part: part[0])
-    return (
-        tuple((generator, exponent) for _, _, exponent, generator in parts),
+            odd = [part[0] for part in parts if slots.degree[part[3]] % 2]
+            negative = sum([a > b for i, a in enumerate(odd) for b in odd[i + 1 :]]) % 2 == 1
+        parts.sort()
+    found = (
+        degree,
+        tuple([part[:2] for part in parts]),
+        tuple([(generator, -exponent) for _, exponent, generator, _ in parts]),
         negative,
-        tuple((key, -exponent) for key, _, exponent, _ in parts),
     )
+    if len(slots.decoded) > 1 << 14:
+        slots.decoded.clear()
+    slots.decoded[monomial] = found
+    return found
