@@ -16,7 +16,10 @@ from opslang.lint.reading.document import (
     Text,
     Token,
     Where,
+    extent,
 )
+from opslang.lint.reading.draft import read, read_file, read_text
+from opslang.lint.reading.notebook import cell_at
 
 __all__ = [
     "Directive",
@@ -29,4 +32,9 @@ __all__ = [
     "Text",
     "Token",
     "Where",
+    "cell_at",
+    "extent",
+    "read",
+    "read_file",
+    "read_text",
 ]

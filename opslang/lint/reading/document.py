@@ -30,7 +30,7 @@ Kind = Literal[
     "gap",  # wide space that may part two statements: \quad, \qquad, \hspace{..}, \hfill
     "text",  # words of \text{..}, \mbox{..}, \textrm{..}; the words only, spaces kept
     "shift",  # where mathematics inside \text{.. $i > 0$ ..} begins and ends; text is "$"
-    "note",  # what stands over or under a relation: \overset{..}{=}, \stackrel{..}{=}; the note as source; the base follows
+    "note",  # what stands over or under the sign that follows: \overset{..}{=}, \stackrel{..}{=}; as source
     "begin",  # an inner environment begins; text is its name: cases, split, aligned, array, pmatrix, tikzcd
     "end",  # it ends
 ]
@@ -56,7 +56,10 @@ class Token(NamedTuple):
 
 @frozen
 class Environment:
-    """A named stretch of text: theorem, proof, itemize; `number` is its own in the document, `title` what \\begin{..}[title] says."""
+    """A named stretch of text (theorem, proof, itemize).
+
+    `number` is its own in the document, `title` what \\begin{..}[title] says.
+    """
 
     name: str
     number: int
@@ -116,7 +119,8 @@ class Formula:
 
     `kind`: "inline" ($, \\(, \\ensuremath, math), "display" ($$, \\[, displaymath) or the environment's name as
     written (align*, gather, tikzcd, ..).  Rows and columns are still marked by `row` and `align` tokens.
-    `start` and `end` hold the delimiters as well.  `continues` is true after an \\intertext: same display as the formula before.
+    `start` and `end` hold the delimiters as well.  `continues` is true after an \\intertext:
+    same display as the formula before.
     """
 
     kind: str
@@ -140,7 +144,7 @@ class Formula:
 
 @frozen
 class Directive:
-    """A comment `% opslang: …` (in Markdown `<!-- opslang: … -->`): what follows the colon, stripped, with its place."""
+    """A comment `% opslang: …` (in Markdown also `<!-- opslang: … -->`): what follows the colon, with its place."""
 
     text: str
     start: int
@@ -167,7 +171,8 @@ class Notice:
 class File:
     """One file as read: `name` as it is to be printed, `text` with line ends as \\n and without a byte order mark.
 
-    `encoding` is utf-8 or latin-1 (when the bytes are no UTF-8); `newline` and `mark` are what to write when it is changed.
+    `encoding` is utf-8, utf-16, or latin-1 (when the bytes are neither); `newline` and `mark` (a byte order mark) are
+    what to write when it is changed.
     """
 
     name: str

@@ -129,7 +129,7 @@ class Intake:
         return token
 
     def argument(self, long: bool = True) -> list[Token] | None:
-        """One argument as TeX takes it: a group without its braces, or one token; None, and nothing taken, if none is there."""
+        """One argument as TeX takes it, a group without its braces or one token; None, nothing taken, if there is none."""
         self.skip_space()
         token = self.atom()
         if token is None:
@@ -198,7 +198,10 @@ class Intake:
         return False
 
     def until(self, stop: tuple[tuple[str, str], ...]) -> list[Token] | None:
-        """The tokens up to a sequence of (kind, text), outside braces; it is taken too.  None, and nothing taken, if it does not come."""
+        """The tokens up to a sequence of (kind, text), outside braces; it is taken too.
+
+        None, and nothing taken, if it does not come.
+        """
         taken: list[Token] = []
         depth = 0
         while len(taken) < LONGEST:

@@ -23,7 +23,9 @@ Part = Union[int, BodyToken]
 
 @frozen
 class Macro:
-    """One macro.  `option` is the value of an optional first argument that is left out; `opening` what must stand before them.
+    """One macro.
+
+    `option` is the value of an optional first argument that is left out; `opening` what must stand before them all.
 
     `locked` macros are those of an author's directive: no definition changes them.
     """

@@ -24,6 +24,28 @@ def drop(reader: Reader, token: Token) -> None:
     """Layout: nothing is left of it."""
 
 
+def transparent(reader: Reader, token: Token) -> None:
+    """\\mathclap{X} is X."""
+    if token.text == "\\smash":
+        reader.intake.option()
+    bare(reader, token)
+
+
+def bare(reader: Reader, token: Token) -> None:
+    """Take the braces off the group that follows, unless it is an index or they bound something inside it."""
+    intake, out = reader.intake, reader.out
+    brace = intake.peek()
+    if brace is None or brace.kind != "open" or intake.fuel < 0 or (out and out[-1].kind in ("sup", "sub")):
+        return
+    argument = intake.argument()
+    if argument is None:
+        return
+    if any(part.text in signs.BOUNDED for part in argument):
+        end = intake.last or token
+        argument = [brace, *argument, bound("close", "}", end)]
+    intake.push(argument)
+
+
 def delimiter(reader: Reader, token: Token) -> None:
     """\\left and \\right: an invisible `.` after them goes too."""
     reader.intake.follows(".")
@@ -54,6 +76,7 @@ def with_arguments(reader: Reader, token: Token) -> None:
 def unwrap(reader: Reader, token: Token) -> None:
     """\\textcolor{red}{X} is X."""
     skip_arguments(reader.intake, signs.UNWRAPPED[token.text])
+    bare(reader, token)
 
 
 def words(reader: Reader, token: Token) -> None:
@@ -128,6 +151,7 @@ def noted(reader: Reader, token: Token) -> None:
     note = reader.intake.argument(long=False)
     if note is not None:
         reader.keep("note", plain(note), token)
+    bare(reader, token)
 
 
 def braced(reader: Reader, token: Token) -> None:
@@ -135,15 +159,15 @@ def braced(reader: Reader, token: Token) -> None:
     argument = reader.intake.argument(long=False)
     if argument is None:
         return
-    last = reader.intake.last
+    end = reader.intake.last or token
     following = reader.intake.peek()
     if following is not None and following.kind in ("sub", "sup"):
         reader.intake.pending.pop()
         note = reader.intake.argument(long=False)
         if note is not None:
             reader.keep("note", plain(note), following)
-    end = last or token
     reader.intake.push([bound("open", "{", token), *argument, bound("close", "}", end)])
+    bare(reader, token)
 
 
 def first_choice(reader: Reader, token: Token) -> None:
@@ -208,14 +232,14 @@ def intertext(reader: Reader, token: Token) -> None:
         return
     kind, closer = level.kind, level.closer
     reader.levels.pop()
-    level.token = level.token if level.token.file == token.file else token
-    reader.end_formula(level, token, proper=True)
+    end = reader.intake.last or token
+    reader.end_formula(level, token._replace(end=token.start), proper=True)
     reader.intake.push(
         [
             bound("enter", "intertext", token),
             *argument,
             bound("leave", "leave", token),
-            bound("resume", kind + "\t" + closer, token),
+            bound("resume", kind + "\t" + closer, end._replace(start=end.end)),
         ]
     )
 
@@ -287,6 +311,7 @@ def _table() -> dict[str, Handler]:
     table: dict[str, Handler] = {}
     plan: tuple[tuple[object, Handler], ...] = (
         (signs.DROPPED_IN_MATH, drop),
+        (signs.TRANSPARENT, transparent),
         (("\\ ", "\\\n", "\\"), drop),
         (signs.DROPPED_ARGUMENTS, with_arguments),
         (signs.MEASURED, measured),

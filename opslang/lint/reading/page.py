@@ -1,4 +1,4 @@
-"""Where the pieces are gathered: words become texts, paragraphs and sections are counted, footnotes wait for their paragraph.
+"""Where the pieces are gathered: words become texts, paragraphs are counted, footnotes wait for their paragraph.
 
 Knows the order of a draft; knows no command.
 """
@@ -44,7 +44,7 @@ def settle(chunks: list[Chunk]) -> tuple[str, tuple[tuple[int, int, int], ...]]:
     return whole.translate(_BLANKS), tuple(runs)
 
 
-_BLANKS = {code: " " for code in (9, 10, 11, 12, 13)}
+_BLANKS = dict.fromkeys((9, 10, 11, 12, 13), " ")
 
 
 class Page:

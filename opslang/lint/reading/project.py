@@ -116,7 +116,7 @@ class Project:
         intake.open(lex(self.files[number].text, number, package=package), number, silent)
 
     def root(self) -> str | None:
-        """The main file of which the first file is a part: named in it, or found beside it; None if it is one itself."""
+        """The main file of which the first file is a part, named in it or found beside it; None if it is one itself."""
         first = self.files[0]
         if not first.path or not self.follow:
             return None

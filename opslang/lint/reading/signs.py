@@ -40,16 +40,25 @@ DROPPED_IN_MATH = _named(
     "left right middle big Big bigg Bigg bigl bigr bigm Bigl Bigr Bigm biggl biggr biggm Biggl Biggr Biggm "
     ", ; : ! > / - displaystyle textstyle scriptstyle scriptscriptstyle limits nolimits displaylimits "
     "notag nonumber qedhere qed pause mathstrut strut allowbreak nobreak relax protect leavevmode null xspace "
-    "mathop mathord mathbin mathrel mathopen mathclose mathpunct mathinner boldsymbol bm pmb boldmath unboldmath "
-    "mathclap mathrlap mathllap mathmbox rlap llap clap smash boxed fbox framebox ensuremath lefteqn "
+    " boldmath unboldmath "
+    "             "
     "centering raggedright noindent indent hfil vfill medskip smallskip bigskip break linebreak pagebreak newpage "
     "thinspace medspace thickspace negthinspace negmedspace negthickspace enspace enskip "
     "tiny scriptsize footnotesize small normalsize large Large LARGE huge Huge upshape itshape bfseries mdseries "
-    "begingroup endgroup displaybreak hline toprule midrule bottomrule crcr shoveleft shoveright "
+    "begingroup endgroup displaybreak hline toprule midrule bottomrule crcr   "
     "expandafter noexpand unskip ignorespaces long global outer ignorespacesafterend textvisiblespace mathsurround "
-    "nopagebreak mathnormal uproot leftroot space nobreakspace"
+    "nopagebreak uproot leftroot space nobreakspace"
 )
 """Layout inside mathematics: the command goes, what it encloses stays."""
+
+TRANSPARENT = _named(
+    "mathop mathord mathbin mathrel mathopen mathclose mathpunct mathinner boldsymbol bm pmb mathclap mathrlap "
+    "mathllap mathmbox smash boxed ensuremath lefteqn mathnormal shoveleft shoveright"
+)
+"""Layout around a group: command and braces go."""
+
+BOUNDED = _named("choose over atop above brack brace rm bf it sf tt cal frak rmfamily")
+"""Commands that reach to the braces around them, which must therefore stay."""
 
 GAPS = _named("quad qquad hfill hspace hskip kern mkern mskip mspace hspace* dotfill")
 """Spaces; \\quad and wider may part two statements and become a gap."""
@@ -95,7 +104,8 @@ NOTED: dict[str, str] = {
 BRACED_NOTES = _named("underbrace overbrace underbracket overbracket")
 
 WORDS_IN_MATH = _named(
-    "text mbox hbox textrm textnormal textup textmd textit textsl textsf textbf texttt textsc emph mathtext"
+    "text mbox hbox textrm textnormal textup textmd textit textsl textsf textbf texttt textsc "
+    "emph mathtext rlap llap clap fbox framebox"
 )
 """Text inside mathematics."""
 
