@@ -24,11 +24,15 @@ def main() -> NoReturn:
 
 
 def _run(arguments: list[str]) -> int:
-    """Answers plain lines at once, without the time that it takes to load click; all else goes to the command line."""
+    """Answers plain lines and opens the shell without the time that it takes to load click; else: the command line."""
     if len(arguments) > 1 and arguments[0] == "eval" and not any(text.startswith("-") for text in arguments):
         from opslang.front.batch import evaluate, named, settings_for
 
         return evaluate((), named(tuple(arguments[1:])), settings_for())
+    if arguments in ([], ["shell"]):
+        from opslang.front.entrance import shell
+
+        return shell()
     from opslang.front.cli import main as command
 
     return command(arguments)

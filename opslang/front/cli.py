@@ -5,8 +5,6 @@ Everything heavy is loaded by the command that needs it, so that a single line i
 
 from __future__ import annotations
 
-import gc
-import os
 import sys
 from collections.abc import Callable
 from typing import Any, TypeVar
@@ -57,7 +55,11 @@ def opslang(context: click.Context) -> int:
     Exit status: 0 all well; 1 a relation is false or undecided; 2 an error in the input or its use;
     130 after an interrupt.
     """
-    return _shell() if context.invoked_subcommand is None else 0
+    if context.invoked_subcommand is not None:
+        return 0
+    from opslang.front.entrance import shell as enter
+
+    return enter()
 
 
 @opslang.command()
@@ -130,25 +132,9 @@ def shell(keys: str, **shared: Any) -> int:
 
     What does not come from a terminal is run as a script.
     """
-    return _shell(keys, **shared)
+    from opslang.front.entrance import shell as enter
 
-
-def _shell(
-    keys: str = "emacs", prime: int = 2, output: str = "text", limit: int | None = None, width: int | None = None,
-    both: bool = False, colour: str = "auto",
-) -> int:  # fmt: skip
-    from opslang.front.output import on_terminal
-
-    dumb = os.environ.get("TERM") == "dumb"
-    if dumb or output == "jsonl" or not on_terminal(sys.stdin) or not on_terminal(sys.stdout):
-        from opslang.front.batch import run as run_scripts
-        from opslang.front.batch import settings_for
-
-        return run_scripts(("-",), settings_for(output, prime, limit, width, both, colour))
-    from opslang.front.shell import main as converse
-
-    gc.enable()
-    return converse(prime, limit, output, both, keys, colour)
+    return enter(keys, **shared)
 
 
 def _like(word: str, context: click.Context) -> list[str]:

@@ -5,6 +5,7 @@ What is typed comes back as text.  Everything that is not needed for the first p
 
 from __future__ import annotations
 
+import gc
 import os
 import sys
 from collections.abc import Callable, Iterable
@@ -195,6 +196,8 @@ def _in_background(_: object) -> None:
     """Loads what the first answer needs, while the user reads the first prompt."""
     global _loading
     if _loading is None:
+        gc.freeze()
+        gc.enable()  # it is off while the program starts
         _loading = Thread(target=_load, daemon=True)
         _loading.start()
 

@@ -1,8 +1,8 @@
 """Help on the terms of the trade that the tool uses.  Text only; the examples are run by the tests and by `help`.
 
 Sources: Steenrod and Epstein, Cohomology Operations (Annals of Mathematics Studies 50, 1962); Serre, Cohomologie
-modulo 2 des complexes d'Eilenberg-MacLane (Comment. Math. Helv. 27, 1953); Milnor, The Steenrod algebra and its dual (Annals of
-Mathematics 67, 1958); Adem, The iteration of the Steenrod squares (Proc. Nat. Acad. Sci. 38, 1952).
+modulo 2 des complexes d'Eilenberg-MacLane (Comment. Math. Helv. 27, 1953); Milnor, The Steenrod algebra and its dual
+(Annals of Mathematics 67, 1958); Adem, The iteration of the Steenrod squares (Proc. Nat. Acad. Sci. 38, 1952).
 """
 
 from __future__ import annotations

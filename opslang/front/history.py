@@ -9,7 +9,6 @@ from __future__ import annotations
 import os
 import sys
 from collections.abc import Iterable
-from pathlib import Path
 
 from prompt_toolkit.history import History
 
@@ -19,23 +18,22 @@ LONGEST = 20_000
 """An input of more characters is not worth keeping."""
 
 
-def state_folder() -> Path | None:
+def state_folder() -> str | None:
     """Where the platform keeps what a program remembers for its user: on Linux by the XDG base directory specification.
 
     None where there is no home.
     """
     home = os.path.expanduser("~")
     if sys.platform == "win32":
-        local = os.environ.get("LOCALAPPDATA") or os.path.join(home, "AppData", "Local")
-        return Path(local) / "opslang" if os.path.isabs(local) else None
+        base = os.environ.get("LOCALAPPDATA") or os.path.join(home, "AppData", "Local")
+    elif sys.platform == "darwin":
+        base = os.path.join(home, "Library", "Application Support")
+    else:
+        base = os.path.join(home, ".local", "state")
     chosen = os.environ.get("XDG_STATE_HOME", "")
-    if os.path.isabs(chosen):
-        return Path(chosen) / "opslang"
-    if not os.path.isabs(home):
-        return None
-    if sys.platform == "darwin":
-        return Path(home) / "Library" / "Application Support" / "opslang"
-    return Path(home) / ".local" / "state" / "opslang"
+    if os.path.isabs(chosen) and sys.platform != "win32":
+        base = chosen
+    return os.path.join(base, "opslang") if os.path.isabs(base) else None
 
 
 def written(text: str) -> str:
@@ -52,9 +50,9 @@ def read(line: str) -> str:
 class Remembered(History):
     """The history that the line editor shows; the last line comes first."""
 
-    def __init__(self, folder: Path | None) -> None:
+    def __init__(self, folder: str | None) -> None:
         super().__init__()
-        self._place = None if folder is None else folder / "history"
+        self._place = None if folder is None else os.path.join(folder, "history")
         self._last: str | None = None
 
     def load_history_strings(self) -> Iterable[str]:
@@ -62,7 +60,8 @@ class Remembered(History):
         if self._place is None:
             return []
         try:
-            data = self._place.read_bytes()
+            with open(self._place, "rb") as file:
+                data = file.read()
             if len(data) > LARGEST:
                 data = data[data.index(b"\n", len(data) - LARGEST // 2) + 1 :]
                 self._rewrite(data)
@@ -73,8 +72,9 @@ class Remembered(History):
 
     def _rewrite(self, data: bytes) -> None:
         assert self._place is not None
-        beside = self._place.with_name(f"history-{os.getpid()}")
-        beside.write_bytes(data)
+        beside = f"{self._place}-{os.getpid()}"
+        with open(beside, "wb") as file:
+            file.write(data)
         os.replace(beside, self._place)
 
     def append_string(self, string: str) -> None:
@@ -90,7 +90,7 @@ class Remembered(History):
         if self._place is None or len(string) > LONGEST:
             return
         try:
-            self._place.parent.mkdir(parents=True, exist_ok=True, mode=0o700)
+            os.makedirs(os.path.dirname(self._place), mode=0o700, exist_ok=True)
             handle = os.open(self._place, os.O_WRONLY | os.O_APPEND | os.O_CREAT, 0o600)
             try:
                 os.write(handle, (written(string) + "\n").encode("utf-8", "surrogateescape"))
