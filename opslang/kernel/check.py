@@ -23,12 +23,14 @@ def check(derivation: Derivation, laws: Mapping[str, Law]) -> None:
     for number, step in enumerate(derivation.steps, start=1):
         if step.law not in laws:
             raise Rejected(f"step {number}: there is no law {step.law}")
+        if step.bindings.get("p") != current.prime:
+            raise Rejected(f"step {number}: {step.law} is used at another prime")
         try:
             equation = laws[step.law].instance(**step.bindings)
             factor, exponent = factor_at(current, step.path)
         except (ValueError, TypeError, AttributeError, IndexError, KeyError, AssertionError, TooMany) as reason:
             raise Rejected(f"step {number}: {step.law} has no such instance or place: {reason}") from reason
-        if equation.rhs.prime != current.prime or factor != equation.factor or exponent < equation.power:
+        if factor != equation.factor or exponent < equation.power:
             raise Rejected(f"step {number}: {step.law} does not apply there")
         current = replace(current, step.path, equation.power, equation.rhs)
         if current != step.after:

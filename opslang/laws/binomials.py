@@ -61,6 +61,7 @@ def _counts(levels: list[dict[State, list[Branch]]], ends: dict[State, int]) -> 
     return counts
 
 
+@lru_cache(maxsize=1 << 12)
 def count(n: int, k: int, p: int) -> int:
     """The number of j with C(n - (p-1) j, k - p j) nonzero mod p, without listing them."""
     if n < 0 or k < 0:

@@ -14,7 +14,6 @@ from opslang.ir.term import (
     TERM_LIMIT,
     UNIT,
     Apply,
-    Element,
     Factor,
     Monomial,
     TooMany,
@@ -37,7 +36,8 @@ def whole(parts: Parts, p: int) -> Monomial:
     product = cup(of_monomial(p, UNIT), *(power(of_monomial(p, y), n) for y, n in parts))
     require(len(product.terms) == 1 and product.terms[0][1] == 1, "the parts are not in order")
     monomial = product.terms[0][0]
-    require(not is_stable(monomial) and degree_of_monomial(monomial, p) is not None, "no class of known degree")
+    known = not any(is_stable(y) for y, _ in parts) and degree_of_monomial(monomial, p) is not None
+    require(known, "not a product of classes of known degree")
     return monomial
 
 
@@ -173,6 +173,10 @@ def _match_frobenius(factor: Factor, exponent: int, p: int) -> Bindings | None:
     return {"p": p, "k": factor.index, "y": y, "n": n}
 
 
+def _frobenius_vanishes(p: int, k: int, y: Monomial, n: int) -> bool:
+    return k % n != 0
+
+
 FROBENIUS = Law(
     name="frobenius",
     title="operations on p-th powers",
@@ -186,6 +190,7 @@ FROBENIUS = Law(
     setting=("let x in H^2",),
     instance=_frobenius,
     match=_match_frobenius,
+    vanishes=_frobenius_vanishes,
 )
 
 
@@ -275,8 +280,3 @@ BETA_POWER = Law(
     match=_match_beta_power,
     kills=True,
 )
-
-
-def element_of(p: int, *letters_on: tuple[int, Monomial]) -> Element:
-    """A linear combination of monomials."""
-    return add(p, *((c, of_monomial(p, m)) for c, m in letters_on))

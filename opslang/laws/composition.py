@@ -10,6 +10,9 @@ from opslang.laws.law import Bindings, Binomial, Equation, Law, only, require, s
 _SHOWN = 8
 """Binomials of a row that are shown one by one, the vanishing ones too, when there are no more than this."""
 
+_SCANNED = 64
+"""Up to this index a row is listed to see whether it is empty; beyond it its terms are counted."""
+
 
 def _pair(factor: Factor, outer: str, inner: str) -> tuple[Apply, Apply] | None:
     if isinstance(factor, Apply) and factor.key == outer:
@@ -55,6 +58,10 @@ def _adem_binomials(p: int, a: int, b: int, x: Monomial) -> tuple[Binomial, ...]
     return _shown(((b - 1, a, a // 2 + 1),), 2)
 
 
+def _adem_vanishes(p: int, a: int, b: int, x: Monomial) -> bool:
+    return not (adem.squares(a, b) if a <= _SCANNED else adem.count_squares(a, b))
+
+
 ADEM = Law(
     name="adem",
     title="the Adem relation",
@@ -65,6 +72,7 @@ ADEM = Law(
     instance=_adem,
     match=_match_adem,
     coefficients=adem.squares,
+    vanishes=_adem_vanishes,
     binomials=_adem_binomials,
 )
 
@@ -90,6 +98,10 @@ def _powers_binomials(p: int, a: int, b: int, x: Monomial) -> tuple[Binomial, ..
     return _shown((((p - 1) * b - 1, a, a // p + 1),), p)
 
 
+def _powers_vanish(p: int, a: int, b: int, x: Monomial) -> bool:
+    return not (adem.powers(a, b, p) if a <= _SCANNED else adem.count_powers(a, b, p))
+
+
 ADEM_POWERS = Law(
     name="adem-powers",
     title="the Adem relation for reduced powers",
@@ -104,6 +116,7 @@ ADEM_POWERS = Law(
     instance=_adem_powers,
     match=_match_powers,
     coefficients=adem.powers,
+    vanishes=_powers_vanish,
     binomials=_powers_binomials,
 )
 

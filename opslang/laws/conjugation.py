@@ -54,7 +54,6 @@ CHI_WORD = Law(
     examples=("chi(Sq^2 Sq^1) = chi(Sq^1) chi(Sq^2)",),
     instance=_word,
     match=_match_word,
-    unseen="test_conjugation_against_milnor",
 )
 
 
@@ -90,7 +89,6 @@ CHI_LETTER = Law(
     examples=("chi(Sq^3) = Sq^2 Sq^1", "chi(Sq^4) = Sq^4 + Sq^3 Sq^1"),
     instance=_letter,
     match=_match_letter,
-    unseen="test_conjugation_against_milnor",
 )
 
 
@@ -118,7 +116,6 @@ CHI_STRAFFIN = Law(
     examples=("chi(Sq^7) = Sq^4 chi(Sq^3)",),
     instance=_straffin,
     match=_match_straffin,
-    unseen="test_conjugation_against_milnor",
 )
 
 
@@ -144,11 +141,11 @@ CHI_PRIMITIVE = Law(
     examples=("chi(Q_1) = Q_1",),
     instance=_primitive,
     match=_match_primitive,
-    unseen="test_conjugation_against_milnor",
 )
 
 
 def _twice(p: int, letters: Letters, x: Monomial) -> Equation:
+    require(bool(letters), "the identity is its own conjugate")
     return Equation(Apply("chi", (("chi", letters),), x), 1, of_monomial(p, word(letters, x)))
 
 
@@ -169,5 +166,4 @@ CHI_TWICE = Law(
     examples=("chi(chi(Sq^5)) = Sq^5",),
     instance=_twice,
     match=_match_twice,
-    unseen="test_conjugation_against_milnor",
 )

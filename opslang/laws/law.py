@@ -46,7 +46,8 @@ class Law:
     """A mathematical rule, stated once.
 
     `examples` are lines of the language that hold (after the lines of `setting`).  `kills` says that the right side is
-    always 0.  `unseen` names the test that stands in where the polynomial witness cannot see the law.
+    always 0; `vanishes` says of bindings whether it is 0 for them.  `unseen` names the test that stands in where the
+    polynomial witness cannot see the law.
     """
 
     name: str
@@ -59,6 +60,7 @@ class Law:
     match: Callable[[Factor, int, int], Bindings | None]
     setting: tuple[str, ...] = ()
     kills: bool = False
+    vanishes: Callable[..., bool] | None = None
     unseen: str | None = None
     coefficients: Callable[..., Any] | None = None
     binomials: Callable[..., tuple[Binomial, ...]] = field(default=_no_binomials)

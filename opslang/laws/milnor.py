@@ -60,6 +60,7 @@ Q_COMMUTATOR = Law(
 
 
 def _product(p: int, k: int, parts: Parts) -> Equation:
+    require(k >= 0, "there is no such primitive")
     return leibniz(p, "Q", k, parts)
 
 
@@ -82,6 +83,7 @@ Q_PRODUCT = Law(
 
 
 def _squared(p: int, k: int, x: Monomial) -> Equation:
+    require(k >= 0, "there is no such primitive")
     return Equation(Apply("Q", k, single(Apply("Q", k, x))), 1, zero(p))
 
 

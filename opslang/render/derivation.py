@@ -138,9 +138,7 @@ def lines(derivation: Derivation, notation: Notation = "text", width: int = 80) 
     for group in groups:
         rows += _group_rows(group, p, notation, width, margin)
     if not derivation.finished:
-        rows.append(
-            " " * margin + "… the derivation goes on" if notation == "unicode" else " " * margin + "... it goes on"
-        )
+        rows.append(f"{' ' * margin}{'…' if notation == 'unicode' else '...'} not written out to its end")
     elif not groups:
         rows.append(" " * margin + "no law applies: this is the canonical form")
     return rows

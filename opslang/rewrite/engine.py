@@ -1,7 +1,7 @@
 """The engine that explains: applies laws until none applies, and returns the derivation.
 
-Strategy.  Terms are taken from the left.  In a term, a law that gives 0 is tried first, outermost first, since it ends
-the term at once; then every law of the book in order, innermost factors first.  What has been found normal is
+Strategy.  Terms are taken from the left.  In a term, instances that give 0 are looked for first, outermost first:
+one ends the term at once.  Then every law of the book in order, innermost factors first.  What has been found normal is
 remembered, so a step costs a search through the terms that it made and not through the whole sum.  Fuel is the number
 of steps; when it runs out the derivation so far comes back with a diagnostic, since nobody reads thousands of lines.
 """
@@ -33,7 +33,7 @@ class Search:
     def __init__(self, prime: int, laws: Sequence[Law] = BOOK) -> None:
         self.prime = prime
         self.laws = laws
-        self.killers = [law for law in laws if law.kills]
+        self.killers = [law for law in laws if law.kills or law.vanishes]
         self.settled: set[Monomial] = set()
 
     def first(self, element: Element) -> Redex | None:
@@ -50,7 +50,7 @@ class Search:
         for at, (factor, exponent) in enumerate(monomial.blocks):
             for law in self.killers:
                 bindings = law.match(factor, exponent, self.prime)
-                if bindings is not None:
+                if bindings is not None and (law.vanishes is None or law.vanishes(**bindings)):
                     return (at,), law, bindings
             if isinstance(factor, Apply) and factor.argument not in self.settled:
                 below = self._killed(factor.argument)
