@@ -1,7 +1,7 @@
 """A derivation for a reader: numbered lines, a TeX `align*`, and items of a record.
 
 Each step is printed with its law, the instance of it that was used, the binomials that decided it, and the whole
-element afterwards.  Steps in a row by one law that gives 0 share a number.  Nothing is computed but instances of laws.
+element afterwards.  Steps in a row by one law whose instances are short share a number.  Nothing is computed but instances of laws.
 """
 
 from __future__ import annotations
@@ -34,10 +34,16 @@ class Group:
         return str(self.first) if last == self.first else f"{self.first}-{last}"
 
 
+def _is_short(step: Step) -> bool:
+    """Whether a step may share its line: its instance has one term at most and no binomials to show."""
+    law = LAWS[step.law]
+    return law.kills or (not law.binomials(**step.bindings) and len(law.instance(**step.bindings).rhs.terms) <= 1)
+
+
 def _groups(derivation: Derivation) -> Iterator[Group]:
     waiting: list[Step] = []
     for number, step in enumerate(derivation.steps, start=1):
-        if waiting and (step.law != waiting[0].law or not LAWS[step.law].kills):
+        if waiting and not (step.law == waiting[0].law and _is_short(step) and _is_short(waiting[0])):
             yield Group(number - len(waiting), tuple(waiting), LAWS[waiting[0].law])
             waiting = []
         waiting.append(step)
