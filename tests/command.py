@@ -13,6 +13,8 @@ from attrs import frozen
 
 ROOT = Path(__file__).resolve().parent.parent
 COMMAND = [sys.executable, "-m", "opslang"]
+MEASURED = [sys.executable, "-m", "coverage", "run", f"--rcfile={ROOT}/pyproject.toml", f"--data-file={ROOT}/.coverage"]
+"""In front of `-m opslang`, so that the lines run in the new process count too."""
 PATIENCE = 30.0
 """Seconds after which a command counts as hanging; generous, since test machines are slow and shared."""
 
@@ -38,12 +40,15 @@ def opslang(
     stdin: str | bytes = b"",
     cwd: Path | None = None,
     env: Mapping[str, str] | None = None,
+    timed: bool = False,
 ) -> Ran:
-    """Runs `opslang` with the arguments to its end."""
+    """Runs `opslang` with the arguments to its end; measured where the tests are, unless it is to be timed."""
+    measured = "COVERAGE_RUN" in os.environ and not timed
+    command = [*MEASURED, "--parallel-mode", "-m", "opslang"] if measured else COMMAND
     data = stdin.encode() if isinstance(stdin, str) else stdin
     start = monotonic()
     done = subprocess.run(
-        [*COMMAND, *arguments],
+        [*command, *arguments],
         input=data,
         capture_output=True,
         cwd=cwd,

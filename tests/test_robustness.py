@@ -16,11 +16,14 @@ import time
 import warnings
 from collections.abc import Iterator
 from contextlib import suppress
+from functools import partial
 from pathlib import Path
 
 import pytest
-from command import COMMAND, Ran, environment, opslang, start
+from command import COMMAND, Ran, environment, start
+from command import opslang as untimed
 
+opslang = partial(untimed, timed=True)
 BUDGET = 2.0
 ALLOWED = 10.0
 
