@@ -41,7 +41,7 @@ file, the place of the formula and of the change, and why the formula is now fal
 from __future__ import annotations
 
 import random
-from collections.abc import Callable, Iterator
+from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache
 
@@ -68,6 +68,10 @@ class Slip:
     why: str
     certainty: str
     mark: Mark
+
+    @property
+    def place(self) -> tuple[str, str, int, int]:
+        return self.draft, self.file, self.line, self.column
 
     @property
     def severity(self) -> str:
@@ -107,25 +111,31 @@ def candidates() -> tuple[Slip, ...]:
     )
 
 
-def in_turn(groups: dict[str, list[Slip]], shuffle: Callable[[list[Slip]], None]) -> Iterator[Slip]:
-    """One of each kind, then another of each, until none is left; rare kinds first, lest others take their formulas."""
-    rare_first = sorted(groups.values(), key=len)
-    for slips in rare_first:
-        shuffle(slips)
-    while any(rare_first):
-        for slips in rare_first:
-            if slips:
-                yield slips.pop()
-
-
 def plant(seed: int, count: int) -> tuple[Slip, ...]:
-    """`count` slips (fewer if there are not so many), no two in one formula; in the order of the drafts."""
+    """`count` slips (fewer if there are not so many), no two in one formula; in the order of the drafts.
+
+    The kinds take turns, rare ones first, lest the others use up their formulas.
+    """
     groups: dict[str, list[Slip]] = {name: [] for name in KINDS}
     for slip in candidates():
         groups[slip.kind].append(slip)
+    lots = random.Random(seed)
+    kinds = sorted(groups.values(), key=len)
+    for slips in kinds:
+        lots.shuffle(slips)
     chosen: dict[tuple[str, str, int, int], Slip] = {}
-    for slip in in_turn(groups, random.Random(seed).shuffle):
-        if len(chosen) == count:
-            break
-        chosen.setdefault((slip.draft, slip.file, slip.line, slip.column), slip)
-    return tuple(chosen[key] for key in sorted(chosen))
+    while any(kinds) and len(chosen) < count:
+        for slips in kinds:
+            slip = next_free(slips, chosen)
+            if slip is not None and len(chosen) < count:
+                chosen[slip.place] = slip
+    return tuple(chosen[place] for place in sorted(chosen))
+
+
+def next_free(slips: list[Slip], chosen: Mapping[tuple[str, str, int, int], Slip]) -> Slip | None:
+    """The next slip of a kind in a formula that has none yet; the list grows shorter."""
+    while slips:
+        slip = slips.pop()
+        if slip.place not in chosen:
+            return slip
+    return None
