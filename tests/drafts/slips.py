@@ -126,9 +126,9 @@ def plant(seed: int, count: int) -> tuple[Slip, ...]:
     chosen: dict[tuple[str, str, int, int], Slip] = {}
     while any(kinds) and len(chosen) < count:
         for slips in kinds:
-            slip = next_free(slips, chosen)
-            if slip is not None and len(chosen) < count:
-                chosen[slip.place] = slip
+            found = next_free(slips, chosen)
+            if found is not None and len(chosen) < count:
+                chosen[found.place] = found
     return tuple(chosen[place] for place in sorted(chosen))
 
 
