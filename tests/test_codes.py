@@ -19,6 +19,7 @@ NAME = re.compile(r"[a-z]+(-[a-z0-9]+)*\Z")
 #: Names that no input shows by rights; each has a test of its own.
 SHOWN_ELSEWHERE = {
     "worker-lost": "test_robustness.py",
+    "no-such-result": "test_codes.py",
     "internal-fault": "test_codes.py",
     "engines-disagree": "test_codes.py",
 }
@@ -60,6 +61,8 @@ def test_each_is_explained(name: str) -> None:
     assert NAME.match(name) and code.title and len(code.explanation) > 25
     assert not code.title.endswith(".") and code.explanation.rstrip().endswith((".", ")", ":"))
     assert bool(code.example) != (name in SHOWN_ELSEWHERE)
+    if not code.example:
+        assert f"{name}" in (ROOT / "tests" / SHOWN_ELSEWHERE[name]).read_text(), "shown by no test"
 
 
 @pytest.mark.parametrize("name", sorted(name for name in CODES if CODES[name].example.startswith("$ ")))
@@ -82,6 +85,15 @@ def test_each_example_script_shows_its_name(tmp_path: Path) -> None:
     for record in map(json.loads, ran.out.splitlines()):
         shown[record["file"]] |= {record["name"], *(warning["name"] for warning in record["warnings"])}
     assert [name for name in SCRIPTS if name not in shown[name]] == []
+
+
+def test_a_result_that_the_shell_does_not_have() -> None:
+    from opslang.front.logbook import Logbook
+    from opslang.report.diagnostic import Refusal
+
+    with pytest.raises(Refusal) as refusal:
+        Logbook().result(7)
+    assert refusal.value.diagnostic.name == "no-such-result"
 
 
 def test_engines_that_disagree_are_reported_and_none_is_chosen() -> None:

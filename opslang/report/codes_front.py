@@ -65,6 +65,14 @@ FRONT_CODES: dict[str, Code] = {
         ),
         example="$ timeout --signal INT 3 opslang eval --limit 1000000000000 'series K(Z/2, 3) to 200000'",
     ),
+    "no-such-result": Code(
+        title="The shell has no such result",
+        explanation=(
+            "In the shell `that` stands for an earlier result, by its number or the last one.  There is none of that "
+            "number, or it was found at another prime."
+        ),
+        example="",
+    ),
     "worker-lost": Code(
         title="A worker process ended before its time",
         explanation=(
