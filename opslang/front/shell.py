@@ -86,7 +86,7 @@ class Shell:
             from opslang.front.requests import Requests
             from opslang.front.sitting import Sitting
 
-            sitting = Sitting(self._settings(), self._work, to_terminal, columns)
+            sitting = Sitting(self._settings(), self._work, to_terminal, paged, columns)
             self._kept = sitting, Requests(sitting, self._console, paged)
         return self._kept
 
@@ -152,6 +152,8 @@ def paged(text: str) -> None:
         to_terminal(text + "\n")
         return
     from click import echo_via_pager
+
+    os.environ.setdefault("LESS", "-FRX")  # what was shown stays on the screen
 
     echo_via_pager(text + "\n")
 

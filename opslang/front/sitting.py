@@ -15,6 +15,7 @@ from attrs import evolve
 from opslang.front.glance import LONGEST, Glance, copy_of, glance
 from opslang.front.logbook import THAT, Entry, Expanded, Logbook, Role, as_typed
 from opslang.front.output import ansi
+from opslang.front.pasting import displayed, on_one_line, opens_display
 from opslang.front.statement import Settings
 from opslang.front.vocabulary import shell_statement
 from opslang.front.working import Stopped, Work
@@ -32,9 +33,17 @@ _WHY_THAT = re.compile(r"\s*why\s+(that(?:_(\d+)|_\{(\d+)\})?)\s*\Z")
 
 
 class Sitting:
-    """The state of one sitting.  `say` writes text to the terminal, `width` gives its columns."""
+    """The state of one sitting.  `say` writes text to the terminal, `paged` shows what may be long, `width`
+    gives the columns."""
 
-    def __init__(self, settings: Settings, work: Work, say: Callable[[str], None], width: Callable[[], int]) -> None:
+    def __init__(
+        self,
+        settings: Settings,
+        work: Work,
+        say: Callable[[str], None],
+        paged: Callable[[str], None],
+        width: Callable[[], int],
+    ) -> None:
         self.settings = settings
         self.limit = settings.limit or DEFAULT_LIMIT
         self.notation: Notation = {"unicode": "unicode", "latex": "latex"}.get(settings.output, "text")  # type: ignore[assignment]
@@ -43,6 +52,7 @@ class Sitting:
         self.width = width
         self._work = work
         self._say = say
+        self._paged = paged
 
     def _new_session(self, prime: int) -> Session:
         return Session(prime, self.limit, self.settings.both)
@@ -91,10 +101,18 @@ class Sitting:
 
     def complete(self, text: str) -> bool:
         """Whether a text typed so far waits for no further line."""
-        return not text.strip() or shell_statement(text.strip()) is not None or is_complete(text)
+        if not text.strip() or shell_statement(text.strip()) is not None:
+            return True
+        if opens_display(text):
+            return text.endswith("\n")
+        return displayed(text, "input") is not None or is_complete(text)
 
     def statements(self, text: str) -> Iterable[Source]:
         """The statements of an input, one of the shell wherever a line begins with its word."""
+        display = displayed(text, "input")
+        if display is not None:
+            yield from display
+            return
         held: list[str] = []
         first = 1
         for number, line in enumerate([*text.splitlines(), ""], start=1):
@@ -131,7 +149,9 @@ class Sitting:
         self._show(evolve(outcome, source=source, span=line.typed_span(outcome.span), diagnostics=tuple(found)))
         if outcome.verdict != "error":
             role: Role = "declaration" if outcome.kind == "declaration" else "answer"
-            self.logbook.keep(Entry(source.text, line.text, role, before, outcome, None, line.borrowed))
+            whole = len(list(chunks(line.text.split("\n"), "input"))) == 1
+            text = line.text if whole else on_one_line(line.text)
+            self.logbook.keep(Entry(source.text, text, role, before, outcome, None, line.borrowed))
         return outcome.verdict != "error"
 
     def _outcome(self, source: Source, before: Scope) -> Outcome | None:
@@ -162,7 +182,11 @@ class Sitting:
             if diagnostic.name == "too-large" and "--limit" in diagnostic.help:
                 diagnostic = evolve(diagnostic, help=diagnostic.help.replace("--limit", "limit"))
             self.complain(diagnostic, outcome.source)
-        self.say(show(outcome, self.notation, self.width()))
+        text = show(outcome, self.notation, self.width())
+        if outcome.kind == "element" or not text:
+            self.say(text)
+        else:
+            self._paged(text)
 
     def why(self, number: int | None, source: Source) -> bool:
         """Derive the last answer, or the result of that number, in the scope in which it was found."""
