@@ -24,7 +24,7 @@ class Change:
 
 
 BRACED = r"\{(?:[^{}]|\{[^{}]*\})*\}"
-HEADS = r"(?:\\Sq|\\mathrm\{Sq\}|(?<![\\A-Za-z])Sq|\\(?:PP|Pp|Pow|P)(?![A-Za-z])|\\mathcal\{P\})"
+HEADS = r"(?:\\(?:Sq|Square|PP|Pp|Pow|P)(?![A-Za-z])|\\mathrm\{Sq\}|(?<![\\A-Za-z])(?:Sq|P(?=\^))|\\mathcal\{P\})"
 INDEX = re.compile(HEADS + rf"\s*\^?\s*({BRACED}|\d|[a-z](?![a-z]))")
 CLASS_INDEX = re.compile(rf"(?<![A-Za-z\\])(?:w|c|\\iota)_({BRACED}|\d|[a-z])")
 POWER = re.compile(rf"(?:(?<![A-Za-z\\_])[a-z]|\b[wc]_\d|\\iota_\d|\))\^({BRACED}|\d)")

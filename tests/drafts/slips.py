@@ -4,7 +4,7 @@ What a reader of this corpus must know
 --------------------------------------
 Each folder beside this file is an invented draft, in a style of its own (`style` in its `marks.toml`); the names of
 the authors are invented too.  The drafts compile with pdflatex and need amsart, amsmath, amssymb, amsthm, booktabs,
-hyperref, marginnote, mathtools, tikz-cd, xcolor and what these draw in.  `marks.toml` judges the formulas:
+graphicx, hyperref, marginnote, mathtools, tikz-cd, xcolor and what these draw in.  `marks.toml` judges the formulas:
 
 - `file`, `line`, `column`, `quote`: where the formula begins (from 1, in code points) and its text, letter by letter;
   a quote may include the dollars, and words, where the claim does ("$\Sq^k x=0$ for $k>m$").
