@@ -51,7 +51,7 @@ class Intake:
     def __init__(self) -> None:
         self.frames: list[Frame] = []
         self.pending: list[Token] = []
-        self.fuel = 500_000
+        self.fuel = 200_000
         self.since = 0
         self.last: Token | None = None
 
@@ -129,7 +129,9 @@ class Intake:
         return token
 
     def argument(self, long: bool = True) -> list[Token] | None:
-        """One argument as TeX takes it, a group without its braces or one token; None, nothing taken, if there is none."""
+        """One argument as TeX takes it, a group without braces or one token; None, nothing taken, if there is none."""
+        if self.fuel < 0:
+            return None
         self.skip_space()
         token = self.atom()
         if token is None:
@@ -173,7 +175,7 @@ class Intake:
 
     def option(self, spaces: bool = True) -> list[Token] | None:
         """What stands in square brackets next; None, and nothing taken, if nothing does."""
-        if not self.follows("[", spaces):
+        if self.fuel < 0 or not self.follows("[", spaces):
             return None
         first = self.last
         assert first is not None
@@ -204,7 +206,7 @@ class Intake:
         """
         taken: list[Token] = []
         depth = 0
-        while len(taken) < LONGEST:
+        while len(taken) < LONGEST and self.fuel >= 0:
             token = self.atom()
             if token is None:
                 break

@@ -24,25 +24,25 @@ _CODE = re.compile(
 )
 
 _ENVIRONMENTS = "|".join(re.escape(name) for name in MATH_ENVIRONMENTS)
-_SPANS = re.compile(
+_OPENERS = re.compile(
     rf"""
   (?P<par>\n[ \t]*\n\s*)
-| (?P<remark><!--(?P<said>(?:(?!-->)[\s\S])*?)-->)
-| \{{math\}}(?P<tick>`+)(?P<role>(?:(?!\n[ \t]*\n)[^`])+?)(?P=tick)
-| (?P<code>(?P<ticks>`+)(?!`)(?:(?!\n[ \t]*\n)[\s\S])*?(?<!`)(?P=ticks)(?!`))
-| (?P<environment>\\begin\{{(?P<name>{_ENVIRONMENTS})\}}(?:(?!\n[ \t]*\n)[\s\S])*?\\end\{{(?P=name)\}})
-| \\\\\((?P<round2>(?:(?!\n[ \t]*\n)[\s\S])+?)\\\\\)
-| \\\\\[(?P<square2>(?:(?!\n[ \t]*\n)[\s\S])+?)\\\\\]
-| (?<!\\)\\\((?P<round>(?:(?!\n[ \t]*\n)[\s\S])+?)(?<!\\)\\\)
-| (?<!\\)\\\[(?P<square>(?:(?!\n[ \t]*\n)[\s\S])+?)(?<!\\)\\\]
+| (?P<remark><!--)
+| (?P<role>\{{math\}}(?=`))
+| (?P<ticks>`+)
+| (?P<environment>\\begin\{{(?P<name>{_ENVIRONMENTS})\}})
+| (?P<bracket>\\\\?[(\[])
 | \\(?P<escaped>[!-/:-@\[-`{{-~])
-| \$\$(?P<double>(?:(?!\n[ \t]*\n)(?:\\[\s\S]|[^$\\]|\$(?!\$)))+?)\$\$
-| \$(?![\s$])(?P<dollar>(?:(?!\n[ \t]*\n)(?:\\[\s\S]|[^$\\]))+?)(?<!\s)\$(?!\d)
-| (?P<link>\]\([^)\s]*\)|<[a-zA-Z/][^<>\n]*>|\*+)
+| (?P<double>\$\$)
+| (?P<dollar>\$(?![\s$]))
+| (?P<link>\]\([^)\s(\[]*\)|<[a-zA-Z/][^<>\n]*>|\*+)
 """,
     re.VERBOSE,
 )
-_DISPLAYED = {"square", "square2", "double"}
+_BLANK_LINE = re.compile(r"\n[ \t]*\n")
+_DOLLAR = re.compile(r"(?:[^$\\]++|\\[\s\S])*+\$")
+_TICKS = re.compile("`+")
+_CLOSERS = {"(": ")", "[": "]"}
 
 
 class Page:
@@ -52,7 +52,7 @@ class Page:
         self.text = text
         self.parts: list[str] = []
         self.blocks: list[tuple[int, int, str, int]] = []
-        """(start, end, kind, depth); kinds are display (a fence), heading, footnote, directive, break (before an item)."""
+        """(start, end, kind, depth): display (a fence), heading, footnote, directive, break (before an item)."""
         self.fences: list[tuple[str, int]] = []
         self.hidden: tuple[str, int, int] | None = None
         self.listed = False
@@ -79,7 +79,7 @@ class Page:
             self.parts.append("\n")
         self.parts.pop()
         if self.hidden is not None and self.hidden[2] >= 0:
-            self.blocks.append((self.hidden[2], len(self.text), "display", 0))
+            self.blocks.append((min(self.hidden[2], len(self.text)), len(self.text), "display", 0))
 
     def _line(self, line: str, at: int) -> str:
         quote = _QUOTE.match(line)
@@ -187,28 +187,96 @@ def _formula(
 
 def _spans(text: str, start: int, end: int, file: int, found: list[Token]) -> None:
     """Text and formulas of a stretch."""
+    passage = _Passage(text, end)
     at = start
-    for span in _SPANS.finditer(text, start, end):
+    while (span := _OPENERS.search(text, at, end)) is not None:
         begin, stop = span.span()
+        kind = span.lastgroup
+        whole, inner, form = stop, (stop, stop), ""
+        if kind not in ("par", "escaped", "link"):
+            close = passage.close(span)
+            if close is None:
+                found.append(Token("run", text[at:stop], at, stop, file))
+                at = stop
+                continue
+            whole, inner, form = close
         if begin > at:
             found.append(Token("run", text[at:begin], at, begin, file))
-        at = stop
-        kind = span.lastgroup
+        at = whole
         if kind == "par":
             found.append(Token("par", "", begin, stop, file))
-        elif kind == "remark":
-            said = span["said"].strip()
-            if said.startswith("opslang:"):
-                found.append(Token("directive", said, begin, stop, file))
         elif kind == "escaped":
             found.append(Token("run", span["escaped"], begin, stop, file))
-        elif kind == "environment":
-            found.extend(lex(text, file, begin, stop))
-        elif kind == "code":
-            found.append(Token("run", " ", begin, stop, file))
-        elif kind in ("tick", "role", "round", "round2", "dollar") or kind in _DISPLAYED:
-            group = "role" if kind == "tick" else kind
-            form = "display" if group in _DISPLAYED else "inline"
-            _formula(form, text, span.start(group), span.end(group), begin, stop, file, found)
+        elif form == "remark":
+            said = text[slice(*inner)].strip()
+            if said.startswith("opslang:"):
+                found.append(Token("directive", said, begin, whole, file))
+        elif form == "environment":
+            found.extend(lex(text, file, begin, whole))
+        elif form == "code":
+            found.append(Token("run", " ", begin, whole, file))
+        elif form:
+            _formula(form, text, *inner, begin, whole, file, found)
     if end > at:
         found.append(Token("run", text[at:end], at, end, file))
+
+
+Close = tuple[int, tuple[int, int], str]
+
+
+class _Passage:
+    """Looks for what closes a span, inside its paragraph; what was not found once is not looked for again there."""
+
+    def __init__(self, text: str, end: int) -> None:
+        self.text = text
+        self.end = end
+        self.paragraph = -1
+        self.missing: set[str] = set()
+
+    def close(self, span: re.Match[str]) -> Close | None:
+        """Where the span ends, what it holds, and what it is; None when it is not closed."""
+        kind, stop = span.lastgroup, span.end()
+        if stop > self.paragraph:
+            blank = _BLANK_LINE.search(self.text, stop, self.end)
+            self.paragraph = self.end if blank is None else blank.start()
+            self.missing.clear()
+        if kind == "remark":
+            return self._until("-->", stop, "remark")
+        if kind == "ticks":
+            return self._code(span["ticks"], stop, "code")
+        if kind == "role":
+            ticks = _TICKS.match(self.text, stop)
+            return self._code(ticks.group(), ticks.end(), "inline") if ticks is not None else None
+        if kind == "environment" or kind == "name":
+            return self._until("\\end{" + span["name"] + "}", stop, "environment")
+        if kind == "bracket":
+            sign = span["bracket"]
+            return self._until(sign[:-1] + _CLOSERS[sign[-1]], stop, "inline" if sign[-1] == "(" else "display")
+        if kind == "double":
+            return self._until("$$", stop, "display")
+        found_dollar = _DOLLAR.match(self.text, stop, self.paragraph)
+        if found_dollar is None:
+            return None
+        last = found_dollar.end()
+        if self.text[last - 2].isspace() or self.text[last : last + 1].isdigit():
+            return None
+        return last, (stop, last - 1), "inline"
+
+    def _until(self, closer: str, stop: int, form: str) -> Close | None:
+        if closer in self.missing:
+            return None
+        limit = self.end if form == "remark" else self.paragraph
+        at = self.text.find(closer, stop, limit)
+        if at < 0 or at == stop:
+            self.missing.update((closer,) if at < 0 else ())
+            return None
+        return at + len(closer), (stop, at), form
+
+    def _code(self, ticks: str, stop: int, form: str) -> Close | None:
+        if ticks in self.missing:
+            return None
+        found = re.compile(f"(?<!`){ticks}(?!`)").search(self.text, stop, self.paragraph)
+        if found is None:
+            self.missing.add(ticks)
+            return None
+        return found.end(), (stop, found.start()), form

@@ -37,6 +37,7 @@ class Reader(Stack):
         self.tables = Tables()
         self.conditions: list[bool | None] = []
         self.packages_read: set[int] = set()
+        self.exhausted = False
         self.acts = {
             "open": self.open_brace,
             "close": self.close_brace,
@@ -165,6 +166,9 @@ class Reader(Stack):
             self.notice("macro-without-end", f"{token.text} expands without end and was cut off", token)
         elif intake.fuel > 0:
             return True
+        elif not self.exhausted:
+            self.exhausted = True
+            self.notice("macros-too-costly", "the macros before this point expand too far; from here on none is", token)
         return False
 
     def command(self, token: Token) -> None:
