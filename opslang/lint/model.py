@@ -29,7 +29,7 @@ NOWHERE = Origin(0, 0, 0)
 
 
 def _at() -> Origin:
-    return field(default=NOWHERE, eq=False, repr=False)  # type: ignore[no-any-return]
+    return field(default=NOWHERE, eq=False, repr=False)
 
 
 # --- index positions ----------------------------------------------------------------------------
@@ -64,7 +64,7 @@ class Operation:
 
     `head`: Sq, P, beta, Q (Milnor's primitive).  `upper`: the indices above (several in `Sq^{4,2,1}`).  `lower`: the one
     below: the order of a Bockstein, the number of Q_k, a square counted from the top.  `bound`: ">" or "<" or "≥" or "≤"
-    in `Sq^{>|x|}`.  `tensor`: `Sq^{\\otimes I}`. 
+    in `Sq^{>|x|}`.  `tensor`: `Sq^{\\otimes I}`.
     """
 
     head: str
