@@ -58,6 +58,7 @@ def test_both_engines_agree_on_classes(p: int) -> None:
         derivation, found = derive(tree, p, fuel=300)
         check(derivation, LAWS)
         assert derivation.finished == (not found)
+        assert "does not apply" not in derivation.stopped, f"seed {SEED}: {derivation.stopped}"
         if derivation.finished:
             finished += 1
             engine.start()
@@ -134,6 +135,7 @@ def test_the_order_of_the_book_does_not_change_the_answer(p: int) -> None:
             rng.shuffle(laws)
             other = run(start, laws, 600)
             check(other, LAWS)
+            assert "does not apply" not in other.stopped, f"seed {SEED}: {other.stopped}"
             if first.finished and other.finished:
                 compared += 1
                 assert other.result == first.result, f"seed {SEED}: {tree} at {p} by {[law.name for law in laws]}"

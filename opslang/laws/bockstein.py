@@ -45,7 +45,7 @@ def _root_exponent(factor: Factor, exponent: int, k: int, p: int) -> int | None:
     order = factor.order if isinstance(factor, Class) else 1
     if lifts_to_integers(factor, p) or order >= k:
         return 1
-    if p > 2 and parity_of(factor):
+    if word_on_class(factor, p) is None or (p > 2 and parity_of(factor)):
         return None
     # The square of a class of odd degree at 2 is Sq^{2i+1} of it, so it lifts to the integers.
     odd = p == 2 and (degree_of_monomial(single(factor), p) or 0) % 2 == 1
@@ -160,15 +160,17 @@ OF_BOCKSTEIN = Law(
 
 
 def _odd_class_squared(p: int, k: int, y: Monomial) -> Equation:
-    odd = p == 2 and only(y) is not None and (degree_of_monomial(y, p) or 0) % 2 == 1
-    require(odd and k > 1, "not the square of an odd class")
+    factor = only(y)
+    odd = p == 2 and factor is not None and word_on_class(factor, p) and (degree_of(factor, p) or 0) % 2 == 1
+    require(bool(odd) and k > 1, "not the square of an odd class")
     return Equation(Apply("beta", k, whole(((y, 2),), p)), 1, zero(p))
 
 
 def _match_odd_class_squared(factor: Factor, exponent: int, p: int) -> Bindings | None:
     if p == 2 and isinstance(factor, Apply) and factor.key == "beta" and factor.index > 1:
         blocks = factor.argument.blocks
-        if len(blocks) == 1 and blocks[0][1] == 2 and (degree_of(blocks[0][0], p) or 0) % 2 == 1:
+        odd = len(blocks) == 1 and (degree_of(blocks[0][0], p) or 0) % 2 == 1
+        if odd and blocks[0][1] == 2 and word_on_class(blocks[0][0], p):
             return {"p": p, "k": factor.index, "y": single(blocks[0][0])}
     return None
 

@@ -22,6 +22,7 @@ from opslang.ir.term import (
     degree_of_monomial,
     is_stable,
     of_monomial,
+    parity_of,
     parity_of_monomial,
     power,
     zero,
@@ -265,7 +266,8 @@ def _match_beta_power(factor: Factor, exponent: int, p: int) -> Bindings | None:
     assert isinstance(factor, Apply)
     blocks = factor.argument.blocks
     y = Monomial(tuple((f, n // p) for f, n in blocks))
-    return {"p": p, "y": y} if all(n % p == 0 for _, n in blocks) and not parity_of_monomial(y) else None
+    even = not any(parity_of(f) for f, _ in blocks)
+    return {"p": p, "y": y} if even and all(n % p == 0 for _, n in blocks) else None
 
 
 BETA_POWER = Law(

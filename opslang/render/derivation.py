@@ -1,7 +1,8 @@
 """A derivation for a reader: numbered lines, a TeX `align*`, and items of a record.
 
 Each step is printed with its law, the instance of it that was used, the binomials that decided it, and the whole
-element afterwards.  Steps in a row by one law whose instances are short share a number.  Nothing is computed but instances of laws.
+element afterwards.  Steps in a row by one law whose instances are short share a number.  Nothing is computed but
+instances of laws.
 """
 
 from __future__ import annotations

@@ -95,6 +95,9 @@ def run(start: Element, laws: Sequence[Law] = BOOK, fuel: int = FUEL, operation:
                 current = replace(current, path, equation.power, equation.rhs)
             except TooMany as reason:
                 stopped = f"the next step has {reason}"
+            except ValueError as reason:
+                # A search that proposes what its law refuses is a fault of ours, but no reason to lose the rest.
+                stopped = f"{law.name} was tried where it does not apply: {reason}"
             else:
                 steps.append(Step(law.name, bindings, path, current))
                 length += len(current.terms) * len(path)
