@@ -102,6 +102,49 @@ def evaluate(
 
 
 @opslang.command()
+@click.argument("paths", metavar="PATH...", nargs=-1)
+@click.option(
+    "--output",
+    type=click.Choice(("text", "jsonl", "sarif")),
+    default="text",
+    show_default=True,
+    help="How to write findings.",
+)
+@click.option("--mend", is_flag=True, help="Write the mends that are certain into the files.")
+@click.option("--coverage", is_flag=True, help="Say of each formula whether it was checked, and why not.")
+@click.option("--why", is_flag=True, help="Show the derivation behind each finding.")
+@click.option("--explain", metavar="NAME", help="Say what a finding of this name is, and nothing else.")
+@click.option("--since", metavar="DATE|REVISION", help="Only files changed since then, or since that git revision.")
+@click.option("--jobs", type=click.IntRange(min=1), help="Processes to share the files; 2 where there are many.")
+@click.option("--cluster", metavar="ENGINE", help="Share the files by joblib: loky, or a dask scheduler's address.")
+@click.option("--cache/--no-cache", default=True, show_default=True, help="Keep results of files that do not change.")
+@click.option("--as", "name", metavar="NAME", default="-", help="The name of what comes on standard input (`-`).")
+@click.option("--width", type=click.IntRange(min=20), help="Columns of text; the terminal's, or 80.")
+@click.option("--colour", "--color", type=click.Choice(COLOURS), default="auto", help="Colour for findings.")
+@click.pass_context
+def lint(context: click.Context, paths: tuple[str, ...], explain: str | None, **asked: Any) -> int:
+    """Check the formulas of drafts: TeX, Markdown, MyST, notebooks, and folders of them.
+
+    `-` is standard input.  Nothing is changed without --mend.  Exit status: 0 nothing found; 1 findings; 2 a file
+    could not be read.
+    """  # fmt: skip
+    from opslang.front import lint as linter
+    from opslang.front.lint_files import BadSince
+
+    if explain is not None:
+        return context.invoke(_explain_command, name=explain, width=asked["width"])  # type: ignore[no-any-return]
+    if not paths:
+        raise click.MissingParameter(ctx=context, param_hint="'PATH...'", param_type="argument")
+    try:
+        return linter.run(paths, linter.LintSettings(**asked))
+    except BadSince as trouble:
+        what = f"{str(trouble)!r} is neither a date (2026-03-01) nor a revision of a git repository here"
+        raise click.BadParameter(what, ctx=context, param_hint="--since") from trouble
+    except linter.NoCluster as trouble:
+        raise click.BadParameter(str(trouble), ctx=context, param_hint="--cluster") from trouble
+
+
+@opslang.command()
 @click.argument("name", required=False)
 @click.option("--width", type=click.IntRange(min=20), help="Columns of text; the terminal's, or 80.")
 @click.pass_context
@@ -120,6 +163,9 @@ def explain(context: click.Context, name: str | None, width: int | None) -> int:
     if text is None:
         raise click.BadParameter(_unknown(name, page.names()), ctx=context, param_hint="NAME")
     return print_result(text)
+
+
+_explain_command = explain
 
 
 @opslang.command()

@@ -8,6 +8,7 @@ from opslang.report.codes import CODES
 
 if TYPE_CHECKING:
     from opslang.laws.law import Law
+    from opslang.lint.rule import LintRule
 
 
 def _laws() -> dict[str, Law]:
@@ -16,9 +17,15 @@ def _laws() -> dict[str, Law]:
     return {law.name: law for law in BOOK}
 
 
+def _rules() -> dict[str, LintRule]:
+    from opslang.lint.rule import register
+
+    return {rule.name: rule for rule in register()}
+
+
 def names() -> list[str]:
     """Every name that can be explained."""
-    return sorted({*CODES, *_laws()})
+    return sorted({*CODES, *_laws(), *_rules()})
 
 
 def explain(name: str, width: int) -> str | None:
@@ -26,6 +33,8 @@ def explain(name: str, width: int) -> str | None:
     if name in CODES:
         code = CODES[name]
         return _page(name, code.title, _paragraphs(code.explanation, width), "Example", code.example.splitlines())
+    if name in _rules():
+        return _rule_page(_rules()[name], width)
     law = _laws().get(name)
     if law is None:
         return None
@@ -33,12 +42,21 @@ def explain(name: str, width: int) -> str | None:
     return _page(name, "a law", facts, "Examples", list(law.examples))
 
 
+def _rule_page(rule: LintRule, width: int) -> str:
+    body = [*_paragraphs(rule.why, width), "", "Said of:", ""]
+    body += [f"    {line}" for text in rule.bad for line in text.splitlines()]
+    body += ["", "Not said of:", ""]
+    body += [f"    {line}" for text in rule.good for line in text.splitlines()]
+    return _page(rule.name, rule.title, body, "", [])
+
+
 def listing(width: int) -> str:
     """All names with their titles: the laws first, then the diagnostics."""
-    laws, codes = sorted(_laws()), sorted(CODES)
-    room = max(map(len, [*laws, *codes])) + 2
+    laws, codes, rules = sorted(_laws()), sorted(CODES), sorted(_rules())
+    room = max(map(len, [*laws, *codes, *rules])) + 2
     lines = ["Laws", *(f"  {name:{room}}{_laws()[name].condition}" for name in laws)]
     lines += ["", "Diagnostics", *(f"  {name:{room}}{CODES[name].title}" for name in codes)]
+    lines += ["", "Findings in drafts", *(f"  {name:{room}}{_rules()[name].title}" for name in rules)]
     lines += ["", "`opslang explain NAME` says more about one of them."]
     return "\n".join(line if len(line) <= width else line[: width - 3] + "..." for line in lines)
 

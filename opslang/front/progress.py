@@ -60,6 +60,10 @@ class Progress:
             self._put(b"\r" + b" " * self._shown + b"\r")
             self._shown = 0
 
+    def seconds(self) -> float:
+        """How long it has been."""
+        return monotonic() - self._started
+
     def text(self) -> str:
         """The line itself."""
         words = [f"{self.statements:,} statements"]
@@ -67,7 +71,7 @@ class Progress:
             words.append(f"{self.errors:,} with errors")
         if self._script is not None and self._script.size:
             words.append(f"{100 * min(self._script.read, self._script.size) // self._script.size} % of the file read")
-        words.append(f"{monotonic() - self._started:.0f} s")
+        words.append(f"{self.seconds():.0f} s")
         return ", ".join(words)
 
     def _tick(self, number: int, frame: FrameType | None) -> None:

@@ -368,7 +368,8 @@ class Known:
     `maps`: degree by which a map that is no operation raises degree, by its spelling or letter (d: 1, f^*: 0).
     `operations`: spellings that mean an operation (macro declarations).  `conventions`: "lower-squares" …, free text keys.
     `ranges`: what the neighbouring sentences say of symbols.  `counted_by`: what the index of P^i counts.
-    `integers`: symbols said to be numbers, so that they are no classes.
+    `integers`: symbols said to be numbers, so that they are no classes (`beta`, `P` among them: no operations).
+    `script`: lines of the author's own declarations, in the notation of scripts.
     """
 
     prime: int | None = None
@@ -382,10 +383,28 @@ class Known:
     integers: frozenset[str] = frozenset()
     space: str = ""
     sentences: str = ""
+    script: tuple[str, ...] = ()
 
     def fact(self, name: ClassName) -> ClassFact | None:
-        """What is known of a class; a family answers for its members with a number or a symbol as index."""
+        """What is known of a class by its spelling."""
         return self.classes.get(name.spelling)
+
+    def degree(self, name: ClassName) -> Polynomial | None:
+        """The degree of a class; a family answers with its index, iota_n with n; None where the draft does not say."""
+        fact = self.fact(name)
+        if fact is not None and fact.degree is not None:
+            return fact.degree
+        if len(name.index) != 1:
+            return None
+        from opslang.lint.symbolic.values import polynomial_of
+
+        index = polynomial_of(name.index[0])
+        if index is None:
+            return None
+        family = self.families.get(name.letter)
+        if family is not None:
+            return family.degree.substitute({"index": index})
+        return index if name.letter == "iota" else None
 
 
 # --- findings -----------------------------------------------------------------------------------

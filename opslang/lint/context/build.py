@@ -1,0 +1,215 @@
+"""The statements of a draft, each with what is known where it stands: two passes over the pieces.
+
+The first gathers what is said, the second looks it up.  Nothing is invented: what nobody said stays unknown.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping, Sequence
+
+from attrs import define, evolve, field
+
+from opslang.lint.context.directives import Allowed, Said, allowed_in, directives_of
+from opslang.lint.context.facts import Ledger, Saying, Spot
+from opslang.lint.context.names import class_names
+from opslang.lint.context.sayings import degree_written, from_formula, from_words, numbers_said
+from opslang.lint.context.script import Scripts
+from opslang.lint.context.setting import ODD, Settings, learn, no_operations
+from opslang.lint.context.spaces import SpaceSaid
+from opslang.lint.context.stream import Paragraph, paragraphs
+from opslang.lint.formula import statements_of
+from opslang.lint.model import (
+    ClassFact,
+    ClassName,
+    Condition,
+    FamilyFact,
+    Finding,
+    Known,
+    Operation,
+    Origin,
+    Rule,
+    Statement,
+)
+from opslang.lint.reading import Document, Formula
+from opslang.lint.rule import Unit
+from opslang.lint.symbolic.polynomial import Polynomial
+
+INDEX = Polynomial.symbol("index")
+
+
+def units_of(document: Document) -> tuple[list[Unit], Allowed, list[Finding]]:
+    """The statements with what is known, what the author allows, and findings on the author's own declarations."""
+    said, trouble = directives_of(document)
+    builder = _Builder(document, Scripts(said))
+    builder.gather()
+    allowed = allowed_in(document, said)
+    units = [unit for unit in builder.units() if not allowed.skips(unit.statement.at)]
+    return units, allowed, trouble + builder.scripts.trouble
+
+
+@define
+class _Builder:
+    document: Document
+    scripts: Scripts
+    ledger: Ledger = field(factory=Ledger)
+    settings: Settings = field(factory=Settings)
+    pages: list[tuple[Paragraph, list[Spot]]] = field(factory=list)
+    read: dict[int, tuple[Statement, ...]] = field(factory=dict)
+    numbers: dict[int, frozenset[str]] = field(factory=dict)
+
+    def statements(self, formula: Formula) -> tuple[Statement, ...]:
+        """The statements of a formula, read once."""
+        found = self.read.get(id(formula))
+        if found is None:
+            found = self.read[id(formula)] = statements_of(formula)
+        return found
+
+    # --- the first pass -------------------------------------------------------------------------
+
+    def gather(self) -> None:
+        """Take note of all that is said."""
+        for number, paragraph in enumerate(paragraphs(self.document.pieces)):
+            if not paragraph.formulas:
+                continue
+            first = paragraph.formulas[0].where
+            environment = first.environments[-1].number if first.environments else 0
+            section = first.section_number
+
+            def spot_at(
+                offset: int, n: int = number, s: int = section, e: int = environment, p: Paragraph = paragraph
+            ) -> Spot:
+                return Spot(s, n, p.sentence_at(offset), offset, e)
+
+            spots = [spot_at(place) for place in paragraph.places]
+            self.pages.append((paragraph, spots))
+            learn(self.settings, paragraph, spots, number, section)
+            self.numbers[number] = frozenset(name.spelling for name in numbers_said(paragraph, self.statements))
+            for saying in from_words(paragraph, self.statements, spot_at):
+                self.ledger.add(saying)
+            for formula, spot in zip(paragraph.formulas, spots):
+                for saying in from_formula(self.statements(formula), formula):
+                    self.ledger.add(
+                        evolve(saying, spot=spot, source="the formula", local=self._hypothesis(paragraph, spot))
+                    )
+
+    def _hypothesis(self, paragraph: Paragraph, spot: Spot) -> bool:
+        """Whether a declaration stands behind an if."""
+        before = paragraph.text[max(0, spot.offset - 24) : spot.offset].lower()
+        return any(f" {word} " in f" {before} " for word in ("if", "when", "whenever", "unless", "suppose"))
+
+    # --- the second pass ------------------------------------------------------------------------
+
+    def units(self) -> Iterator[Unit]:
+        """The statements with what is known."""
+        for paragraph, spots in self.pages:
+            for formula, spot in zip(paragraph.formulas, spots):
+                statements = self.statements(formula)
+                if not any(_worth(statement) for statement in statements):
+                    continue
+                frame = self._frame(paragraph, formula, spot)
+                for statement in statements:
+                    yield Unit(statement, self._known(statement, spot, frame))
+
+    def _frame(self, paragraph: Paragraph, formula: Formula, spot: Spot) -> Known:
+        """What is known for all statements of one formula."""
+        start, end = paragraph.around(spot.offset, 1)
+        near = [
+            one
+            for one, place in zip(paragraph.formulas, paragraph.places)
+            if start <= place < end and one is not formula
+        ]
+        ranges = [condition for one in near for condition in self._conditions(one)]
+        context = self.scripts.at(formula)
+        prime = context.prime if context.prime is not None else self.settings.prime_at(spot)
+        return Known(
+            prime=None if prime == ODD else prime,
+            maps={},
+            operations=context.operations,
+            conventions=dict(context.conventions) | ({"prime": "odd"} if prime == ODD else {}),
+            ranges=tuple(ranges),
+            rules=context.rules,
+            integers=self.numbers.get(spot.paragraph, frozenset()) | no_operations(paragraph, formula, spot.offset),
+            sentences=paragraph.text[start:end],
+            script=context.lines,
+        )
+
+    def _conditions(self, formula: Formula) -> Iterator[Condition]:
+        for statement in self.statements(formula):
+            if statement.kind == "condition":
+                yield from statement.conditions
+
+    def _known(self, statement: Statement, spot: Spot, frame: Known) -> Known:
+        names = {name.spelling + (f"^{name.label}" if name.label else ""): name for name in class_names(statement)}
+        classes: dict[str, ClassFact] = {}
+        context = self.scripts.at(statement.formula)
+        for spelling, name in names.items():
+            if name.spelling in frame.integers:
+                continue
+            fact = context.facts.get(name.spelling) or self.ledger.fact(spelling, spot)
+            if name.letter == "iota":
+                fact = self._fundamental(name, fact, spot)
+            if fact is not None:
+                classes[name.spelling] = fact
+        return evolve(
+            frame, classes=classes, families=self._families(names.values()), prime=self._prime(statement, frame)
+        )
+
+    def _prime(self, statement: Statement, frame: Known) -> int | None:
+        heads = {operation.head for operation in operations_in(statement)}
+        if "Sq" in heads:
+            return 2
+        if frame.prime is not None or frame.conventions.get("prime") == "odd":
+            return frame.prime
+        if "P" in heads or self.settings.powers or self.settings.odd:
+            return None
+        return 2 if self.settings.squares else None
+
+    def _families(self, names: Sequence[ClassName] | object) -> Mapping[str, FamilyFact]:
+        families = {"iota": FamilyFact(INDEX, None, "", "the notation of fundamental classes")}
+        if self.settings.bundles:
+            families["w"] = FamilyFact(INDEX, None, "bundle", "Stiefel–Whitney classes")
+        return families
+
+    def _fundamental(self, name: ClassName, fact: ClassFact | None, spot: Spot) -> ClassFact | None:
+        """The fundamental class of a degree: its coefficients are those of the nearest space K(G, n) of that degree."""
+        degree = _index_degree(name)
+        if degree is None:
+            return fact
+        if fact is not None and (fact.order is not None or fact.order_text):
+            return fact if fact.degree is not None else evolve(fact, degree=degree)
+        here, section = self.settings.spaces_near(spot)
+        for spaces in (here, section[::-1]):
+            fitting = [space for space in spaces if _fits(space, degree)]
+            groups = {space.group for space in fitting}
+            if len(groups) == 1:
+                group = groups.pop()
+                assert group is not None
+                return ClassFact(degree, group.order, group.text, fitting[0].text, "the space named beside it")
+            if groups:
+                return ClassFact(degree, None, "", "several", "several spaces of this degree are named")
+        return fact or ClassFact(degree, None, "", "", "the notation of fundamental classes")
+
+
+def _fits(space: SpaceSaid, degree: Polynomial) -> bool:
+    return space.kind == "K" and space.group is not None and degree_written(space.degree) == degree
+
+
+def _index_degree(name: ClassName) -> Polynomial | None:
+    from opslang.lint.symbolic.values import polynomial_of
+
+    return polynomial_of(name.index[0]) if len(name.index) == 1 else None
+
+
+def _worth(statement: Statement) -> bool:
+    """Whether a statement may be about operations at all."""
+    return statement.kind not in ("condition",)
+
+
+def operations_in(statement: Statement) -> list[Operation]:
+    """The operations in a statement."""
+    from opslang.lint.context.names import nodes_in
+
+    return [node for node in nodes_in(statement) if isinstance(node, Operation)]
+
+
+__all__ = ["Origin", "Rule", "Saying", "units_of"]

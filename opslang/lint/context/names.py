@@ -1,0 +1,54 @@
+"""Walks over the trees of statements: which names and operations occur in them.  Knows the shapes of nodes only."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from opslang.lint.model import (
+    BigSum,
+    Call,
+    ClassName,
+    Cohomology,
+    Conjugate,
+    Group,
+    Index,
+    Power,
+    Product,
+    Statement,
+    Sum,
+)
+
+
+def nodes_in(statement: Statement) -> Iterator[object]:
+    """All factors in a statement, and the sides that are no sums."""
+    waiting: list[object] = list(reversed(statement.sides))
+    while waiting:
+        node = waiting.pop()
+        yield node
+        waiting += reversed(_inside(node))
+
+
+def _inside(node: object) -> list[object]:
+    match node:
+        case Sum():
+            return [product for _, product in node.terms]
+        case Product():
+            return list(node.factors)
+        case Group() | Conjugate() | BigSum():
+            return [node.body]
+        case Power():
+            return [node.base]
+        case Call():
+            return list(node.arguments)
+        case Index(kind="length"):
+            return list(node.parts)
+        case Index():
+            return [part for part in node.parts if isinstance(part, Index)]
+        case Cohomology():
+            return []
+    return []
+
+
+def class_names(statement: Statement) -> list[ClassName]:
+    """The class names in a statement."""
+    return [node for node in nodes_in(statement) if isinstance(node, ClassName)]

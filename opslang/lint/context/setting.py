@@ -1,0 +1,146 @@
+"""What a paragraph stands under: the prime, the Eilenberg–MacLane spaces named there, bundles, the letters that are numbers.
+
+Knows the ways in which drafts say these things; draws no conclusion about a formula.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+
+from attrs import define, field, frozen
+
+from opslang.lint.context.facts import Spot
+from opslang.lint.context.spaces import SpaceSaid, mentioned, written
+from opslang.lint.context.stream import Paragraph
+from opslang.lint.reading import Formula
+
+ODD = 0
+"""Stands for a prime p that is odd and has no number."""
+_PRIME_IS = re.compile(r"^(?:p|\\ell|l)=(\d+)[.,;:]?$")
+_WORDS_PRIME = re.compile(
+    r"\b(?:at|the) (?:the )?prime ([\ue000-\uf7ff]|two|three|five|\d+)|\bmod(?:ulo)? (\d+) (?:Steenrod|cohomology)",
+    re.IGNORECASE,
+)
+_ODD = re.compile(
+    r"[\ue000-\uf7ff] (?:(?:is|be|denotes?) )?(?:an? )?(?:fixed |arbitrary )?odd(?: prime)?\b|odd primes? [\ue000-\uf7ff]|an odd prime\b",
+    re.IGNORECASE,
+)
+_FOR_GOOD = re.compile(
+    r"\b(?:rest|throughout|from now on|fix|let|here|now|assume|always|section|paper|note)\b", re.IGNORECASE
+)
+_PRIMES = {"two": 2, "three": 3, "five": 5}
+_NO_BETA = re.compile(
+    r"\b(?:temperature|coupling|roots?|Betti|bar length|bar complex|golden|number theory|length [\ue000-\uf7ff]|inverse|angle|exponent)\b",
+    re.IGNORECASE,
+)
+_NO_POWER = re.compile(r"\b(?:projective|Postnikov|field|stage|polynomial ring|series|lines)\b", re.IGNORECASE)
+_BUNDLES = re.compile(r"Stiefel|Whitney|vector bundle|tangent bundle|bundle\b|characteristic class", re.IGNORECASE)
+_MANIFOLD = re.compile(r"\bmanifolds?\b", re.IGNORECASE)
+
+
+@frozen
+class PrimeSaid:
+    """A prime from some place on; ODD for an odd one without number.  `local`: only in its paragraph."""
+
+    spot: Spot
+    prime: int
+    local: bool
+
+
+@frozen
+class SpaceAt:
+    """A space named at some place."""
+
+    spot: Spot
+    space: SpaceSaid
+
+
+@define
+class Settings:
+    """What a draft says in passing, in the order of reading."""
+
+    primes: list[PrimeSaid] = field(factory=list)
+    spaces: list[SpaceAt] = field(factory=list)
+    odd: bool = False
+    squares: bool = False
+    powers: bool = False
+    bundles: bool = False
+    manifolds: bool = False
+
+    def prime_at(self, spot: Spot) -> int | None:
+        """The prime at a place: a number, ODD, or None where none was said."""
+        best: PrimeSaid | None = None
+        for said in self.primes:
+            if (said.spot.paragraph, said.spot.offset) > (spot.paragraph, spot.offset):
+                break
+            if said.spot.section == spot.section and (not said.local or said.spot.paragraph == spot.paragraph):
+                best = said
+        if best is not None:
+            return best.prime
+        lasting = {said.prime for said in self.primes if not said.local and said.spot.section < spot.section}
+        return lasting.pop() if len(lasting) == 1 else ODD if lasting == {ODD} else None
+
+    def spaces_near(self, spot: Spot) -> tuple[list[SpaceSaid], list[SpaceSaid]]:
+        """The spaces named in the paragraph of a place, and those named before it in its section."""
+        here = [at.space for at in self.spaces if at.spot.paragraph == spot.paragraph]
+        section = [
+            at.space for at in self.spaces if at.spot.section == spot.section and at.spot.paragraph < spot.paragraph
+        ]
+        return here, section
+
+
+def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: int, section: int) -> None:
+    """Take note of what a paragraph says; `spots` are those of its formulas, `at` its number."""
+    text = paragraph.text
+    settings.bundles = settings.bundles or bool(_BUNDLES.search(text))
+    settings.manifolds = settings.manifolds or bool(_MANIFOLD.search(text))
+    found: list[PrimeSaid] = []
+    for formula, spot, place in zip(paragraph.formulas, spots, paragraph.places):
+        plain = written(formula.tokens)
+        _note_use(settings, plain)
+        prime = _PRIME_IS.match(plain)
+        if prime:
+            start, _ = paragraph.sentences[paragraph.sentence_at(place)]
+            lasting = _FOR_GOOD.search(text, start, place + 1)
+            found.append(PrimeSaid(spot, int(prime[1]), not lasting))
+        if "K(" in plain or "B^" in plain:
+            settings.spaces += [SpaceAt(spot, space) for space in mentioned(plain)]
+    found += _primes_in_words(settings, paragraph, at, section)
+    settings.primes += sorted(found, key=lambda said: said.spot.offset)
+
+
+def _note_use(settings: Settings, plain: str) -> None:
+    settings.squares = settings.squares or "Sq" in plain
+    settings.powers = settings.powers or "P^" in plain
+
+
+def _primes_in_words(settings: Settings, paragraph: Paragraph, at: int, section: int) -> list[PrimeSaid]:
+    found = []
+    text = paragraph.text
+    for one in _WORDS_PRIME.finditer(text):
+        word = one[1] or one[2]
+        number = _PRIMES.get(word.lower()) or (int(word) if word.isdigit() else None)
+        if number is None:
+            plain = written(paragraph.formula(word).tokens)
+            number = int(plain) if plain.isdigit() else None
+        if number is not None:
+            spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
+            found.append(PrimeSaid(spot, number, not _FOR_GOOD.search(text, max(0, one.start() - 60), one.start())))
+    for one in _ODD.finditer(text):
+        settings.odd = True
+        spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
+        found.append(PrimeSaid(spot, ODD, False))
+    return found
+
+
+def no_operations(paragraph: Paragraph, formula: Formula, place: int) -> frozenset[str]:
+    """Heads of operations that the words around a formula say are something else: `beta` a root, `P` a space."""
+    start, end = paragraph.around(place, 1)
+    near = paragraph.text[start:end]
+    names = set()
+    if _NO_BETA.search(near):
+        names.add("beta")
+    if _NO_POWER.search(near):
+        names.add("P")
+    return frozenset(names)
