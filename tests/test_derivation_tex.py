@@ -43,6 +43,13 @@ def test_no_step_says_so_and_an_unfinished_one_too() -> None:
     assert r"\cdots" in align(derive(TRIPLE, 2, fuel=1)[0])
 
 
+def test_a_first_line_that_is_too_long_is_not_shown_as_zero() -> None:
+    derivation, _ = derive(ir.Composite((1,) * 300, 300), 2)
+    (row,) = lines(derivation)
+    assert row.strip() == "... not written out to its end: its first line has a word of more than 250 letters"
+    assert "0" not in align(derivation)
+
+
 def test_items_are_plain_data() -> None:
     found = items(derive(TRIPLE, 2)[0])
     assert json.loads(json.dumps(found)) == found

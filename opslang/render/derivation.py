@@ -35,6 +35,11 @@ class Group:
         return str(self.first) if last == self.first else f"{self.first}-{last}"
 
 
+def _is_blank(derivation: Derivation) -> bool:
+    """Whether not even the first line could be written out."""
+    return not derivation.finished and not derivation.steps and not derivation.start.terms
+
+
 def _is_short(step: Step) -> bool:
     """Whether a step may share its line: its instance has one term at most and no binomials to show."""
     law = LAWS[step.law]
@@ -141,11 +146,12 @@ def lines(derivation: Derivation, notation: Notation = "text", width: int = 80) 
     p = derivation.start.prime
     groups = list(_groups(derivation))
     margin = max((len(group.number) for group in groups), default=1) + 2
-    rows = _sum_rows(derivation.start, notation, " " * margin, width)
+    rows = [] if _is_blank(derivation) else _sum_rows(derivation.start, notation, " " * margin, width)
     for group in groups:
         rows += _group_rows(group, p, notation, width, margin)
     if not derivation.finished:
-        rows.append(f"{' ' * margin}{'…' if notation == 'unicode' else '...'} not written out to its end")
+        dots = "…" if notation == "unicode" else "..."
+        rows.append(f"{' ' * margin}{dots} not written out to its end: {derivation.stopped}")
     elif not groups:
         rows.append(" " * margin + "no law applies: this is the canonical form")
     return rows
@@ -210,7 +216,7 @@ def align(derivation: Derivation) -> str:
     widest = max(length for rows, _ in [(start, None), *steps] for _, length in rows)
     reasons = max((len(", ".join(_reason(group, p, "text"))) for _, group in steps), default=0)
     beside = widest + reasons <= _PAGE
-    rows = ["& " + row for row, _ in start]
+    rows = [] if _is_blank(derivation) else ["& " + row for row, _ in start]
     for broken, group in steps:
         if not beside:
             rows += _reason_rows(group, p)
