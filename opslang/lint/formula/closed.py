@@ -75,10 +75,9 @@ def _products(product: Product, values: dict[str, int]) -> list[tuple[int, sf.Pr
         head = Product(product.factors[:-1], product.glues[:-1], product.at) if len(product.factors) > 1 else None
         found = []
         for sign, tail in _written_out(last, values):
-            for head_sign, front in _products(head, values) if head else [(1, None)]:
-                factors = (*front.factors, *tail.factors) if front else tail.factors
-                glues = (*front.glues, *tail.glues) if front else tail.glues
-                found.append((sign * head_sign, sf.Product(factors, glues, tail.span)))
+            for head_sign, front in _products(head, values) if head else [(1, sf.Product((), (), tail.span))]:
+                joined = sf.Product((*front.factors, *tail.factors), (*front.glues, *tail.glues), tail.span)
+                found.append((sign * head_sign, joined))
         return found
     sign = 1
     factors: list[sf.Factor] = []

@@ -102,7 +102,8 @@ def _powered(factor: Factor, stretch: Stretch, start: int) -> Factor:
         raise NotRead("an exponent that was not understood", stretch.origin(mark)) from trouble
     at = stretch.origin(start)
     if isinstance(factor, Number) or (isinstance(factor, Group) and _is_minus_one(factor)):
-        return Coefficient(Index("power", (Index("number", (-1,)), exponent), at), at)
+        base = factor.value if isinstance(factor, Number) else -1
+        return Coefficient(Index("power", (Index("number", (base,)), exponent), at), at)
     return Power(factor, exponent, at)
 
 

@@ -29,10 +29,14 @@ def value_of(index: Index, values: Mapping[str, int]) -> Value | None:
         return values.get(str(parts[0]))
     if kind in ("length", "dots", "sigma"):
         return values.get(spelled(index)) if kind == "length" else None
-    numbers = [value_of(part, values) for part in parts if isinstance(part, Index)]
-    if any(number is None for number in numbers):
-        return None
-    return _combined(kind, [number for number in numbers if number is not None], parts)
+    numbers: list[Value] = []
+    for part in parts:
+        if isinstance(part, Index):
+            number = value_of(part, values)
+            if number is None:
+                return None
+            numbers.append(number)
+    return _combined(kind, numbers, parts)
 
 
 def _combined(kind: str, numbers: list[Value], parts: tuple[object, ...]) -> Value | None:
@@ -44,12 +48,13 @@ def _combined(kind: str, numbers: list[Value], parts: tuple[object, ...]) -> Val
         product: Value = 1
         for number in numbers:
             product = product * number
-        return _whole(product) if abs(product) < LARGEST else None
+        return _whole(product) if -LARGEST < product < LARGEST else None
     if kind == "power":
         base, exponent = numbers
-        if isinstance(exponent, Fraction) or exponent < 0 or exponent > 60 or abs(base) > 100:
+        if isinstance(exponent, Fraction) or exponent < 0 or exponent > 60 or not -100 <= base <= 100:
             return None
-        return _whole(base**exponent)
+        raised = Fraction(base) ** int(exponent)
+        return _whole(raised)
     if kind == "quotient":
         return _whole(Fraction(numbers[0]) / Fraction(numbers[1])) if numbers[1] else None
     if kind in ("floor", "ceiling"):
