@@ -1,0 +1,191 @@
+"""Decides closed relations: the classes are declared, the surface trees handed to a session, its outcome read.
+
+A class of some space is the fundamental class of K(G, n) under another name: what holds for it holds for every such class,
+and what fails for it fails for some.  A class of a particular space may satisfy more; then only "true" is believed.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from functools import lru_cache
+from typing import Literal
+
+from attrs import evolve, field, frozen
+
+from opslang.ground.source import Source, Span
+from opslang.ir import tree as ir
+from opslang.ir.outcome import Outcome
+from opslang.ir.tree import Class
+from opslang.lint.formula.closed import to_surface
+from opslang.lint.model import ClassFact, Known, Sum
+from opslang.lint.numeric.naming import Naming, Unnamed
+from opslang.meaning.lower import Lowering
+from opslang.meaning.value import cls
+from opslang.pipeline import Session, derive_value
+from opslang.report.diagnostic import Refusal
+from opslang.syntax import surface as sf
+from opslang.tables.bockstein import Undefined
+from opslang.tables.budget import TooLarge
+
+LIMIT = 20_000
+HIGHEST = 200
+LONGEST = 40
+"""Derivations are looked for up to this degree, so that no draft makes the linter slow."""
+
+Answer = Literal["true", "false", "undecided", "unknown"]
+
+
+@frozen
+class Decision:
+    """What is known of one closed relation.
+
+    `name` is the session's word for what is wrong (degrees-differ, bockstein-undefined, …); `special` says why a
+    class may satisfy more than is known of it, so that "false" cannot be believed.
+    """
+
+    answer: Answer
+    reason: str = ""
+    needed: str = ""
+    left: str = ""
+    right: str = ""
+    name: str = ""
+    special: str = ""
+    sort: str = ""
+    degree: int | None = None
+    derivation: tuple[str, ...] = field(default=(), repr=False)
+
+    @property
+    def certainly_false(self) -> bool:
+        """False, whatever the classes are."""
+        return self.answer == "false" and not self.special
+
+
+class Desk(Session):
+    """A session that is asked with surface trees."""
+
+    def answer(self, statement: sf.Statement, span: Span) -> Outcome:
+        """The outcome of a statement that has been read already.  Never raises."""
+        source = Source("", "")
+        blank = Outcome(source, span, "relation", "ok", self.scope.prime)
+        try:
+            return self._answer(statement, blank, Lowering(self.scope, ""))
+        except Refusal as refusal:
+            found = refusal.diagnostic
+            return evolve(blank, verdict="error", name=found.name, message=found.message)
+        except Undefined as trouble:
+            return evolve(blank, verdict="error", name="bockstein-undefined", message=str(trouble))
+        except (TooLarge, RecursionError, MemoryError):
+            return evolve(blank, verdict="error", name="too-large", message="too large to be tried")
+        except Exception as trouble:  # a linter passes over what it cannot compute
+            return evolve(blank, verdict="error", name="not-computed", message=str(trouble) or "not computed")
+
+
+@lru_cache(maxsize=64)
+def desk(prime: int, script: tuple[str, ...]) -> tuple[Desk, frozenset[str]]:
+    """A session at a prime, after the author's declarations, and the names that these declare."""
+    session = Desk(prime, LIMIT)
+    for line in script:
+        session.run(Source("% opslang:", line))
+    kept = {
+        letter + ("" if index is None else f"_{index}") + "'" * primes for letter, index, primes in session.scope.names
+    }
+    here = session.scope.localised()
+    if here is not None:
+        kept |= {
+            of.letter + ("" if of.index is None else f"_{of.index}") + "'" * of.primes for of in here.classes
+        }
+    return session, frozenset(kept)
+
+
+def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None = None, why: bool = False) -> Decision:
+    """Whether a closed relation holds; `values` are numbers for its symbols."""
+    numbers = dict(values or {})
+    prime = known.prime
+    if prime is None:
+        return Decision("unknown", "the prime is not known", "the prime")
+    try:
+        session, kept = desk(prime, known.script)
+    except ValueError:
+        return Decision("unknown", f"{prime} is not a prime", "the prime")
+    naming = Naming(known, numbers, kept)
+    try:
+        sides = [naming.renamed(left), naming.renamed(right)]
+        special = _declare(session, naming, prime, numbers)
+    except Unnamed as missing:
+        return Decision("unknown", f"{missing} is not known", str(missing))
+    surfaces = [to_surface(side, numbers) for side in sides]
+    if surfaces[0] is None or surfaces[1] is None:
+        return Decision("unknown", "symbols stand in it")
+    span = (left.at.start, right.at.end)
+    statement = sf.RelationStatement((surfaces[0], surfaces[1]), span)
+    outcome = session.answer(statement, span)
+    return _read(outcome, session, statement, special, why)
+
+
+def _declare(session: Desk, naming: Naming, prime: int, numbers: Mapping[str, int]) -> str:
+    """Puts the classes of a statement into the scope; says why they may be more special than they look."""
+    special = ""
+    for (spelling, _), (letter, name) in naming.given.items():
+        fact = naming.fact(name)
+        assert fact.degree is not None
+        degree = fact.degree.at(numbers)
+        if not isinstance(degree, int):
+            raise Unnamed(f"the degree of {spelling} as a number")
+        if not 1 <= degree <= HIGHEST:
+            raise Unnamed(f"a degree of {spelling} between 1 and {HIGHEST}")
+        order = _order(fact, spelling, numbers)
+        index = int(spelling.partition("_")[2]) if spelling.partition("_")[2].isdigit() else None
+        shown = spelling.rstrip("'") if index is None else name.letter
+        of = Class(shown, index, name.primes, degree, order)
+        session.scope.names[(letter, None, 0)] = cls(ir.Fundamental(of, degree, degree, (0, 0)), frozenset((of,)))
+        special = special or _special(fact, spelling)
+    return special
+
+
+def _order(fact: ClassFact, spelling: str, numbers: Mapping[str, int]) -> int:
+    if fact.order is not None:
+        return fact.order
+    if not fact.order_text:
+        return 1
+    value = numbers.get(fact.order_text)
+    if value is None:
+        raise Unnamed(f"the coefficients of {spelling}")
+    return value
+
+
+def _special(fact: ClassFact, spelling: str) -> str:
+    if fact.space and not fact.space.startswith(("K(", "B^")):
+        return f"{spelling} is a class of {fact.space}, of which more may be known"
+    return ""
+
+
+def _read(outcome: Outcome, session: Desk, statement: sf.RelationStatement, special: str, why: bool) -> Decision:
+    from opslang.render.text import element_text
+
+    name = outcome.name or ""
+    if outcome.verdict == "error":
+        return Decision("unknown", outcome.message or "it cannot be computed", name=name, special=special)
+    texts = [element_text(side) for side in outcome.sides]
+    left, right = texts if len(texts) == 2 else ("", "")
+    answer: Answer = "undecided" if outcome.verdict == "undecided" else "true" if outcome.verdict == "true" else "false"
+    steps: tuple[str, ...] = ()
+    if why and (outcome.degree or 0) <= LONGEST:
+        steps = _derivation(session, statement)
+    sort = outcome.sort or ""
+    return Decision(answer, outcome.message or "", "", left, right, name, special, sort, outcome.degree, steps)
+
+
+def _derivation(session: Desk, statement: sf.RelationStatement) -> tuple[str, ...]:
+    from opslang.render.derivation import lines
+
+    rows: list[str] = []
+    try:
+        for side in statement.sides:
+            value = Lowering(session.scope, "").sum(side)
+            if value.sort == "scalar":
+                continue
+            derivation, _ = derive_value(value, session.scope.prime)
+            rows += lines(derivation)
+    except Exception:  # what cannot be explained is left unexplained
+        return ()
+    return tuple(rows)
