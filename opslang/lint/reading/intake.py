@@ -12,6 +12,9 @@ from opslang.lint.reading.document import Token
 LONGEST = 4000
 """An argument of more tokens than this is taken for one whose brace was forgotten."""
 
+LONGEST_OPTION = 600
+"""The same for what stands in square brackets, in characters."""
+
 MUST_STOP = frozenset({"close", "par", "enter", "leave", "shift"})
 
 
@@ -61,7 +64,7 @@ class Intake:
             self.frames[-1].pending = self.pending
         self.pending = []
         self.frames.append(Frame(tokens, file, silent))
-        self.fuel += 40 * len(tokens)
+        self.fuel += 12 * len(tokens)
 
     def leave_file(self) -> None:
         """Forget the rest of the file that is being read."""
@@ -179,7 +182,7 @@ class Intake:
             return None
         first = self.last
         assert first is not None
-        found = self.until((("run", "]"),))
+        found = self.until((("run", "]"),), LONGEST_OPTION)
         if found is None:
             self.push([first])
         return found
@@ -199,14 +202,14 @@ class Intake:
         self.push(taken)
         return False
 
-    def until(self, stop: tuple[tuple[str, str], ...]) -> list[Token] | None:
+    def until(self, stop: tuple[tuple[str, str], ...], longest: int = LONGEST) -> list[Token] | None:
         """The tokens up to a sequence of (kind, text), outside braces; it is taken too.
 
         None, and nothing taken, if it does not come.
         """
         taken: list[Token] = []
         depth = 0
-        while len(taken) < LONGEST and self.fuel >= 0:
+        while len(taken) < longest and self.fuel >= 0:
             token = self.atom()
             if token is None:
                 break

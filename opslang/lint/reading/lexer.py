@@ -36,6 +36,8 @@ _DECLARED = re.compile(
     r"\\(?:DefineVerbatimEnvironment|lstnewenvironment|excludecomment|newverbatim|newminted)\s*\{(\w+)\}"
 )
 
+_HINTS = ("DefineVerbatim", "lstnewenv", "excludecomment", "newverbatim", "newminted")
+
 
 def _compiled(names: tuple[str, ...], letters: str) -> re.Pattern[str]:
     return re.compile(_RULES.format(opaque="|".join(map(re.escape, names)), at=letters), re.VERBOSE)
@@ -46,7 +48,7 @@ _USUAL = (_compiled(OPAQUE, ""), _compiled(OPAQUE, "@"))
 
 def lex(text: str, file: int, start: int = 0, end: int | None = None, package: bool = False) -> list[Token]:
     """The raw tokens of `text[start:end]`; `package` says that @ is a letter from the start."""
-    declared = tuple(_DECLARED.findall(text)) if "erbatim" in text or "lstnew" in text or "exclude" in text else ()
+    declared = tuple(_DECLARED.findall(text)) if end is None and any(word in text for word in _HINTS) else ()
     rules = (_compiled(OPAQUE + declared, ""), _compiled(OPAQUE + declared, "@")) if declared else _USUAL
     stop = len(text) if end is None else end
     tokens: list[Token] = []

