@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from fractions import Fraction
+from math import floor
 
 from opslang.lint.model import (
     BigSum,
@@ -111,12 +112,32 @@ def _choices(big: BigSum, values: dict[str, int]) -> list[dict[str, int]]:
     free = [name for name in bounds.variables if name not in values]
     if bounds.conditions and bounds.lower is None:
         return _solutions(big, free, values)
-    if len(bounds.variables) != 1 or bounds.lower is None or bounds.upper is None:
+    if len(bounds.variables) != 1 or (bounds.upper is None and not _vanishing_in_the_end(big)):
         raise NotClosed
-    first, last = _number(bounds.lower, values), _number(bounds.upper, values)
+    first = 0 if bounds.lower is None else _number(bounds.lower, values)
+    if bounds.upper is None:  # an open sum: its binomials vanish outside their range
+        last = first + sum(abs(value) for value in values.values()) + 1
+    else:
+        limit = value_of(bounds.upper, values)
+        if limit is None:
+            raise NotClosed
+        last = floor(limit)
     if last - first > MOST_TERMS:
         raise NotClosed
     return [{bounds.variables[0]: n} for n in range(first, last + 1)]
+
+
+def _vanishing_in_the_end(big: BigSum) -> bool:
+    """Whether a binomial stands in the summand."""
+    return any(isinstance(factor, Coefficient) and "binom" in _kinds(factor.value) for factor in big.body.factors)
+
+
+def _kinds(index: Index) -> set[str]:
+    found = {index.kind}
+    for part in index.parts:
+        if isinstance(part, Index):
+            found |= _kinds(part)
+    return found
 
 
 def _solutions(big: BigSum, free: list[str], values: dict[str, int]) -> list[dict[str, int]]:

@@ -99,11 +99,33 @@ def letter_factor(stretch: Stretch) -> Factor:
     if text == "Q" and after is not None and after.kind == "sub":
         stretch.at += 1
         return operation(stretch, "Q", start)
+    if text == "C" and not style and after is not None and after.kind in ("sub", "sup"):
+        binomial = _subsets(stretch)
+        if binomial is not None:
+            return binomial
     if text in ("\\chi", "χ") and after is not None and after.text not in (")", "]", ",", "="):
         return _conjugate(stretch)
     stretch.at += 1
     name = text.lstrip("\\") if not style or style in ("it", "rm", "bf", "sf") else f"{style}:{text}"
     return named(stretch, name, start)
+
+
+def _subsets(stretch: Stretch) -> Factor | None:
+    """C_n^k, the number of k-subsets of n things."""
+    start = stretch.at
+    trial = Stretch(stretch.tokens, stretch.pairs, start + 1, stretch.end)
+    scripts: dict[str, Index] = {}
+    while (token := trial.peek()) is not None and token.kind in ("sub", "sup") and token.kind not in scripts:
+        trial.at += 1
+        try:
+            scripts[token.kind] = index_of(trial.argument())
+        except NotRead:
+            return None
+    if len(scripts) != 2:
+        return None
+    stretch.at = trial.at
+    at = stretch.origin(start)
+    return Coefficient(Index("binom", (scripts["sub"], scripts["sup"]), at), at)
 
 
 def _conjugate(stretch: Stretch) -> Factor:

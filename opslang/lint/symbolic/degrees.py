@@ -10,6 +10,7 @@ from collections.abc import Mapping
 
 from attrs import define, field, frozen
 
+from opslang.lint.formula.integers import letters_of
 from opslang.lint.model import (
     BigSum,
     Bounds,
@@ -59,6 +60,8 @@ class Measure:
 
     known: Known
     unknown: dict[str, str] = field(factory=dict)
+    bound: list[str] = field(factory=list)
+    """The variables of the sums that one stands in."""
 
     # --- sums -----------------------------------------------------------------------------------
 
@@ -77,7 +80,11 @@ class Measure:
         if isinstance(last, BigSum):
             if last.sign != "\\sum":
                 raise Unmeasured("a product sign")
-            inner = self.term(last.body)
+            self.bound += own_variables(last.bounds)
+            try:
+                inner = self.term(last.body)
+            finally:
+                self.bound.clear()
             front = ZERO
             sort = inner.sort
             if len(product.factors) > 1:
@@ -157,6 +164,8 @@ class Measure:
             raise Unmeasured("a letter Q that is no primitive")
         first = self.known.conventions.get("Q")
         k = self.index(factor.lower)
+        if self.known.prime is None:
+            raise Unmeasured("Q_k has a degree that depends on the prime", "the prime")
         if first not in ("0", "1"):
             raise Unmeasured("Q_0 or Q_1 may be the Bockstein", "which of Q_0, Q_1 is the Bockstein")
         if first == "1":
@@ -186,7 +195,12 @@ class Measure:
         """The degree of a class; a symbol where it is not known."""
         degree = self.known.degree(name)
         if degree is not None:
+            fact = self.known.fact(name)
+            if fact is not None and self.bound and fact.degree is not None and not fact.degree.symbols.isdisjoint(self.bound):
+                raise Unmeasured("a letter stands for two things")
             return self._with_prime(degree)
+        if self.bound and any(not set(letters_of(index)).isdisjoint(self.bound) for index in name.index):
+            raise Unmeasured("a degree is not known", f"the degree of {name.spelling}")
         symbol = f"|{name.spelling}|"
         self.unknown[symbol] = name.spelling
         return Polynomial.symbol(symbol)
@@ -263,7 +277,13 @@ def own_variables(bounds: Bounds) -> tuple[str, ...]:
             if left is not None and right is not None:
                 bigger = left if len(left.symbols) >= len(right.symbols) else right
                 return tuple(name for name in bounds.variables if name in bigger.symbols)
-    return bounds.variables
+    alone = [
+        str(side.parts[0])
+        for condition in bounds.conditions
+        for side in (condition.left, condition.right)
+        if side is not None and side.kind == "name"
+    ]
+    return (max(alone, key=alone.count),) if alone else bounds.variables
 
 
 def solved(bounds: Bounds, body: Polynomial) -> dict[str, Polynomial]:

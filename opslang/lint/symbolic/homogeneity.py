@@ -22,6 +22,7 @@ from opslang.lint.model import (
     Group,
     Index,
     Known,
+    Number,
     Operation,
     Origin,
     Power,
@@ -101,7 +102,7 @@ def _acting_bockstein(side: object) -> bool:
     if isinstance(side, Product):
         for left, right in zip(side.factors, side.factors[1:]):
             if isinstance(left, Operation) and left.head == "beta" and not left.upper:
-                if isinstance(right, (ClassName, Group, Power, Operation)) and right != left:
+                if isinstance(right, (ClassName, Group, Power)):
                     return True
         return any(_acting_bockstein(factor) for factor in side.factors)
     if isinstance(side, (Group, Conjugate)):
@@ -153,13 +154,23 @@ def _without_operations(statement: Statement, known: Known) -> Verdict | None:
         return None
     if any(isinstance(side, Sum) and all(is_zero(product) for _, product in side.terms) for side in statement.sides):
         return None
+    if all(isinstance(side, Sum) and _bare(side) for side in statement.sides):
+        return None
     try:
         apart = _apart(statement, known, Measure(known))
     except (Unmeasured, NotKnown):
         return None
     if apart is None:
         return Verdict("consistent", reason="the degrees agree")
+    if apart.degree.is_zero or apart.wanted.is_zero:
+        return None
     return Verdict("finding", (_finding(statement, apart),)) if apart.degree.constant is not None else None
+
+
+def _bare(side: Sum) -> bool:
+    """A lone letter or number."""
+    factors = side.terms[0][1].factors
+    return len(side.terms) == 1 and len(factors) == 1 and isinstance(factors[0], (ClassName, Number))
 
 
 class NotKnown(Exception):
@@ -266,7 +277,10 @@ def certain(difference: Polynomial, statement: Statement, known: Known, measure:
             continue
         if len(signs) > 1 and not _said_near(symbol, statement, known):
             raise NotKnown(f"how {symbol} and the indices of the formula are related")
-    if len(signs) > 1 and _top_square(statement):
+    if len(signs) > 1 and difference.symbols == {"p"} and any(difference.at({"p": p}) == 0 for p in (3, 5, 7, 11, 13, 17)):
+        raise NotKnown("the prime")
+    indices = {letter for operation in operations_in(statement) for index in operation.upper for letter in letters_of(index)}
+    if len(signs) > 1 and _top_square(statement) and indices & difference.symbols - {"p"}:
         raise NotKnown("how the index and the degree of the class are related")
 
 
@@ -304,6 +318,8 @@ def _membership(statement: Statement, known: Known, measure: Measure) -> Apart |
             if term.bound:
                 raise Unmeasured("a sum over all degrees")
             difference = _reduced(term.degree - wanted, equations((*statement.conditions, *known.ranges)))
+            if isinstance(group, Index) and len({c > 0 for _, c in difference.terms}) > 1:
+                raise NotKnown("how source and target are related")
             if not difference.is_zero:
                 certain(difference, statement, known, measure)
                 return Apart(term.degree, wanted, term.product.at, False)

@@ -1,0 +1,110 @@
+"""The verdict on a relation with symbols: where it must hold, tried there.
+
+Adem's relation must hold in its range, Cartan's everywhere; any other relation where the draft says, and where the draft
+says nothing it is a fault only if it holds nowhere.
+"""
+
+from __future__ import annotations
+
+from opslang.lint.formula.integers import letters_of
+from opslang.lint.model import Call, Condition, Dots, Finding, Known, Operation, Statement, Sum, Verdict, found
+from opslang.lint.symbolic.homogeneity import about_operations, factors_of
+from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
+from opslang.lint.templates.shapes import adem, adem_range, cartan, says_range, wu
+
+_PARITY = ("even", "odd", "parity", "power", "divisible", "congruent", "binary", "mod", "digit", "multiple")
+
+
+def template(statement: Statement, known: Known) -> Verdict | None:
+    """Adem's and Cartan's relations with symbols."""
+    if not _fit(statement, known):
+        return None
+    shape = adem(statement)
+    if shape is not None:
+        return _adem(statement, known, shape)  # type: ignore[arg-type]
+    if cartan(statement):
+        trial = tried(statement, known, statement.conditions)
+        if trial is None:
+            return None
+        if trial.false:
+            return found(_wrong(statement, trial, "cartan-formula", "this is not the Cartan formula"))
+        return Verdict("agrees", reason="agrees for " + trial.extent)
+    return None
+
+
+def _adem(statement: Statement, known: Known, shape: tuple) -> Verdict | None:  # type: ignore[type-arg]
+    name, a, b = shape
+    said = (*statement.conditions, *known.ranges)
+    trial = tried(statement, known, (*adem_range(name, a, b), *statement.conditions))
+    if trial is None:
+        return None
+    if trial.false:
+        return found(_wrong(statement, trial, "adem-relation", "this is not the Adem relation"))
+    if not says_range(said, a, b) and letters_of(a):
+        wanted = {"Sq": "0 < a < 2b", "P": "a < pb", "PbP": "a ≤ pb"}[name]
+        message = f"the range of the Adem relation is not said\nit holds for {wanted} only, a and b being the two indices"
+        return found(Finding("range-missing", "warning", message, statement.at))
+    return Verdict("agrees", reason="agrees for " + trial.extent)
+
+
+def relation(statement: Statement, known: Known) -> Verdict | None:
+    """Any other relation with symbols."""
+    if not _fit(statement, known) or adem(statement) or cartan(statement) or wu(statement):
+        return None
+    domain = (*statement.conditions, *known.ranges)
+    trial = tried(statement, known, domain)
+    if trial is None:
+        return None
+    if not trial.false:
+        return Verdict("agrees", reason="agrees for " + trial.extent)
+    if classes_of(statement) or _stated(statement):
+        return None
+    if not trial.true and len(trial.false) >= 3:
+        return found(_wrong(statement, trial, "false-for-small-values", "this holds for none of the values tried"))
+    if trial.true and _quantified(statement, known, domain):
+        return found(_wrong(statement, trial, "false-for-small-values", "this does not hold for all values"))
+    return Verdict("not-checked", reason=f"it fails for {trial.false[0].text}", needed="for which values it is meant")
+
+
+def _stated(statement: Statement) -> bool:
+    """P^i = 0, Sq^i = 1: not a relation of the algebra, but a hypothesis or a notation."""
+    return all(
+        isinstance(side, Sum) and len(side.terms) == 1 and len(side.terms[0][1].factors) == 1 for side in statement.sides
+    )
+
+
+def _quantified(statement: Statement, known: Known, domain: tuple[Condition, ...]) -> bool:
+    """Whether the draft says for which numbers the relation is meant, in inequalities alone."""
+    symbols = set(free_symbols(statement, known))
+    covered: set[str] = set()
+    for condition in domain:
+        if condition.sign == "words":
+            return False
+        for part in (condition.left, condition.right):
+            covered |= set(letters_of(part)) if part is not None else set()
+    text = known.sentences.lower()
+    if any(word in text for word in _PARITY) or any(char in known.sentences for char in "≡"):
+        return False
+    own = {letter for c in statement.conditions for p in (c.left, c.right) if p is not None for letter in letters_of(p)}
+    return bool(symbols) and symbols <= covered and (symbols <= own or "all" in text or "every" in text)
+
+
+def _fit(statement: Statement, known: Known) -> bool:
+    if statement.kind != "relation" or len(statement.sides) != 2 or statement.unread or known.prime is None and "prime" not in known.conventions:
+        return False
+    if not all(isinstance(side, Sum) for side in statement.sides):
+        return False
+    factors = [factor for side in statement.sides for factor in factors_of(side)]
+    if any(isinstance(factor, (Call, Dots)) for factor in factors):
+        return False
+    if any(isinstance(factor, Operation) and (factor.bound or factor.tensor) for factor in factors):
+        return False
+    return about_operations(statement, known)
+
+
+def _wrong(statement: Statement, trial: Trial, name: str, what: str) -> Finding:
+    point = trial.false[0]
+    left = f"the left side is {point.left or '0'}" if point.left or point.right else "the sides differ"
+    right = f" and the right side {point.right or '0'}" if point.left or point.right else ""
+    message = f"{what}: for {point.text} {left}{right}"
+    return Finding(name, "error", message, statement.at, derivation=tuple(one.text for one in trial.false[:3]))
