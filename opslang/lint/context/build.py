@@ -12,9 +12,9 @@ from attrs import define, evolve, field
 from opslang.lint.context.directives import Allowed, Said, allowed_in, directives_of
 from opslang.lint.context.facts import Ledger, Saying, Spot
 from opslang.lint.context.names import class_names
-from opslang.lint.context.sayings import degree_written, from_formula, from_words, numbers_said
+from opslang.lint.context.sayings import degree_written, from_formula, from_words, in_its_ring, numbers_said
 from opslang.lint.context.script import Scripts
-from opslang.lint.context.setting import ODD, Settings, learn, no_operations
+from opslang.lint.context.setting import ODD, Settings, is_hypothesis, learn, no_operations, particular_space
 from opslang.lint.context.spaces import SpaceSaid
 from opslang.lint.context.stream import Paragraph, paragraphs
 from opslang.lint.formula import statements_of
@@ -88,9 +88,9 @@ class _Builder:
                 self.ledger.add(saying)
             for formula, spot in zip(paragraph.formulas, spots):
                 for saying in from_formula(self.statements(formula), formula):
-                    self.ledger.add(
-                        evolve(saying, spot=spot, source="the formula", local=self._hypothesis(paragraph, spot))
-                    )
+                    local = self._hypothesis(paragraph, spot)
+                    said = evolve(saying, spot=spot, source="the formula", local=local)
+                    self.ledger.add(in_its_ring(said, paragraph))
 
     def _hypothesis(self, paragraph: Paragraph, spot: Spot) -> bool:
         """Whether a declaration stands behind an if."""
@@ -123,15 +123,24 @@ class _Builder:
         prime = context.prime if context.prime is not None else self.settings.prime_at(spot)
         return Known(
             prime=None if prime == ODD else prime,
-            maps={},
+            maps=context.maps,
             operations=context.operations,
-            conventions=dict(context.conventions) | ({"prime": "odd"} if prime == ODD else {}),
+            conventions=dict(context.conventions) | self._manner(paragraph, spot, prime),
             ranges=tuple(ranges),
             rules=context.rules,
             integers=self.numbers.get(spot.paragraph, frozenset()) | no_operations(paragraph, formula, spot.offset),
             sentences=paragraph.text[start:end],
             script=context.lines,
+            space=particular_space(paragraph, spot.offset),
         )
+
+    def _manner(self, paragraph: Paragraph, spot: Spot, prime: int | None) -> dict[str, str]:
+        found = {}
+        if prime == ODD:
+            found["prime"] = "odd"
+        if is_hypothesis(paragraph, spot.offset):
+            found["hypothesis"] = "yes"
+        return found
 
     def _conditions(self, formula: Formula) -> Iterator[Condition]:
         for statement in self.statements(formula):
@@ -149,10 +158,19 @@ class _Builder:
             if name.letter == "iota":
                 fact = self._fundamental(name, fact, spot)
             if fact is not None:
-                classes[name.spelling] = fact
+                classes[name.spelling] = self._somewhere(fact, spot)
         return evolve(
             frame, classes=classes, families=self._families(names.values()), prime=self._prime(statement, frame)
         )
+
+    def _somewhere(self, fact: ClassFact, spot: Spot) -> ClassFact:
+        """The fact with its space: a class with no space, where manifolds are spoken of, may be one of a manifold."""
+        if fact.source == "the author's comment" or not self.settings.manifolds:
+            return fact
+        letter = fact.space[:1]
+        if letter in ("M", "N", "W") or (not fact.space and spot.section in self.settings.manifolds):
+            return evolve(fact, space="a manifold")
+        return fact
 
     def _prime(self, statement: Statement, frame: Known) -> int | None:
         heads = {operation.head for operation in operations_in(statement)}

@@ -15,6 +15,9 @@ from opslang.lint.model import NOWHERE, ClassFact, Origin
 from opslang.lint.symbolic.polynomial import Polynomial
 
 
+SEVERAL = "several spaces"
+
+
 @frozen
 class Spot:
     """A place in the order of reading: section, paragraph, sentence and offset in it."""
@@ -108,4 +111,7 @@ def _agreed(found: Iterable[Saying], what: str) -> Saying | None:
     """The last of them, if they say the same."""
     listed = list(found)
     values = {(getattr(saying, what), saying.order_text if what == "order" else "") for saying in listed}
-    return listed[-1] if len(values) == 1 else None
+    if len(values) != 1:
+        return None
+    spaces = {saying.space for saying in listed}
+    return listed[-1] if len(spaces) == 1 else evolve(listed[-1], space=SEVERAL)

@@ -12,7 +12,7 @@ from collections.abc import Callable, Iterator, Sequence
 from attrs import evolve, frozen
 
 from opslang.lint.context.facts import Saying, Spot
-from opslang.lint.context.spaces import SpaceSaid, group_said, space_said, space_written, written
+from opslang.lint.context.spaces import SpaceSaid, group_said, named_in, space_said, space_written, written
 from opslang.lint.context.stream import SIGN, Paragraph
 from opslang.lint.formula.integers import as_index
 from opslang.lint.model import ClassName, Cohomology, Index, Origin, Statement, Sum
@@ -61,6 +61,8 @@ _NUMBERS_SAID = re.compile(
     rf"|(?:coordinates?|roots?|integers?|numbers?)\s+(?P<names2>{LIST})",
     re.IGNORECASE,
 )
+
+_RING = re.compile(r"\b(?:ring|cohomology|algebra|generated|generators?|polynomial|exterior)\b", re.IGNORECASE)
 
 Reader = Callable[[Formula], Sequence[Statement]]
 
@@ -131,7 +133,22 @@ def from_words(paragraph: Paragraph, read: Reader, spot_at: Callable[[int], Spot
     for saying, offset in _found_in_words(paragraph.text, names):
         before = paragraph.text[max(0, offset - 60) : offset]
         local = bool(_CONDITIONAL.search(before.rpartition(". ")[2]))
-        yield evolve(saying, spot=spot_at(offset), local=local, source="the text")
+        yield in_its_ring(evolve(saying, spot=spot_at(offset), local=local, source="the text"), paragraph)
+
+
+def in_its_ring(saying: Saying, paragraph: Paragraph) -> Saying:
+    """A saying from a sentence that describes a ring: the class is its generator, of which more may be known."""
+    if saying.space or saying.degree is None:
+        return saying
+    start, end = paragraph.sentences[saying.spot.sentence]
+    if not _RING.search(paragraph.text, start, end):
+        return saying
+    for sign in re.findall(F, paragraph.text[start:end]):
+        for space in named_in(written(paragraph.formula(sign).tokens)):
+            generic = universal(space, saying.degree)
+            if generic is not None:
+                return evolve(saying, order=generic[0], space=generic[1])
+    return evolve(saying, space="a ring that the text describes")
 
 
 def _found_in_words(text: str, names: Names) -> Iterator[tuple[Saying, int]]:
@@ -243,13 +260,21 @@ def _member(name: ClassName, formula: Formula, group: Cohomology, offset: int) -
     space = space_said(group.space)
     order = coefficients.order if coefficients is not None else None
     order_text = coefficients.text if coefficients is not None else ""
+    text = space.text
     if space.kind == "K" and space.group is not None and degree_written(space.degree) == degree:
         order, order_text = space.group.order, space.group.text
-    text = "" if space.kind == "letter" else space.text
-    yield (
-        _saying(name, formula, degree=degree, order=order, order_text=order_text, space=text),
-        offset,
-    )
+    elif generic := universal(space, degree):
+        order, text = generic
+    yield _saying(name, formula, degree=degree, order=order, order_text=order_text, space=text), offset
+
+
+def universal(space: SpaceSaid, degree: Polynomial) -> tuple[int, str] | None:
+    """Order and universal example of the generator of a projective space whose dimension has no number."""
+    if space.degree.isdigit():
+        return None
+    if space.kind == "RP" and degree.constant == 1:
+        return 1, "K(Z/2,1)"
+    return (0, "K(Z,2)") if space.kind == "CP" and degree.constant == 2 else None
 
 
 def numbers_said(paragraph: Paragraph, read: Reader) -> list[ClassName]:

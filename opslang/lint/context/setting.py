@@ -11,7 +11,7 @@ from collections.abc import Sequence
 from attrs import define, field, frozen
 
 from opslang.lint.context.facts import Spot
-from opslang.lint.context.spaces import SpaceSaid, mentioned, written
+from opslang.lint.context.spaces import SpaceSaid, mentioned, particular, written
 from opslang.lint.context.stream import Paragraph
 from opslang.lint.reading import Formula
 
@@ -66,10 +66,18 @@ class Settings:
     squares: bool = False
     powers: bool = False
     bundles: bool = False
-    manifolds: bool = False
+    manifolds: set[int] = field(factory=set)
+    """The sections that speak of manifolds."""
 
     def prime_at(self, spot: Spot) -> int | None:
         """The prime at a place: a number, ODD, or None where none was said."""
+        same = [
+            said
+            for said in self.primes
+            if said.spot.paragraph == spot.paragraph and said.spot.sentence == spot.sentence and said.local
+        ]
+        if same and all(said.spot.offset > spot.offset for said in same):
+            return same[0].prime
         best: PrimeSaid | None = None
         for said in self.primes:
             if (said.spot.paragraph, said.spot.offset) > (spot.paragraph, spot.offset):
@@ -94,7 +102,8 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
     """Take note of what a paragraph says; `spots` are those of its formulas, `at` its number."""
     text = paragraph.text
     settings.bundles = settings.bundles or bool(_BUNDLES.search(text))
-    settings.manifolds = settings.manifolds or bool(_MANIFOLD.search(text))
+    if _MANIFOLD.search(text):
+        settings.manifolds.add(section)
     found: list[PrimeSaid] = []
     for formula, spot, place in zip(paragraph.formulas, spots, paragraph.places):
         plain = written(formula.tokens)
@@ -132,6 +141,34 @@ def _primes_in_words(settings: Settings, paragraph: Paragraph, at: int, section:
         spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
         found.append(PrimeSaid(spot, ODD, False))
     return found
+
+
+_PARTICULAR = re.compile(r"\b(?:manifolds?|spheres?|suspensions?|stunted|skelet\w+|cells?|complex of dimension|lens spaces?)\b", re.IGNORECASE)
+_HYPOTHESIS = re.compile(
+    r"\b(?:if|when|whenever|suppose|assume|provided|such that|with|unless|satisfying|satisfies|let|put|requires?|needs)\b"
+    r"(?:\s+(?:that|also|moreover|we have|both))*\s*(?:[\ue000-\uf7ff]\s*(?:,|and|, and)\s*)*$",
+    re.IGNORECASE,
+)
+_SUPPOSED = re.compile(r"^[^.;]{0,30}\b(?:is|are|was|were) (?:supposed|assumed|given)\b", re.IGNORECASE)
+
+
+def particular_space(paragraph: Paragraph, place: int) -> str:
+    """What the sentence around a formula says of its space that makes more hold there than in general."""
+    start, end = paragraph.sentences[paragraph.sentence_at(place)]
+    for formula, at in zip(paragraph.formulas, paragraph.places):
+        if start <= at < end:
+            found = particular(written(formula.tokens))
+            if found:
+                return found
+    words = _PARTICULAR.search(paragraph.text, start, end)
+    return words.group() if words else ""
+
+
+def is_hypothesis(paragraph: Paragraph, place: int) -> bool:
+    """Whether the words before or behind a formula make it a condition and no claim."""
+    start, end = paragraph.sentences[paragraph.sentence_at(place)]
+    behind = paragraph.text[place + 1 : end]
+    return bool(_HYPOTHESIS.search(paragraph.text[start:place]) or _SUPPOSED.match(behind))
 
 
 def no_operations(paragraph: Paragraph, formula: Formula, place: int) -> frozenset[str]:

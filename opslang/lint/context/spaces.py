@@ -137,3 +137,21 @@ def mentioned(text: str) -> list[SpaceSaid]:
         else:
             found.append(SpaceSaid("K", one.group(), one["degree"].strip("{}"), _group(one)))
     return found
+
+
+_NAMES = re.compile(r"\b(RP|CP|HP)\^\{?(\w+|\\infty)\}?")
+
+
+def named_in(text: str) -> list[SpaceSaid]:
+    """The projective spaces named in a plain spelling."""
+    return [SpaceSaid(found[1], found[0], found[2]) for found in _NAMES.finditer(text.replace("{RP}", "RP").replace("{CP}", "CP"))]
+
+
+def particular(text: str) -> str:
+    """A space of finite dimension, or a group said to be 0, in a plain spelling: there more holds than in general."""
+    for space in named_in(text):
+        if space.degree.isdigit():
+            return space.text
+    if re.match(r"H\^.*=0[.,;]?$", text):
+        return "a space with a group that is 0"
+    return ""

@@ -6,6 +6,7 @@ and what fails for it fails for some.  A class of a particular space may satisfy
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from functools import lru_cache
 from typing import Literal
@@ -16,6 +17,7 @@ from opslang.ground.source import Source, Span
 from opslang.ir import tree as ir
 from opslang.ir.outcome import Outcome
 from opslang.ir.tree import Class
+from opslang.lint.context.sayings import only_name
 from opslang.lint.formula.closed import to_surface
 from opslang.lint.model import ClassFact, Known, Sum
 from opslang.lint.numeric.naming import Naming, Unnamed
@@ -27,6 +29,7 @@ from opslang.syntax import surface as sf
 from opslang.tables.bockstein import Undefined
 from opslang.tables.budget import TooLarge
 
+_GENERAL = re.compile(r"(?:|K\(.*|B\^.*|-|[A-Z](?:_\w)?'*)$")
 LIMIT = 20_000
 HIGHEST = 200
 LONGEST = 40
@@ -119,7 +122,22 @@ def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None
     span = (left.at.start, right.at.end)
     statement = sf.RelationStatement((surfaces[0], surfaces[1]), span)
     outcome = session.answer(statement, span)
+    if naming.given and not special:
+        special = _circumstances(left, right, known)
     return _read(outcome, session, statement, special, why)
+
+
+def _circumstances(left: Sum, right: Sum, known: Known) -> str:
+    """Why a relation of classes may be true though it is not true in general."""
+    if known.space:
+        return f"it is about {known.space}, where more may hold"
+    if known.conventions.get("hypothesis"):
+        return "it is a hypothesis"
+    for side in (left, right):
+        name = only_name(side)
+        if name is not None and name.letter != "iota":
+            return f"it may be what {name.spelling} stands for"
+    return ""
 
 
 def _declare(session: Desk, naming: Naming, prime: int, numbers: Mapping[str, int]) -> str:
@@ -154,9 +172,9 @@ def _order(fact: ClassFact, spelling: str, numbers: Mapping[str, int]) -> int:
 
 
 def _special(fact: ClassFact, spelling: str) -> str:
-    if fact.space and not fact.space.startswith(("K(", "B^")):
-        return f"{spelling} is a class of {fact.space}, of which more may be known"
-    return ""
+    if _GENERAL.match(fact.space):
+        return ""
+    return f"{spelling} is a class of {fact.space}, of which more may be known"
 
 
 def _read(outcome: Outcome, session: Desk, statement: sf.RelationStatement, special: str, why: bool) -> Decision:
