@@ -23,7 +23,8 @@ from opslang.meaning.lower import Lowering
 from opslang.meaning.scope import Scope, spelled
 from opslang.meaning.spaces import space_value
 from opslang.meaning.value import Value, as_sort
-from opslang.ir.spaces import SpaceValue, localise
+from opslang.spaces.family import NotKnown
+from opslang.spaces.space import SpaceValue, localise
 from opslang.report.diagnostic import Diagnostic, Refusal, error, note
 from opslang.syntax import surface as sf
 from opslang.syntax.parser import parse
@@ -99,6 +100,8 @@ class Session:
                 span,
                 f"the limit is there to keep the memory small; `--limit {10 * refusal.limit}` raises it",
             )
+        except NotKnown as refusal:
+            found = error("not-known", str(refusal), span)
         except Undefined as refusal:
             found = error("bockstein-undefined", str(refusal), span)
         except (RecursionError, MemoryError):
@@ -310,7 +313,7 @@ class Session:
         prime = self.scope.prime
         engine = self.engine()
         engine.start()
-        found = tuple(basis(prime, localise(space, prime).classes, degree, engine.budget)) if degree >= 0 else ()
+        found = tuple(basis(prime, localise(space, prime), degree, engine.budget)) if degree >= 0 else ()
         return evolve(blank, space=space.text, sort="class", degree=degree, basis=found, items=found)
 
     def _series(self, statement: sf.SeriesStatement, blank: Outcome) -> Outcome:
@@ -323,7 +326,7 @@ class Session:
         if to < 0:
             raise Refusal(error("index-range", f"a series goes to a degree of at least 0, and here it is {to}", statement.span))
         engine.budget.spend(to * to // 64)
-        found = tuple(series(self.scope.prime, localise(space, self.scope.prime).classes, to))
+        found = tuple(series(self.scope.prime, localise(space, self.scope.prime), to))
         return evolve(blank, space=space.text, items=found)
 
 

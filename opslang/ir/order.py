@@ -1,7 +1,7 @@
 """The canonical order of words, generators and monomials: one order, fixed here, documented in the language reference.
 
 Words of one degree: lexicographic, greatest first (at odd p compare eps_0, s_1, eps_1, s_2, …).
-Generators: by class (degree, then name), then by the degree of the word, then by the word.
+Generators: by class (degree, then name; a Thom class last), then by the degree of the word, then by the word.
 Terms of a sum: by degree, lowest first; words of one degree in the order of words; monomials of one degree by their
 first generator in the order of generators, its power (highest first), and so on along the monomial.
 """
@@ -33,8 +33,9 @@ def word_key(word: Word, p: int) -> tuple[int, ...]:
 
 
 def class_key(of: Class) -> Key:
-    """Sorts classes: by degree, then letter, index and primes."""
-    return of.degree, of.letter, -1 if of.index is None else of.index, of.primes, of.order, of.factor
+    """Sorts classes: by degree, then letter, index and primes; a Thom class stands last."""
+    last = of.ring is not None and of.letter == "U"
+    return last, of.degree, of.letter, -1 if of.index is None else of.index, of.primes, of.order, of.factor
 
 
 def generator_key(generator: Generator, p: int) -> Key:

@@ -12,7 +12,7 @@ of a space that is a point at the prime, no abbreviation (they are expanded, and
 
 from __future__ import annotations
 
-from typing import Union
+from typing import Any, Union
 
 from attrs import field, frozen
 
@@ -32,6 +32,8 @@ class Class:
     beta_k is a class of its own, again the reduction of an integral one).
     `letter`, `index`, `primes` spell its name: iota_3' is ("iota", 3, 1).
     `factor` numbers the factor of the product of spaces it comes from (0 where there is no product).
+    `ring` is the named space that gives the class its relations and operations (`opslang.spaces.family.Family`);
+    None where nothing else is known of it, so that it is the fundamental class of an Eilenberg-MacLane space.
     """
 
     letter: str
@@ -40,6 +42,7 @@ class Class:
     degree: int
     order: int = 1
     factor: int = 0
+    ring: Any = field(default=None, repr=False)
 
 
 def _span() -> Span:

@@ -13,9 +13,11 @@ from opslang.ground.source import Span
 from opslang.ir import tree as ir
 from opslang.meaning.indices import bounded, number
 from opslang.meaning.letters import Marker, letter
-from opslang.meaning.scope import Scope, spelled
-from opslang.meaning.value import NONE, Sort, Value, as_sort, cls, degrees_of, multiple, operation, scalar, total
+from opslang.meaning.scope import Key, Scope, spelled
+from opslang.meaning.value import NONE, Sort, Value, as_sort, cls, degrees_of, multiple, operation, polynomial_value, scalar, total
 from opslang.report.diagnostic import Diagnostic, Refusal, error, note, warning
+from opslang.spaces.family import NotKnown
+from opslang.spaces.space import Localised
 from opslang.syntax import surface as sf
 
 Pending = list[tuple["Value | Marker", Span]]
@@ -254,9 +256,29 @@ class Lowering:
         value = self.scope.names.get(key)
         if value is not None:
             return value
+        here = self.scope.localised()
+        if here is not None and here.families:
+            return self._class_of_space(name, key, here)
         close = self.scope.like(key)
         how = f"declare it first: let {spelled(key)} in H^n"
         refuse("unknown-name", f"{spelled(key)} is not declared", name.span, f"did you mean {close}? or {how}" if close else how, close)
+
+    def _class_of_space(self, name: sf.Name, key: Key, here: Localised) -> Value:
+        """A name that a named factor of the current space has."""
+        prime = self.scope.prime
+        try:
+            found = here.named(prime, *key)
+        except NotKnown as reason:
+            refuse("not-known", str(reason), name.span)
+        if len(found) > 1:
+            refuse("ambiguous-class", f"several factors of the space have a class {spelled(key)}", name.span, "name the classes: RP^5(a) x RP^2(b)")
+        if not found:
+            known = "; ".join(f"{family.text}: {family.names(prime)}" for family in here.families)
+            refuse("no-such-class", f"the space has no class {spelled(key)}, and none was declared", name.span, f"its classes: {known}")
+        if found[0]:
+            return polynomial_value(found[0], prime, name.span)
+        degree = next(f.name_degree(prime, key[0], key[1]) for f in here.families if f.named(prime, *key) is not None)
+        return cls(ir.ClassSum((), degree, degree, name.span), NONE)
 
     def _fundamental(self, factor: sf.Fundamental) -> Value:
         degree = number(factor.degree, factor.span)

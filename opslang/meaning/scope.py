@@ -6,7 +6,7 @@ from functools import lru_cache
 
 from attrs import define, field
 
-from opslang.ir.spaces import Localised, SpaceValue, localise
+from opslang.spaces.space import Localised, SpaceValue, localise
 from opslang.ir.tree import Class
 from opslang.meaning.value import Value
 

@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from opslang.ir.spaces import Factor, SpaceValue, class_order
+from opslang.spaces.family import NotKnown
+from opslang.spaces.space import WORDS, AnyFactor, Factor, NamedFactor, SpaceValue, class_order
 from opslang.meaning.indices import number
 from opslang.meaning.scope import Scope
 from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as sf
 
 MOST_FACTORS = 1_000
-KNOWN = ("BO", "BSO", "BSpin", "BU", "BSU", "BSp", "RP", "CP", "HP", "lens", "thom", "S")
 
 
 def summand_text(order: int, copies: int = 1) -> str:
@@ -20,11 +20,11 @@ def summand_text(order: int, copies: int = 1) -> str:
     return f"{name}^{copies}" if order == 0 else f"({name})^{copies}"
 
 
-def _eilenberg_maclane(space: sf.EilenbergMacLane) -> tuple[list[Factor], str]:
+def _eilenberg_maclane(space: sf.EilenbergMacLane) -> tuple[list[AnyFactor], str]:
     degree = number(space.degree, space.span)
     if degree < 1:
         raise Refusal(error("degree-range", f"K(G, n) needs n >= 1, and here n is {degree}", space.span))
-    factors: list[Factor] = []
+    factors: list[AnyFactor] = []
     names = []
     for summand in space.group.summands:
         if summand.order < 0 or summand.copies < 0:
@@ -38,15 +38,14 @@ def _eilenberg_maclane(space: sf.EilenbergMacLane) -> tuple[list[Factor], str]:
 
 def space_value(space: sf.Space, scope: Scope) -> SpaceValue:
     """A space as a value; a Refusal where it is not known."""
-    factors: list[Factor] = []
+    factors: list[AnyFactor] = []
     names = []
     parts = space.factors if isinstance(space, sf.SpaceProduct) else (space,)
     for part in parts:
         if isinstance(part, sf.EilenbergMacLane):
             found, name = _eilenberg_maclane(part)
         else:
-            value = _named(part, scope)
-            found, name = list(value.factors), value.text
+            found, name = _named(part, scope)
         factors += found
         names.append(name)
         if len(factors) > MOST_FACTORS:
@@ -54,16 +53,66 @@ def space_value(space: sf.Space, scope: Scope) -> SpaceValue:
     return SpaceValue(tuple(factors), " x ".join(names))
 
 
-def _named(part: sf.NamedSpace, scope: Scope) -> SpaceValue:
-    plain = part.power is None and not part.arguments
-    if plain and part.name in scope.spaces:
-        return scope.spaces[part.name]
-    if part.name in KNOWN:
-        raise Refusal(error("not-yet-supported", f"the space {part.name} is not yet supported", part.span))
+def _named(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str]:
+    """A space named in the script, or one of the named spaces."""
+    if part.power is None and not part.arguments and part.name in scope.spaces:
+        value = scope.spaces[part.name]
+        return list(value.factors), value.text
+    if part.name in WORDS:
+        factor = _named_factor(part, scope)
+        try:
+            return [factor], factor.family(scope.prime, 0).text
+        except NotKnown as reason:
+            raise Refusal(error("not-known", str(reason), part.span)) from reason
     known = ", ".join(scope.spaces) or "none so far"
     raise Refusal(
-        error("unknown-space", f"no space is called {part.name}", part.span, f"spaces named in this script: {known}; or write K(G, n)")
+        error(
+            "unknown-space",
+            f"no space is called {part.name}",
+            part.span,
+            f"spaces named in this script: {known}; others are K(G, n), {', '.join(WORDS)}",
+        )
     )
+
+
+def _named_factor(part: sf.NamedSpace, scope: Scope) -> NamedFactor:
+    if part.name == "thom":
+        inner = part.arguments[0] if len(part.arguments) == 1 else None
+        base = _base(inner, scope)
+        if base is None:
+            raise Refusal(error("space-arguments", "thom takes one space in brackets: thom(BO(3))", part.span))
+        return NamedFactor("thom", base=base)
+    letters = []
+    numbers: list[sf.Index] = []
+    for argument in part.arguments:
+        if isinstance(argument, sf.Number):
+            numbers.append(argument.value)
+        elif isinstance(argument, sf.Name) and argument.index is None and not argument.primes:
+            letters.append(argument.letter)
+        else:
+            raise Refusal(error("space-arguments", f"{part.name} takes a number or the letters of its classes in brackets", part.span))
+    if part.power is not None:
+        numbers.append(part.power)
+    projective = part.name in ("RP", "CP", "HP")
+    most = 2 if part.name == "lens" else 1 if projective else 0
+    if len(numbers) > 1 or len(letters) > most or (projective and part.power is None and numbers):
+        how = f"{part.name}^n, or {part.name}^n(a)" if projective else "lens(m)" if part.name == "lens" else f"{part.name}, or {part.name}(n)"
+        raise Refusal(error("space-arguments", f"{part.name} is written {how}", part.span))
+    size = number(numbers[0], part.span) if numbers else None
+    if part.name == "lens" and not size:
+        raise Refusal(error("space-arguments", "lens takes the order of the group in brackets: lens(4)", part.span))
+    if size is not None and (size < 0 or (size < 1 and not projective)):
+        raise Refusal(error("degree-range", f"the number of {part.name} is at least 1, and here it is {size}", part.span))
+    return NamedFactor(part.name, size, tuple(letters))
+
+
+def _base(inner: object, scope: Scope) -> NamedFactor | None:
+    if isinstance(inner, sf.Name) and inner.index is None:
+        inner = sf.NamedSpace(inner.letter)
+    if not isinstance(inner, sf.NamedSpace):
+        return None
+    factors, _ = _named(inner, scope)
+    return factors[0] if len(factors) == 1 and isinstance(factors[0], NamedFactor) else None
 
 
 def coefficient_order(group: sf.Coefficients | None, prime: int) -> int | None:

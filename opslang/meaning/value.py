@@ -13,6 +13,7 @@ from attrs import frozen
 from opslang.ground.source import Span
 from opslang.ir import tree as ir
 from opslang.ir.tree import Class
+from opslang.spaces.family import Polynomial
 
 Sort = Literal["scalar", "operation", "class"]
 NONE: frozenset[Class] = frozenset()
@@ -57,6 +58,28 @@ def operation(tree: ir.Op, top: int) -> Value:
 def cls(tree: ir.Cls, classes: frozenset[Class]) -> Value:
     """A class."""
     return Value("class", tree.degree, tree.top, tree, classes)
+
+
+def polynomial_value(terms: Polynomial, prime: int, span: Span) -> Value:
+    """A polynomial in classes of a named space, all terms of one degree."""
+    sums: list[tuple[int, Value]] = []
+    for c, powers in terms:
+        factors: list[ir.Cls] = []
+        for of, exponent in powers:
+            one = ir.Fundamental(of, of.degree, of.degree, span)
+            degree = of.degree * exponent
+            factors.append(one if exponent == 1 else ir.ClassPower(one, exponent, degree, degree, span))
+        classes = frozenset([of for of, _ in powers])
+        degree = sum([of.degree * exponent for of, exponent in powers])
+        tree: ir.Cls
+        if len(factors) == 1:
+            tree = factors[0]
+        else:
+            tree = ir.Cup(tuple(factors), degree, degree, span) if factors else ir.Unit(0, 0, span)
+        sums.append((c, cls(tree, classes)))
+    if len(sums) == 1 and sums[0][0] == 1:
+        return sums[0][1]
+    return total(sums, "class", prime, span)
 
 
 def as_sort(value: Value, sort: Sort, span: Span) -> Value:

@@ -145,6 +145,17 @@ MEANING_CODES: dict[str, Code] = {
         ),
         example="beta_2 Sq^2",
     ),
+    "not-known": Code(
+        "outside what is known of the space",
+        "The space is known, but not what is asked of it: an operation on a class on which it was not given, a rank or a degree out of "
+        "range, a bundle without a Thom class.",
+        "on BSpin(10)",
+    ),
+    "ambiguous-class": Code(
+        "a class name that several factors have",
+        "In a product of spaces two factors have a class of this name. Name the classes: RP^5(a) x RP^2(b).",
+        "on RP^5 x RP^2\nx",
+    ),
     "not-yet-supported": Code(
         title="Not yet supported",
         explanation=("The notation is known, but what it means is not built yet."),
@@ -174,6 +185,11 @@ MEANING_CODES: dict[str, Code] = {
             "applied to a class at its right."
         ),
         example="let x in H^2\nSq^2 + x",
+    ),
+    "space-arguments": Code(
+        "a named space written otherwise",
+        "BO, BO(n), RP^n, RP^n(a), lens(m), thom(BO(n)): a number, or letters for the classes, stand in the brackets.",
+        "on lens",
     ),
     "too-large": Code(
         title="More terms than the limit",

@@ -56,6 +56,9 @@ def _first_order(ring: Ring, slot: int) -> tuple[int | None, Any]:
     """The order of the generator in a slot, and its Bockstein of that order."""
     word = ring.slots.word[slot]
     root = ring.slots.roots[ring.slots.root[slot]]
+    if root.of.ring is not None:
+        order, value = root.of.ring.bockstein(ring.prime, root.of)
+        return order, None if order is None else ring.polynomial(value)
     if not word:
         if root.bockstein or root.of.order == 0:
             return None, None

@@ -256,6 +256,7 @@ class Evaluation:
             return self.algebra.times(0, self._one())
         found = [self._one()]
         for n in range(1, token + 1):
+            self.engine.budget.spend(n)
             value = self.ring.zero()
             for i in range(1, n + 1):
                 self.ring.add(value, self.algebra.times(i, found[n - i]), -1)

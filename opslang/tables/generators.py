@@ -5,12 +5,14 @@ Source: Serre 1953; Cartan 1954-55; May 1970, thm 10.3; statements as in the lan
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Callable, Iterable, Iterator
 from operator import mul
 
 from opslang.ground.grading import Word
 from opslang.ir.order import generator_key
 from opslang.ir.tree import Class, Generator, Monomial
+from opslang.spaces.family import Family
+from opslang.spaces.space import Localised
 from opslang.tables.budget import Budget
 
 
@@ -52,6 +54,26 @@ def generators(p: int, classes: Iterable[Class], to: int, budget: Budget | None 
                     budget.spend(1)
                 found.append((Generator(word + tail, of), d))
     found.sort(key=lambda pair: generator_key(pair[0], p))
+    return found
+
+
+Item = tuple[Generator, int, int | None]
+"""A generator, its degree, and the least power of it that is 0 (None: none)."""
+
+
+def items(p: int, space: Localised, to: int, budget: Budget | None = None) -> list[Item]:
+    """The generators of the ring of a space up to degree `to`, in canonical order."""
+    found: list[Item] = [
+        (generator, d, 2 if squares_to_zero(generator, d, p) else None)
+        for generator, d in generators(p, space.classes, to, budget)
+    ]
+    for family in space.families:
+        for of in family.classes(p, to):
+            height = family.height(p, of)
+            if p != 2 and of.degree % 2 or (p == 2 and of.degree == 1 and of.order != 1):
+                height = 2
+            found.append((Generator((), of), of.degree, height))
+    found.sort(key=lambda item: generator_key(item[0], p))
     return found
 
 
@@ -119,16 +141,34 @@ def counts(p: int, of: Class, to: int) -> tuple[list[int], list[int]]:
     return even, odd
 
 
-def series(p: int, classes: Sequence[Class], to: int) -> list[int]:
-    """The dimensions of H^0 … H^to of the product, by the Euler transform of the numbers of generators.  Quadratic in `to`."""
+def series(p: int, space: Localised, to: int) -> list[int]:
+    """The dimensions of H^0 … H^to of a space, by the Euler transform of the numbers of generators.  Quadratic in `to`."""
     weight = [0] * (to + 1)
-    for of in classes:
+    others = []
+    for of in space.classes:
         even, odd = counts(p, of, to)
         for d in range(1, to + 1):
             # 1 + t^d = (1 - t^{2d}) / (1 - t^d)
             weight[d] += even[d] + odd[d]
             if odd[d] and 2 * d <= to:
                 weight[2 * d] -= odd[d]
+    for family in space.families:
+        own = family.dimensions(p, to)
+        if own is not None:
+            others.append(own)
+            continue
+        for _, d, height in items(p, Localised((), frozenset(), (family,)), to):
+            weight[d] += 1
+            if height is not None and height * d <= to:
+                weight[height * d] -= 1
+    dimensions = _euler_transform(weight, to)
+    for own in others:
+        dimensions = [sum(map(mul, dimensions[: n + 1], reversed(own[: n + 1]))) for n in range(to + 1)]
+    return dimensions
+
+
+def _euler_transform(weight: list[int], to: int) -> list[int]:
+    """The coefficients of the product of 1 / (1 - t^d)^weight[d]."""
     sums = [0] * (to + 1)
     for d in range(1, to + 1):
         if weight[d]:
@@ -142,10 +182,12 @@ def series(p: int, classes: Sequence[Class], to: int) -> list[int]:
     return dimensions
 
 
-def basis(p: int, classes: Sequence[Class], degree: int, budget: Budget) -> list[Monomial]:
+def basis(p: int, space: Localised, degree: int, budget: Budget) -> list[Monomial]:
     """The monomials of one degree, in canonical order; TooLarge when they are more than the budget allows."""
-    available = generators(p, classes, degree, budget)
-    reach = _reachable(p, available, degree)
+    available = items(p, space, degree, budget)
+    budget.spend(len(available) * (1 + (degree >> 10)))
+    reach = _reachable(available, degree)
+    admits = _admission(p, space)
     found: list[Monomial] = []
     # Depth first, highest power of the first generator first, which is the canonical order: what is left of the
     # degree, the next generator, the monomial so far.
@@ -154,32 +196,56 @@ def basis(p: int, classes: Sequence[Class], degree: int, budget: Budget) -> list
         left, at, monomial = stack.pop()
         if not left:
             budget.spend(1)
-            found.append(monomial)
+            if admits is None or admits(monomial):
+                found.append(monomial)
             continue
         if not reach[at] >> left & 1:
             continue
         budget.spend(1)
-        generator, d = available[at]
+        generator, d, height = available[at]
         at += 1
         stack.append((left, at, monomial))
-        for exponent in range(1, (min(1, left // d) if squares_to_zero(generator, d, p) else left // d) + 1):
+        for exponent in range(1, min(left // d, left if height is None else height - 1) + 1):
             stack.append((left - exponent * d, at, (*monomial, (generator, exponent))))
     return found
 
 
-def _reachable(p: int, available: list[tuple[Generator, int]], degree: int) -> list[int]:
+def _admission(p: int, space: Localised) -> Callable[[Monomial], bool] | None:
+    """Whether a monomial is a basis element: no rule of a named factor rewrites it, and each factor admits its part."""
+    rules = [rule[0] for family in space.families for rule in family.rules(p)]
+    if not rules and all(type(family).admits is Family.admits for family in space.families):
+        return None
+
+    def admits(monomial: Monomial) -> bool:
+        powers = {generator.of: exponent for generator, exponent in monomial if not generator.word}
+        if any(all(powers.get(of, 0) >= exponent for of, exponent in lead) for lead in rules):
+            return False
+        return all(
+            family.admits(p, tuple([(of, exponent) for of, exponent in powers.items() if of.factor == at and of.ring is not None]))
+            for at, family in _numbered(space)
+        )
+
+    return admits
+
+
+def _numbered(space: Localised) -> list[tuple[int, Family]]:
+    return [(getattr(family, "factor", 0), family) for family in space.families]
+
+
+def _reachable(available: list[Item], degree: int) -> list[int]:
     """For each number of generators passed over, the degrees that the others reach, as bits of an int."""
     within = (1 << degree + 1) - 1
     reach = [1]
-    for generator, d in reversed(available):
+    for _, d, height in reversed(available):
         bits = reach[-1]
-        if squares_to_zero(generator, d, p):
-            bits |= bits << d & within
-        else:
+        if height is None:
             step = d
             while step <= degree:
                 bits |= bits << step & within
                 step *= 2
+        else:
+            for _ in range(min(height - 1, degree // d)):
+                bits |= reach[-1] | bits << d & within
         reach.append(bits)
     reach.reverse()
     return reach

@@ -6,6 +6,7 @@ from typing import Any
 
 from opslang.ir.order import monomial_degree
 from opslang.ir.tree import Class, ClassElement, Monomial
+from opslang.spaces.space import Localised
 from opslang.tables.bockstein import Undefined, higher
 from opslang.tables.engine import Engine
 from opslang.tables.generators import basis
@@ -25,7 +26,7 @@ def within(engine: Engine, element: ClassElement, classes: tuple[Class, ...], to
         return None
     degree = degrees.pop()
     ring: Any = engine.ring(max(top, degree))
-    below = [encode(engine, ring, monomial) for monomial in basis(p, classes, degree - 1, engine.budget)]
+    below = [encode(engine, ring, monomial) for monomial in basis(p, _ring_of(classes), degree - 1, engine.budget)]
     target = encode_element(engine, ring, element)
     rows = [ring.letter(1 if p == 2 else 0, f) for f in below]
     span = Span(p)
@@ -43,6 +44,13 @@ def within(engine: Engine, element: ClassElement, classes: tuple[Class, ...], to
                 continue
             span.put(_vector(value, p))
     return True if span.holds(_vector(target, p)) else None
+
+
+def _ring_of(classes: tuple[Class, ...]) -> Localised:
+    """The ring that some classes live in: that of the named spaces of some, free on the others."""
+    free = tuple([of for of in classes if of.ring is None])
+    families = tuple(dict.fromkeys([of.ring for of in classes if of.ring is not None]))
+    return Localised(free, frozenset(), families)
 
 
 def encode(engine: Engine, ring: Any, monomial: Monomial) -> Any:

@@ -13,6 +13,7 @@ from __future__ import annotations
 from collections.abc import Callable, Collection, Iterable
 
 from opslang.ir.tree import Class, Monomial
+from opslang.spaces.family import Polynomial
 from opslang.tables.budget import Budget
 from opslang.tables.slots import Slots, decode, exponents
 from opslang.tables.squares import Squares
@@ -30,7 +31,7 @@ class Ring2:
         self.width = width
         self.budget = budget
         self.algebra = Squares(width, budget)
-        self.slots = Slots(2, width)
+        self.slots = Slots(2, width, budget)
         self._squares: dict[tuple[int, int], Terms] = {}
         self._classes: dict[tuple[Class, int], Poly] = {}
         self._primitives: dict[tuple[int, int], frozenset[int]] = {}
@@ -53,8 +54,43 @@ class Ring2:
         return found
 
     def _generator(self, of: Class, bockstein: int) -> Poly:
+        if bockstein and of.ring is not None:
+            return self.polynomial(of.ring.bockstein(2, of)[1])
         root = self.slots.root_of(of, bockstein)
         return {1 << self.width * self.slots.slot(root, 0, self.slots.roots[root].degree)}
+
+    def place(self, of: Class) -> int:
+        """A class as a packed monomial."""
+        (monomial,) = self.generator(of)
+        return monomial
+
+    def polynomial(self, terms: Polynomial) -> Poly:
+        """A polynomial in the classes of a named space."""
+        found: Poly = set()
+        for c, powers in terms:
+            if c & 1:
+                found ^= {sum([self.place(of) * exponent for of, exponent in powers])}
+        return self.reduce(found)
+
+    def reduce(self, f: Poly) -> Poly:
+        """The normal form of an element modulo the relations of named spaces."""
+        slots = self.slots
+        slots.load_rules(self.place, self.polynomial)
+        if not slots.rules:
+            return f
+        done: Poly = set()
+        waiting = list(f)
+        while waiting:
+            x = waiting.pop()
+            rule = slots.dividing(x)
+            if rule is None:
+                done ^= {x}
+            elif rule.tail:
+                self.budget.spend(1)
+                rest = x - rule.packed
+                nilpotent = slots.nilpotent
+                waiting += [rest + t for t in rule.tail if not rest & t & nilpotent]
+        return done
 
     def add(self, into: Poly, element: Iterable[int], coefficient: int = 1) -> None:
         """Add a multiple of an element to `into`."""
@@ -83,7 +119,7 @@ class Ring2:
         if len(f) == 1:
             (x,) = f
             if not x & nilpotent:
-                return {x + y for y in g}
+                return self.reduce({x + y for y in g}) if self.slots.families else {x + y for y in g}
         self.budget.spend(len(f) * len(g))
         result: Poly = set()
         for x in f:
@@ -91,14 +127,16 @@ class Ring2:
                 result ^= {x + y for y in g if not x & y & nilpotent}
             else:
                 result ^= {x + y for y in g}
-        return result
+        return self.reduce(result) if self.slots.families else result
 
     def power(self, f: Collection[int], n: int) -> Poly:
         """The n-th power, n >= 0, through the binary digits of n."""
+        result: Poly
         if len(f) == 1:
             (x,) = f
-            return set() if n > 1 and x & self.slots.nilpotent else {x * n}
-        result: Poly = {0}
+            result = set() if n > 1 and x & self.slots.nilpotent else {x * n}
+            return self.reduce(result) if self.slots.families else result
+        result = {0}
         nilpotent = self.slots.nilpotent
         digit = 0
         while n >> digit:
@@ -130,6 +168,9 @@ class Ring2:
         if i == degree:
             return (place << 1,)
         root = slots.root[slot]
+        ring = slots.roots[root].of.ring
+        if ring is not None:
+            return tuple(self.polynomial(ring.operation(2, i, slots.roots[root].of)))
         n = slots.roots[root].degree
         killed = slots.roots[root].killed
         total = degree - n + i
@@ -171,7 +212,7 @@ class Ring2:
                 if not i & ((1 << digit) - 1):
                     terms = self.square(slot, i >> digit)
                     toggle([t << digit for t in terms] if digit else terms)
-        return result
+        return self.reduce(result) if self.slots.families else result
 
     def _pieces(self, monomial: int) -> list[tuple[int, int]]:
         """The pairs (digit, slot) of a monomial's exponents, highest digit first."""

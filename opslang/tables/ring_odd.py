@@ -15,6 +15,7 @@ from math import gcd
 
 from opslang.ground.arith import digits, p_part
 from opslang.ir.tree import Class, Monomial
+from opslang.spaces.family import Polynomial
 from opslang.tables.budget import Budget
 from opslang.tables.powers import Powers
 from opslang.tables.slots import Slots, decode, exponents
@@ -31,7 +32,7 @@ class RingOdd:
         self.width = width
         self.budget = budget
         self.algebra = Powers(prime, width, budget)
-        self.slots = Slots(prime, width)
+        self.slots = Slots(prime, width, budget)
         self._powers: dict[tuple[int, int], Terms] = {}
         self._primitives: dict[tuple[int, int], Poly] = {}
 
@@ -47,8 +48,49 @@ class RingOdd:
 
     def generator(self, of: Class, bockstein: int = 0) -> Poly:
         """A class, or its beta_k."""
+        if bockstein and of.ring is not None:
+            return self.polynomial(of.ring.bockstein(self.prime, of)[1])
         root = self.slots.root_of(of, bockstein)
         return {1 << self.width * self.slots.slot(root, 0, self.slots.roots[root].degree): 1}
+
+    def place(self, of: Class) -> int:
+        """A class as a packed monomial."""
+        (monomial,) = self.generator(of)
+        return monomial
+
+    def polynomial(self, terms: Polynomial) -> Poly:
+        """A polynomial in the classes of a named space."""
+        found: Poly = {}
+        for c, powers in terms:
+            product: Poly = {0: c % self.prime}
+            for of, exponent in powers:
+                place = self.place(of)
+                if exponent > 1 and place & self.slots.nilpotent:
+                    product = {}
+                product = self._product(product, {place * exponent: 1})
+            self.add(found, product)
+        return self.reduce(found)
+
+    def reduce(self, f: Poly) -> Poly:
+        """The normal form of an element modulo the relations of named spaces."""
+        slots = self.slots
+        slots.load_rules(self.place, self.polynomial)
+        if not slots.rules:
+            return f
+        done: Poly = {}
+        waiting = list(f.items())
+        while waiting:
+            x, c = waiting.pop()
+            rule = slots.dividing(x)
+            if rule is None:
+                self.add(done, {x: c})
+            elif rule.tail:
+                self.budget.spend(1)
+                # the sign of x = rest · lead, then the product with what stands for lead
+                rest = x - rule.packed
+                sign = self._product({rest: 1}, {rule.packed: 1})[x]
+                waiting += self._product({rest: c * sign % self.prime}, rule.tail).items()
+        return done
 
     def add(self, into: Poly, element: Mapping[int, int], coefficient: int = 1) -> None:
         """Add a multiple of an element to `into`."""
@@ -81,6 +123,10 @@ class RingOdd:
 
     def multiply(self, f: Mapping[int, int], g: Mapping[int, int]) -> Poly:
         """The cup product, with the sign of graded commutativity."""
+        product = self._product(f, g)
+        return self.reduce(product) if self.slots.families else product
+
+    def _product(self, f: Mapping[int, int], g: Mapping[int, int]) -> Poly:
         self.budget.spend(len(f) * len(g))
         p, odd = self.prime, self.slots.nilpotent
         result: Poly = {}
@@ -121,6 +167,9 @@ class RingOdd:
         """The Bockstein of the generator in a slot."""
         slots, word = self.slots, self.slots.word[slot]
         root = slots.root[slot]
+        of = slots.roots[root].of
+        if of.ring is not None:
+            return self.polynomial(of.ring.operation(self.prime, 0, of))
         if word & 1 or (not word and slots.roots[root].killed):
             return {}
         return {1 << self.width * slots.slot(root, word | 1, slots.degree[slot] + 1): 1}
@@ -146,6 +195,9 @@ class RingOdd:
         if 2 * i == degree:
             return ((place * p, 1),)
         root = slots.root[slot]
+        ring = slots.roots[root].of.ring
+        if ring is not None:
+            return tuple(self.polynomial(ring.operation(p, i, slots.roots[root].of)).items())
         n, killed = slots.roots[root].degree, slots.roots[root].killed
         algebra, word = self.algebra, slots.word[slot]
         mask = algebra.mask
@@ -181,7 +233,7 @@ class RingOdd:
         for x, c in f.items():
             if x:
                 self.add(result, self.cartan(token, x), c)
-        return result
+        return self.reduce(result) if self.slots.families else result
 
     def _pieces(self, monomial: int) -> list[tuple[int, int]]:
         """The pairs (p^j, slot) of a monomial, one for each unit of each digit, slots increasing."""
@@ -214,7 +266,7 @@ class RingOdd:
             for d, f in sums.items():
                 for i, g in series:
                     if k - rest - d <= i <= k - d:
-                        part = self.multiply(f, g)
+                        part = self._product(f, g)
                         if d + i in following:
                             self.add(following[d + i], part)
                         else:

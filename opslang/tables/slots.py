@@ -15,6 +15,7 @@ from attrs import frozen
 from opslang.ground.grading import Word
 from opslang.ir.order import generator_key
 from opslang.ir.tree import Class, Generator, Monomial
+from opslang.tables.budget import Budget
 
 
 @frozen
@@ -27,12 +28,22 @@ class Root:
     killed: bool
 
 
+@frozen
+class Rule:
+    """A relation of a named space: the exponents of its leading monomial, that monomial packed, what it equals (None: 0)."""
+
+    lead: tuple[tuple[int, int], ...]
+    packed: int
+    tail: Any
+
+
 class Slots:
     """The generators seen so far: slot number <-> (root, packed word)."""
 
-    def __init__(self, prime: int, width: int) -> None:
+    def __init__(self, prime: int, width: int, budget: Budget) -> None:
         self.prime = prime
         self.width = width
+        self._budget = budget
         self.roots: list[Root] = []
         self._root_of: dict[tuple[Class, int], int] = {}
         self._slot_of: dict[tuple[int, int], int] = {}
@@ -43,6 +54,9 @@ class Slots:
         """The lowest bit of every slot whose generator squares to 0: odd degree at an odd prime; at 2 degree 1 and killed by Sq^1."""
         self.decoded: dict[int, Decoded] = {}
         """Monomials decoded lately."""
+        self.rules: list[Rule] = []
+        self.families: set[Any] = set()
+        self._unruled: list[Any] = []
         self._generators: list[Generator] = []
         self._keys: list[tuple[Any, ...]] = []
 
@@ -63,14 +77,50 @@ class Slots:
         found = self._slot_of.get(key)
         if found is None:
             found = len(self.word)
+            # monomials are ints as long as the number of slots
+            self._budget.spend(1 + (found >> 6))
             self._slot_of[key] = found
             self.root.append(root)
             self.word.append(word)
             self.degree.append(degree)
             at = self.roots[root]
+            self._meet(at.of)
             if degree % 2 if self.prime != 2 else degree == 1 and at.killed:
                 self.nilpotent |= 1 << self.width * found
         return found
+
+    def load_rules(self, place: Callable[[Class], int], pack: Callable[[Any], Any]) -> None:
+        """Take over the relations of the named spaces whose classes were met since the last call.
+
+        `place` gives the packed form of a class, `pack` that of a polynomial in classes.
+        """
+        while self._unruled:
+            family = self._unruled.pop()
+            for lead, tail in family.rules(self.prime):
+                packed = sum([place(of) * exponent for of, exponent in lead])
+                self.rules.append(Rule(tuple(exponents(packed, self.width)), packed, pack(tail)))
+
+    def _meet(self, of: Class) -> None:
+        """Note the relations that a class brings with it."""
+        family = of.ring
+        if family is None:
+            return
+        if family not in self.families:
+            self.families.add(family)
+            self._unruled.append(family)
+        height = family.height(self.prime, of)
+        if height is not None:
+            place = 1 << self.width * (len(self.word) - 1)
+            self.rules.append(Rule(tuple(exponents(place * height, self.width)), place * height, None))
+
+    def dividing(self, monomial: int) -> "Rule | None":
+        """The first relation whose leading monomial divides this one."""
+        width = self.width
+        mask = (1 << width) - 1
+        for rule in self.rules:
+            if all([(monomial >> slot * width & mask) >= exponent for slot, exponent in rule.lead]):
+                return rule
+        return None
 
     def name(self, unpack: Callable[[int], Word], slot: int) -> tuple[Generator, tuple[Any, ...]]:
         """The generator in a slot and its key in the canonical order; `unpack` turns packed words into tokens."""

@@ -1,0 +1,112 @@
+"""Spaces as values: products of Eilenberg-MacLane spaces and of named ones, and what their cohomology is made from at a prime."""
+
+from __future__ import annotations
+
+from typing import Union
+
+from attrs import frozen
+
+from opslang.ground.arith import p_part
+from opslang.ir.tree import Class
+from opslang.spaces import characteristic, projective, spin
+from opslang.spaces.family import Family, NotKnown, Polynomial
+from opslang.spaces.thom import thom
+
+
+@frozen
+class Factor:
+    """K(Z, degree) (order 0) or K(Z/order, degree)."""
+
+    order: int
+    degree: int
+
+
+@frozen
+class NamedFactor:
+    """A named space: its word, its number (None: no end, or stable), the letters given to its classes, and the base of a Thom space."""
+
+    word: str
+    number: int | None = None
+    letters: tuple[str, ...] = ()
+    base: "NamedFactor | None" = None
+
+    def family(self, prime: int, factor: int) -> Family:
+        """What the space says of itself at a prime.  NotKnown where it is outside what is known."""
+        if self.base is not None:
+            return thom(self.base.family(prime, factor), prime, factor)
+        if self.word == "lens":
+            return projective.Lens(self.number or 0, (*self.letters, *("x", "y")[len(self.letters) :])[:2], factor)  # type: ignore[arg-type]
+        if self.word in _PROJECTIVE:
+            return _PROJECTIVE[self.word](self.number, self.letters[0] if self.letters else None, factor)
+        group = self.word[1:]
+        if self.word == "BSpin" and prime == 2:
+            return spin.spin(group, self.number, prime, factor)
+        return _CLASSIFYING[self.word](group, self.number, prime, factor)
+
+
+_PROJECTIVE = {"RP": projective.real, "CP": projective.complex_, "HP": projective.quaternionic}
+_CLASSIFYING = {
+    "BO": characteristic.orthogonal,
+    "BSO": characteristic.orthogonal,
+    "BSpin": characteristic.orthogonal,
+    "BU": characteristic.unitary,
+    "BSU": characteristic.unitary,
+    "BSp": characteristic.symplectic,
+}
+WORDS = (*_CLASSIFYING, *_PROJECTIVE, "lens", "thom")
+"""The words that named spaces begin with."""
+
+AnyFactor = Union[Factor, NamedFactor]
+
+
+@frozen
+class SpaceValue:
+    """A product of spaces, in the order written, and the text that names it."""
+
+    factors: tuple[AnyFactor, ...]
+    text: str
+
+
+@frozen
+class Localised:
+    """A space at a prime: its fundamental classes, those names of fundamental classes that are 0 there (degree, primes), its named factors."""
+
+    classes: tuple[Class, ...]
+    vanishing: frozenset[tuple[int, int]]
+    families: tuple[Family, ...] = ()
+
+    def named(self, prime: int, letter: str, index: int | None, primes: int) -> list[Polynomial]:
+        """What a name stands for in each named factor that has it."""
+        found = [family.named(prime, letter, index, primes) for family in self.families]
+        return [value for value in found if value is not None]
+
+
+def class_order(order: int, prime: int) -> int | None:
+    """The `Class.order` of coefficients Z (order 0) or Z/order at a prime; None where the group is 0 there."""
+    if order == 0:
+        return 0
+    return p_part(order, prime) or None
+
+
+def localise(space: SpaceValue, prime: int) -> Localised:
+    """A space at a prime; fundamental classes are numbered among equal degrees by the factors as written.  NotKnown."""
+    classes = []
+    vanishing = set()
+    families = []
+    seen: dict[int, int] = {}
+    for number, factor in enumerate(space.factors):
+        at = number if len(space.factors) > 1 else 0
+        if isinstance(factor, NamedFactor):
+            families.append(factor.family(prime, at))
+            continue
+        primes = seen.get(factor.degree, 0)
+        seen[factor.degree] = primes + 1
+        order = class_order(factor.order, prime)
+        if order is None:
+            vanishing.add((factor.degree, primes))
+        else:
+            classes.append(Class("iota", factor.degree, primes, factor.degree, order, at))
+    return Localised(tuple(classes), frozenset(vanishing), tuple(families))
+
+
+__all__ = ["WORDS", "AnyFactor", "Factor", "Localised", "NamedFactor", "NotKnown", "SpaceValue", "class_order", "localise"]
