@@ -1,6 +1,6 @@
 """The shell as its user meets it, on a real pseudo-terminal.
 
-The values are those of the batch runs (test_facts.py holds them against published ones); here the same text must appear.
+The values are those of the batch runs, which test_facts.py holds against published ones.
 """
 
 from __future__ import annotations
@@ -242,7 +242,7 @@ def test_the_end_of_input_and_the_ways_to_leave(tmp_path: Path) -> None:
         with Terminal(tmp_path) as terminal:
             terminal.at_prompt(1)
             terminal.press("half a li\x03")
-            terminal.until(lambda: terminal.text().count("ops 1>") == 2)  # Ctrl-C drops the line  # noqa: B023
+            terminal.until(lambda: terminal.text().count("ops 1>") == 2)  # Ctrl-C drops the line
             terminal.at_prompt(1)
             terminal.press(keys)
             assert terminal.ends() == 0
@@ -324,7 +324,7 @@ def test_the_first_prompt_comes_soon(tmp_path: Path) -> None:
         bare.append(perf_counter() - start)
         start = perf_counter()
         with Terminal(tmp_path) as terminal:
-            terminal.until(lambda: b"1>" in terminal.raw)  # noqa: B023
+            terminal.until(lambda: b"1>" in terminal.raw)
             prompt.append(perf_counter() - start)
             terminal.at_prompt(1)
     assert min(prompt) <= 30 * min(bare)

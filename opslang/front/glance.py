@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from copy import copy
 from typing import Literal
 
-from attrs import evolve, frozen
+from attrs import evolve, fields, frozen
 
 from opslang.ground.source import Source, Span
 from opslang.meaning.lower import Lowering
@@ -31,9 +32,22 @@ class Glance:
     span: Span | None = None
 
 
+def _tables(scope: Scope) -> list[str]:
+    """The tables that declarations fill."""
+    return [each.name for each in fields(Scope) if isinstance(getattr(scope, each.name), dict)]
+
+
 def copy_of(scope: Scope) -> Scope:
     """A scope that later declarations do not change."""
-    return Scope(scope.prime, scope.space, dict(scope.spaces), dict(scope.names))
+    copied = copy(scope)
+    for name in _tables(scope):
+        setattr(copied, name, dict(getattr(scope, name)))
+    return copied
+
+
+def same_scope(scope: Scope, other: Scope) -> bool:
+    """Whether two scopes say the same."""
+    return all(getattr(scope, name) == getattr(other, name) for name in ("prime", "space", *_tables(scope)))
 
 
 def glance(source: Source, scope: Scope) -> Glance:
@@ -85,7 +99,8 @@ def reads_alike(text: str, scope: Scope, other: Scope) -> bool:
         if isinstance(statement, (sf.BasisStatement, sf.SeriesStatement)):
             named = statement.space
             return named is None or space_value(named, scope) == space_value(named, other)
-        return lowered(statement, scope, text) == lowered(statement, other, text)
+        values = lowered(statement, scope, text)
+        return values is not None and values == lowered(statement, other, text)
     except Refusal:
         return False
 
@@ -117,7 +132,9 @@ def _words(statement: sf.Statement, scope: Scope, lowering: Lowering) -> str:
             return _classes_here(scope)
         case sf.BasisStatement():
             return "basis of one degree"
-    return "dimensions, degree by degree"
+        case sf.SeriesStatement():
+            return "dimensions, degree by degree"
+    return ""
 
 
 def _classes_here(scope: Scope) -> str:

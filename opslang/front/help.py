@@ -52,7 +52,7 @@ def page(name: str, width: int) -> str | None:
     topic = TOPICS[found]
     lines = [found, "", *wrap(topic.text, width)]
     if found in SHELL_WORDS:
-        lines += ["", f"Write: {SHELL_WORDS[found]}"]
+        lines += ["", *wrap(f"Write: {SHELL_WORDS[found]}", width)]
     if topic.example:
         lines += ["", "Example:", *_example(topic.example, width)]
     return "\n".join(lines)

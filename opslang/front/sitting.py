@@ -12,7 +12,7 @@ from textwrap import wrap
 
 from attrs import evolve
 
-from opslang.front.glance import LONGEST, Glance, copy_of, glance
+from opslang.front.glance import LONGEST, Glance, copy_of, glance, same_scope
 from opslang.front.logbook import THAT, Entry, Expanded, Logbook, Role, as_typed
 from opslang.front.output import ansi
 from opslang.front.pasting import displayed, on_one_line, opens_display
@@ -207,7 +207,7 @@ class Sitting:
         text = entry.text if entry.outcome.kind == "derivation" else f"why {entry.text.lstrip()}"
         here = self.session.scope
         scope = copy_of(entry.before)
-        same = (scope.prime, scope.space, scope.names) == (here.prime, here.space, here.names)
+        same = same_scope(scope, here)
         scope.names.update({key: self.logbook.value(of) for of, key in entry.borrowed})
         self.session.scope = scope
         try:

@@ -66,7 +66,10 @@ class Status:
         own = shell_statement(text)
         if own is not None and own[0] in SHELL_WORDS and "\n" not in text.strip():
             return f"write: {SHELL_WORDS[own[0]]}", "quiet", ""
-        return self._look(text)
+        try:
+            return self._look(text)
+        except Exception:  # a fault of ours: running the line will tell, and typing it must not be disturbed
+            return "", "quiet", ""
 
     def fragments(self, text: str, around: list[str], width: int) -> list[Fragment]:
         """The line for a text; a text that has not been looked at yet shows what was said of the one before it."""
