@@ -17,7 +17,7 @@ from opslang.lint.symbolic.homogeneity import factors_of
 from opslang.lint.symbolic.polynomial import Polynomial
 from opslang.lint.symbolic.values import compare
 
-MOST_POINTS = 14
+MOST_POINTS = 9
 PRIMES = (3, 5)
 """What is tried where p is any odd prime."""
 UNKNOWN_DEGREES = ((2, 1, 3), (1, 3, 2), (3, 2, 1))

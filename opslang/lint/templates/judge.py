@@ -7,10 +7,10 @@ says nothing it is a fault only if it holds nowhere.
 from __future__ import annotations
 
 from opslang.lint.formula.integers import letters_of
-from opslang.lint.model import Call, Condition, Dots, Finding, Known, Operation, Statement, Sum, Verdict, found
+from opslang.lint.model import Call, Condition, Dots, Finding, Known, Number, Operation, Statement, Sum, Verdict, found
 from opslang.lint.symbolic.homogeneity import about_operations, factors_of
 from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
-from opslang.lint.templates.shapes import adem, adem_range, cartan, says_range, wu
+from opslang.lint.templates.shapes import adem, adem_range, cartan, only_product, says_range, wu
 
 _PARITY = ("even", "odd", "parity", "power", "divisible", "congruent", "binary", "mod", "digit", "multiple")
 
@@ -59,7 +59,7 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
         return Verdict("agrees", reason="agrees for " + trial.extent)
     if classes_of(statement) or _stated(statement):
         return None
-    if not trial.true and len(trial.false) >= 3:
+    if not trial.true and len(trial.false) >= (3 if trial.symbols else 2):
         return found(_wrong(statement, trial, "false-for-small-values", "this holds for none of the values tried"))
     if trial.true and _quantified(statement, known, domain):
         return found(_wrong(statement, trial, "false-for-small-values", "this does not hold for all values"))
@@ -68,9 +68,11 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
 
 def _stated(statement: Statement) -> bool:
     """P^i = 0, Sq^i = 1: not a relation of the algebra, but a hypothesis or a notation."""
-    return all(
-        isinstance(side, Sum) and len(side.terms) == 1 and len(side.terms[0][1].factors) == 1 for side in statement.sides
-    )
+    for side in statement.sides:
+        product = only_product(side)
+        if product is None or len(product.factors) != 1 or not isinstance(product.factors[0], (Operation, Number)):
+            return False
+    return True
 
 
 def _quantified(statement: Statement, known: Known, domain: tuple[Condition, ...]) -> bool:
