@@ -51,7 +51,7 @@ def generators(p: int, classes: Iterable[Class], to: int, budget: Budget | None 
         for tail, degree, killed in _roots(of):
             for word, d in _words(p, degree, killed, to):
                 if budget is not None:
-                    budget.spend(1)
+                    budget.spend(2 + len(word))
                 found.append((Generator(word + tail, of), d))
     found.sort(key=lambda pair: generator_key(pair[0], p))
     return found

@@ -120,7 +120,7 @@ class Ring2:
             (x,) = f
             if not x & nilpotent:
                 return self.reduce({x + y for y in g}) if self.slots.families else {x + y for y in g}
-        self.budget.spend(len(f) * len(g))
+        self.budget.spend(len(f) * len(g) * self._length())
         result: Poly = set()
         for x in f:
             if x & nilpotent:
@@ -270,6 +270,7 @@ class Ring2:
         """Add the product of two sums of monomials to the entry d."""
         if len(g) > len(f):
             f, g = g, f
+        self.budget.spend(1 + (len(f) * len(g) * self._length() >> 2))
         into = sums.get(d)
         if len(g) == 1:
             (y,) = g
@@ -278,12 +279,15 @@ class Ring2:
             else:
                 into.symmetric_difference_update([x + y for x in f])  # type: ignore[attr-defined]
         else:
-            self.budget.spend(len(f) * len(g) >> 2)
             part: Poly = set() if into is None else into  # type: ignore[assignment]
             toggle = part.symmetric_difference_update
             for y in g:
                 toggle([x + y for x in f])
             sums[d] = part
+
+    def _length(self) -> int:
+        """How long monomials are, in units of some hundred generators."""
+        return 1 + (len(self.slots.word) >> 7)
 
     def total(self, f: Iterable[int]) -> Poly:
         """The total square of an element."""

@@ -127,7 +127,7 @@ class RingOdd:
         return self.reduce(product) if self.slots.families else product
 
     def _product(self, f: Mapping[int, int], g: Mapping[int, int]) -> Poly:
-        self.budget.spend(len(f) * len(g))
+        self.budget.spend(len(f) * len(g) * (1 + (len(self.slots.word) >> 7)))
         p, odd = self.prime, self.slots.nilpotent
         result: Poly = {}
         get = result.get
