@@ -153,6 +153,7 @@ class Stack:
             self.end_words(token)
             if role == "inner":
                 self.keep("shift", "$", token)
+                self.spoilt = self.spoilt or not proper
             self.math, self.style, self.inner = level.math, level.style, level.inner
             return
         self.end_passage(level)

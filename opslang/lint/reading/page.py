@@ -9,7 +9,7 @@ import re
 
 from opslang.lint.reading.document import Directive, Environment, Formula, Piece, Text, Token, Where
 
-_WIDE = re.compile(r"[^\S ]|\s\s+")
+_WIDE = re.compile(r"\s\s+")
 
 Chunk = tuple[str, int, int]
 Saved = tuple[list[Piece], list[Chunk], str, int, int]
@@ -21,8 +21,14 @@ def settle(chunks: list[Chunk]) -> tuple[str, tuple[tuple[int, int, int], ...]]:
     runs: list[tuple[int, int, int]] = []
     length = 0
     for text, start, end in chunks:
+        if parts and text[:1].isspace() and parts[-1][-1:].isspace():
+            if end - start == len(text):
+                start += 1
+            text = text[1:]
+        if not text:
+            continue
         if end - start != len(text):  # out of a macro or a command: one place for all of it
-            text = _WIDE.sub(" ", text)
+            text = _WIDE.sub(" ", text).translate(_BLANKS)
             runs.append((length, start, end))
             parts.append(text)
             length += len(text)
@@ -31,8 +37,6 @@ def settle(chunks: list[Chunk]) -> tuple[str, tuple[tuple[int, int, int], ...]]:
         runs.append((length, start, end))
         for wide in _WIDE.finditer(text):
             first, last = wide.span()
-            if last - first == 1:
-                continue
             parts.append(text[at : first + 1])
             length += first + 1 - at
             runs[-1] = (runs[-1][0], runs[-1][1], start + first + 1)

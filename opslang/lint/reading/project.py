@@ -20,6 +20,8 @@ LARGEST = 20_000_000
 DEEPEST = 30
 _MAGIC = re.compile(r"^\s*%+\s*!\s*TEX\s+root\s*=\s*(.+?)\s*$", re.IGNORECASE | re.MULTILINE)
 _SUBFILE = re.compile(r"^[^%\n]*\\documentclass\s*\[([^\]\n]+)\]\s*\{subfiles\}", re.MULTILINE)
+_DEFINES = re.compile(r"\\(?:newcommand|def|DeclareMathOperator|let|renewcommand)\b")
+_HEADING = re.compile(r"\\(?:chapter|section|begin)\b")
 _DRAWN = re.compile(r"^[^%\n]*?\\(?:input|include|subfile)\s*\{?\s*([^\s{}%]+)", re.MULTILINE)
 
 
@@ -91,7 +93,17 @@ class Project:
             if self.follow and not frames[-1].silent:
                 reader.notice("file-not-found", f"{name} was not found and what it defines is not known", token)
             return
+        if reader.only_definitions and not self._only_defines(path):
+            return
         self._open(reader, path, token, frames[-1].silent if frames else False, package=False)
+
+    def _only_defines(self, path: str) -> bool:
+        """Whether a file drawn in by the body of the main file is one of definitions and no chapter."""
+        try:
+            text = self.files[self.number_of(path)].text
+        except OSError:
+            return False
+        return _DEFINES.search(text) is not None and _HEADING.search(text) is None
 
     def packages(self, reader: Reader, names: list[str], ending: str) -> None:
         """\\usepackage: the definitions of a style file that lies beside the draft."""

@@ -38,6 +38,7 @@ class Reader(Stack):
         self.conditions: list[bool | None] = []
         self.packages_read: set[int] = set()
         self.exhausted = False
+        self.only_definitions = False
         self.acts = {
             "open": self.open_brace,
             "close": self.close_brace,
@@ -68,10 +69,10 @@ class Reader(Stack):
         while (token := self.intake.next()) is not None:
             if token.kind == "command" and token.text == "\\begin":
                 name = self.intake.braced()
-                if name and name[0].text == "document":
-                    break
+                self.only_definitions = self.only_definitions or bool(name and name[0].text == "document")
             else:
                 self.silently(token)
+        self.only_definitions = False
         self.intake.frames.clear()
         self.intake.pending.clear()
 
