@@ -11,7 +11,7 @@ from attrs import define, evolve, field
 
 from opslang.lint.context.directives import Allowed, Said, allowed_in, directives_of
 from opslang.lint.context.facts import Ledger, Saying, Spot
-from opslang.lint.context.names import class_names
+from opslang.lint.context.names import class_names, names_of
 from opslang.lint.context.sayings import degree_written, from_formula, from_words, in_its_ring, numbers_said
 from opslang.lint.context.script import Scripts
 from opslang.lint.context.setting import ODD, Settings, is_hypothesis, learn, no_operations, particular_space
@@ -29,7 +29,9 @@ from opslang.lint.model import (
     Origin,
     Rule,
     Statement,
+    Sum,
 )
+from opslang.lint.numeric.rules_given import defined, transgresses
 from opslang.lint.reading import Document, Formula
 from opslang.lint.rule import Unit
 from opslang.lint.symbolic.polynomial import Polynomial
@@ -56,6 +58,8 @@ class _Builder:
     pages: list[tuple[Paragraph, list[Spot]]] = field(factory=list)
     read: dict[int, tuple[Statement, ...]] = field(factory=dict)
     numbers: dict[int, frozenset[str]] = field(factory=dict)
+    rules: list[tuple[Spot, Rule, Formula]] = field(factory=list)
+    primitives: list[tuple[Spot, str]] = field(factory=list)
 
     def statements(self, formula: Formula) -> tuple[Statement, ...]:
         """The statements of a formula, read once."""
@@ -91,6 +95,43 @@ class _Builder:
                     local = self._hypothesis(paragraph, spot)
                     said = evolve(saying, spot=spot, source="the formula", local=local)
                     self.ledger.add(in_its_ring(said, paragraph))
+                self._note_rules(formula, spot, is_hypothesis(paragraph, spot.offset))
+
+    def _note_rules(self, formula: Formula, spot: Spot, hypothesis: bool) -> None:
+        """Take note of what a formula lays down: d iota_4 = …, Sq^1 x = 0 behind an if, Q_0 = Sq^1."""
+        for statement in self.statements(formula):
+            if statement.kind not in ("relation", "definition") or len(statement.sides) != 2 or statement.sign == "≠":
+                continue
+            left, right = statement.sides
+            if not isinstance(left, Sum) or not isinstance(right, Sum) or statement.unread:
+                continue
+            rule = Rule(left, right, "the text", statement.at)
+            named = bool(names_of(left) or names_of(right))
+            if transgresses(rule) or (hypothesis and named) or defined(rule) is not None:
+                self.rules.append((spot, rule, formula))
+            counted = first_primitive(left, right)
+            if counted is not None:
+                self.primitives.append((spot, counted))
+
+    def _said_rules(self, formula: Formula, spot: Spot) -> list[Rule]:
+        """The rules that the text lays down before a formula in its section; a hypothesis holds in its paragraph.
+
+        A definition is one where it stands first: that the same name occurs again on one side defines nothing.
+        """
+        found = []
+        for at, rule, where in self.rules:
+            if at.section != spot.section or (at.paragraph, at.offset) > (spot.paragraph, spot.offset):
+                continue
+            lasting = transgresses(rule) or defined(rule) is not None
+            if where is formula or (not lasting and at.paragraph != spot.paragraph):
+                continue
+            found.append(rule)
+        return found
+
+    def _primitive(self, spot: Spot) -> str | None:
+        """Which of the primitives is Sq^1 here, as the section says."""
+        here = {counted for at, counted in self.primitives if at.section == spot.section}
+        return here.pop() if len(here) == 1 else None
 
     def _hypothesis(self, paragraph: Paragraph, spot: Spot) -> bool:
         """Whether a declaration stands behind an if."""
@@ -120,14 +161,15 @@ class _Builder:
         ]
         ranges = [condition for one in near for condition in self._conditions(one)]
         context = self.scripts.at(formula)
+        rules = (*self._said_rules(formula, spot), *context.rules)
         prime = context.prime if context.prime is not None else self.settings.prime_at(spot)
         return Known(
             prime=None if prime == ODD else prime,
             maps=context.maps,
             operations=context.operations,
-            conventions=dict(context.conventions) | self._manner(paragraph, spot, prime),
+            conventions=self._manner(paragraph, spot, prime) | dict(context.conventions),
             ranges=tuple(ranges),
-            rules=context.rules,
+            rules=rules,
             integers=self.numbers.get(spot.paragraph, frozenset()) | no_operations(paragraph, formula, spot.offset),
             sentences=paragraph.text[start:end],
             script=context.lines,
@@ -140,6 +182,9 @@ class _Builder:
             found["prime"] = "odd"
         if is_hypothesis(paragraph, spot.offset):
             found["hypothesis"] = "yes"
+        counted = self._primitive(spot)
+        if counted is not None:
+            found["Q"] = counted
         return found
 
     def _conditions(self, formula: Formula) -> Iterator[Condition]:
@@ -148,7 +193,8 @@ class _Builder:
                 yield from statement.conditions
 
     def _known(self, statement: Statement, spot: Spot, frame: Known) -> Known:
-        names = {name.spelling + (f"^{name.label}" if name.label else ""): name for name in class_names(statement)}
+        mentioned = [*class_names(statement), *(name for rule in frame.rules for name in names_of(rule.right))]
+        names = {name.spelling + (f"^{name.label}" if name.label else ""): name for name in mentioned}
         classes: dict[str, ClassFact] = {}
         context = self.scripts.at(statement.formula)
         for spelling, name in names.items():
@@ -206,6 +252,19 @@ class _Builder:
             if groups:
                 return ClassFact(degree, None, "", "several", "several spaces of this degree are named")
         return fact or ClassFact(degree, None, "", "", "the notation of fundamental classes")
+
+
+def first_primitive(left: Sum, right: Sum) -> str | None:
+    """The k of an equation Q_k = Sq^1 (or beta), for k = 0 and 1."""
+    sides = [side.terms[0][1].factors for side in (left, right) if len(side.terms) == 1]
+    if len(sides) != 2 or any(len(side) != 1 or not isinstance(side[0], Operation) for side in sides):
+        return None
+    first, second = sides[0][0], sides[1][0]
+    if not isinstance(first, Operation) or not isinstance(second, Operation) or first.head != "Q":
+        return None
+    is_first = second.head == "beta" or (second.head == "Sq" and len(second.upper) == 1 and second.upper[0].number == 1)
+    k = first.lower.number if first.lower is not None else None
+    return str(k) if is_first and k in (0, 1) else None
 
 
 def _fits(space: SpaceSaid, degree: Polynomial) -> bool:

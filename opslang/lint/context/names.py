@@ -21,7 +21,10 @@ from opslang.lint.model import (
 
 def nodes_in(statement: Statement) -> Iterator[object]:
     """All factors in a statement, and the sides that are no sums."""
-    waiting: list[object] = list(reversed(statement.sides))
+    yield from _walk(list(reversed(statement.sides)))
+
+
+def _walk(waiting: list[object]) -> Iterator[object]:
     while waiting:
         node = waiting.pop()
         yield node
@@ -47,6 +50,11 @@ def _inside(node: object) -> list[object]:
         case Cohomology():
             return []
     return []
+
+
+def names_of(side: Sum) -> list[ClassName]:
+    """The class names in an expression."""
+    return [node for node in _walk([side]) if isinstance(node, ClassName)]
 
 
 def class_names(statement: Statement) -> list[ClassName]:

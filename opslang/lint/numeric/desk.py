@@ -17,10 +17,21 @@ from opslang.ground.source import Source, Span
 from opslang.ir import tree as ir
 from opslang.ir.outcome import Outcome
 from opslang.ir.tree import Class
+from opslang.lint.context.names import names_of
 from opslang.lint.context.sayings import only_name
 from opslang.lint.formula.closed import to_surface
-from opslang.lint.model import ClassFact, Known, Sum
+from opslang.lint.model import ClassFact, ClassName, Known, Sum
 from opslang.lint.numeric.naming import Naming, Unnamed
+from opslang.lint.numeric.rules_given import (
+    Transgression,
+    Unfit,
+    WrongPage,
+    conventional,
+    has_primitive,
+    killed,
+    other_rules,
+    spelled_out,
+)
 from opslang.meaning.lower import Lowering
 from opslang.meaning.value import cls
 from opslang.pipeline import Session, derive_value
@@ -34,6 +45,9 @@ LIMIT = 20_000
 HIGHEST = 200
 LONGEST = 40
 """Derivations are looked for up to this degree, so that no draft makes the linter slow."""
+
+KILLED = 2
+"""The order under which a class with Sq^1 u = 0 is computed: that of the reduction of a Z/4 class."""
 
 Answer = Literal["true", "false", "undecided", "unknown"]
 
@@ -101,8 +115,34 @@ def desk(prime: int, script: tuple[str, ...]) -> tuple[Desk, frozenset[str]]:
 
 
 def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None = None, why: bool = False) -> Decision:
-    """Whether a closed relation holds; `values` are numbers for its symbols."""
-    numbers = dict(values or {})
+    """Whether a closed relation holds; `values` are numbers for its symbols.
+
+    Where the draft does not say whether Q_0 or Q_1 is Sq^1, only what both conventions agree on is believed.
+    """
+    decision = _by_convention(left, right, known, values, why)
+    whole = spelled_out(left, known), spelled_out(right, known)
+    if decision.answer == "true" or whole == (left, right):
+        return decision
+    again = _by_convention(*whole, known, values, why)
+    if again.answer in ("true", "unknown") or decision.answer == "unknown":
+        return again
+    return evolve(again, special=again.special or decision.special)
+
+
+def _by_convention(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool) -> Decision:
+    said = known.conventions.get("Q")
+    if not (has_primitive(left) or has_primitive(right)):
+        return _decide(left, right, known, dict(values or {}), why, 0)
+    if said is not None:
+        return _decide(left, right, known, dict(values or {}), why, int(said))
+    first = _decide(left, right, known, dict(values or {}), why, 0)
+    second = _decide(left, right, known, dict(values or {}), why, 1)
+    if first.answer == second.answer or "unknown" in (first.answer, second.answer):
+        return first
+    return Decision("unknown", "it depends on how the primitives are counted", "whether Q_0 or Q_1 is Sq^1")
+
+
+def _decide(left: Sum, right: Sum, known: Known, numbers: dict[str, int], why: bool, first_primitive: int) -> Decision:
     prime = known.prime
     if prime is None:
         return Decision("unknown", "the prime is not known", "the prime")
@@ -110,21 +150,41 @@ def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None
         session, kept = desk(prime, known.script)
     except ValueError:
         return Decision("unknown", f"{prime} is not a prime", "the prime")
-    naming = Naming(known, numbers, kept)
+    naming = Naming(known, numbers, kept - killed(known))
     try:
-        sides = [naming.renamed(left), naming.renamed(right)]
+        sides = [_prepared(side, known, numbers, naming, first_primitive) for side in (left, right)]
         special = _declare(session, naming, prime, numbers)
-    except Unnamed as missing:
+    except (Unnamed, Unfit) as missing:
         return Decision("unknown", f"{missing} is not known", str(missing))
+    except WrongPage as page:
+        message = f"the class transgresses by d_{page.wanted}, and d_{page.written} is written"
+        return Decision("false", message, name="wrong-page")
     surfaces = [to_surface(side, numbers) for side in sides]
     if surfaces[0] is None or surfaces[1] is None:
         return Decision("unknown", "symbols stand in it")
     span = (left.at.start, right.at.end)
     statement = sf.RelationStatement((surfaces[0], surfaces[1]), span)
     outcome = session.answer(statement, span)
-    if naming.given and not special:
+    classes = frozenset(name.spelling for side in (left, right) for name in names_of(side))
+    if classes and not special:
         special = _circumstances(left, right, known)
+    if not special and other_rules(known, classes):
+        special = "the draft has rules for its classes that are not worked in"
     return _read(outcome, session, statement, special, why)
+
+
+def _prepared(side: Sum, known: Known, numbers: Mapping[str, int], naming: Naming, first_primitive: int) -> Sum:
+    """A side with rules and conventions worked in, and the names changed."""
+
+    def degree(name: ClassName) -> int:
+        fact = naming.fact(name)
+        value = fact.degree.at(numbers) if fact.degree is not None else None
+        if not isinstance(value, int):
+            raise Unnamed(f"the degree of {name.spelling}")
+        return value
+
+    tree = Transgression(known, numbers, degree).worked_in(side) if known.rules else side
+    return naming.renamed(conventional(tree, known, numbers, first_primitive))
 
 
 def _circumstances(left: Sum, right: Sum, known: Known) -> str:
@@ -143,6 +203,7 @@ def _circumstances(left: Sum, right: Sum, known: Known) -> str:
 def _declare(session: Desk, naming: Naming, prime: int, numbers: Mapping[str, int]) -> str:
     """Puts the classes of a statement into the scope; says why they may be more special than they look."""
     special = ""
+    free = killed(naming.known)
     for (spelling, _), (letter, name) in naming.given.items():
         fact = naming.fact(name)
         assert fact.degree is not None
@@ -152,6 +213,8 @@ def _declare(session: Desk, naming: Naming, prime: int, numbers: Mapping[str, in
         if not 1 <= degree <= HIGHEST:
             raise Unnamed(f"a degree of {spelling} between 1 and {HIGHEST}")
         order = _order(fact, spelling, numbers)
+        if order == 1 and name.spelling in free:
+            order = KILLED
         index = int(spelling.partition("_")[2]) if spelling.partition("_")[2].isdigit() else None
         shown = spelling.rstrip("'") if index is None else name.letter
         of = Class(shown, index, name.primes, degree, order)
