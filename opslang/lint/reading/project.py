@@ -22,7 +22,7 @@ _MAGIC = re.compile(r"^\s*%+\s*!\s*TEX\s+root\s*=\s*(.+?)\s*$", re.IGNORECASE | 
 _SUBFILE = re.compile(r"^[^%\n]*\\documentclass\s*\[([^\]\n]+)\]\s*\{subfiles\}", re.MULTILINE)
 _DEFINES = re.compile(r"\\(?:newcommand|def|DeclareMathOperator|let|renewcommand)\b")
 _HEADING = re.compile(r"\\(?:chapter|section|begin)\b")
-_DRAWN = re.compile(r"^[^%\n]*?\\(?:input|include|subfile)\s*\{?\s*([^\s{}%]+)", re.MULTILINE)
+_DRAWN = re.compile(r"\\(?:input|include|subfile)\s*\{?\s*([^\s{}%]+)")
 
 
 def decode(data: bytes, name: str, path: str = "") -> File:
