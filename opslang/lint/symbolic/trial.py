@@ -108,7 +108,8 @@ def tried(statement: Statement, known: Known, domain: tuple[Condition, ...], mos
     for number, given in enumerate(_grid(symbols, domain, primes)):
         values = {name: value for name, value in given.items() if name != "p" or known.prime is None}
         here = _with_degrees(evolve(known, prime=given["p"]), unknown, number)
-        decision = decide(left, right, here, given)
+        lengths = {f"|{name}|": _degree(here, name) for name in unknown}
+        decision = decide(left, right, here, {**given, **lengths})
         answer = "false" if decision.certainly_false else decision.answer
         if answer in ("true", "false"):
             degrees = [(f"|{name}|", _degree(here, name)) for name in unknown]

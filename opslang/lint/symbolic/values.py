@@ -9,7 +9,7 @@ from collections.abc import Callable, Mapping
 from fractions import Fraction
 from math import ceil, comb, factorial, floor
 
-from opslang.lint.model import Index, spelled
+from opslang.lint.model import ClassName, Group, Index, Sum, spelled
 from opslang.lint.symbolic.polynomial import Polynomial, Value
 
 Length = Callable[[object], "Polynomial | None"]
@@ -28,7 +28,7 @@ def value_of(index: Index, values: Mapping[str, int]) -> Value | None:
     if kind == "name":
         return values.get(str(parts[0]))
     if kind in ("length", "dots", "sigma"):
-        return values.get(spelled(index)) if kind == "length" else None
+        return values.get(f"|{_of_class(parts[0])}|") if kind == "length" else None
     numbers: list[Value] = []
     for part in parts:
         if isinstance(part, Index):
@@ -37,6 +37,18 @@ def value_of(index: Index, values: Mapping[str, int]) -> Value | None:
                 return None
             numbers.append(number)
     return _combined(kind, numbers, parts)
+
+
+def _of_class(body: object) -> str:
+    """The spelling of a lone class between bars; an index as it is."""
+    if isinstance(body, Index):
+        return spelled(body)
+    if isinstance(body, Sum) and len(body.terms) == 1 and len(body.terms[0][1].factors) == 1:
+        factor = body.terms[0][1].factors[0]
+        if isinstance(factor, Group):
+            return _of_class(factor.body)
+        return factor.spelling if isinstance(factor, ClassName) else ""
+    return ""
 
 
 def _combined(kind: str, numbers: list[Value], parts: tuple[object, ...]) -> Value | None:
