@@ -35,7 +35,8 @@ __all__ = [
 
 
 class OpslangError(ValueError):
-    """What is wrong with an input: `name` is the diagnostic's name, `line` and `column` its place (from 1), in the text given."""
+    """What is wrong with an input: `name` is the diagnostic's name, `line` and `column` its place (from 1), in the
+    text given."""
 
     def __init__(self, name: str, message: str, line: int, column: int, shown: str) -> None:
         super().__init__(shown)
@@ -47,7 +48,8 @@ class OpslangError(ValueError):
 
 @frozen
 class Factor:
-    """A word on a class, to a power; `name` is None in an operation.  The degree includes the power, the excess is the word's."""
+    """A word on a class, to a power; `name` is None in an operation.  The degree includes the power, the excess is
+    the word's."""
 
     word: tuple[tuple[str, int], ...]
     name: str | None
@@ -58,7 +60,8 @@ class Factor:
 
 @frozen
 class Term:
-    """A coefficient 1 … p-1 and factors; the excess is None unless the term is one word on one class to the first power."""
+    """A coefficient 1 … p-1 and factors; the excess is None unless the term is one word on one class to the first
+    power."""
 
     coefficient: int
     factors: tuple[Factor, ...]
@@ -85,7 +88,7 @@ class Normal:
 
     @property
     def sort(self) -> str:
-        """"operation" or "class"."""
+        """ "operation" or "class"."""
         return "operation" if isinstance(self.element, OperationElement) else "class"
 
     @property
@@ -129,7 +132,9 @@ def _term(element: Element, term: Any, coefficient: int) -> Term:
     if isinstance(element, OperationElement):
         letters = tuple([(head, i) for head, i in word_letters(term, p)])
         degree = term_degree(term, p, True)
-        return Term(coefficient, (Factor(letters, None, 1, degree, word_excess(term, p)),), degree, word_excess(term, p))
+        return Term(
+            coefficient, (Factor(letters, None, 1, degree, word_excess(term, p)),), degree, word_excess(term, p)
+        )
     factors = []
     for (generator, power), row in zip(term, monomial_record(term, 1, p)["factors"]):
         letters = tuple([(head, i) for head, i in row["word"]])
@@ -139,7 +144,8 @@ def _term(element: Element, term: Any, coefficient: int) -> Term:
 
 @frozen
 class Comparison:
-    """A decided relation: the verdict "true", "false" or "undecided", the sides in canonical form, left minus right, and why."""
+    """A decided relation: the verdict "true", "false" or "undecided", the sides in canonical form, left minus right,
+    and why."""
 
     verdict: str
     sides: tuple[Normal, ...]
@@ -180,7 +186,9 @@ class Parsed:
 class Script:
     """A script that grows line by line: prime, space and declarations hold from one call to the next."""
 
-    def __init__(self, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT) -> None:
+    def __init__(
+        self, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT
+    ) -> None:
         self._session = Session(2, limit)
         if prime != 2:
             self.run(f"prime {prime}")
@@ -204,7 +212,13 @@ class Script:
         outcome = self._session.run(Source("input", prefix + text.strip()))
         _raise(outcome.source, outcome.error)
         if outcome.kind != kind:
-            raise OpslangError("kind", f"this is a {outcome.kind}, and a {kind} is needed here", 1, 1, f"{text!r} is a {outcome.kind}, not a {kind}")
+            raise OpslangError(
+                "kind",
+                f"this is a {outcome.kind}, and a {kind} is needed here",
+                1,
+                1,
+                f"{text!r} is a {outcome.kind}, not a {kind}",
+            )
         return outcome
 
     def normalise(self, text: str) -> Normal:
@@ -222,7 +236,9 @@ class Script:
         outcome = self._one(text, "derivation", "" if text.lstrip().startswith("why ") else "why ")
         rows = [row for derivation in outcome.derivations for row in lines(derivation, "text", 100)]
         tex = "\n".join(align(derivation) for derivation in outcome.derivations)
-        return Explanation(tuple(rows), tex, outcome.items or (), _comparison(outcome) if outcome.sides else _normal(outcome))
+        return Explanation(
+            tuple(rows), tex, outcome.items or (), _comparison(outcome) if outcome.sides else _normal(outcome)
+        )
 
     def parse(self, text: str) -> Parsed:
         """A statement, read and lowered but not computed."""
@@ -266,10 +282,14 @@ def _plain(element: Element) -> Normal:
 
 def _comparison(outcome: Outcome) -> Comparison:
     assert outcome.element is not None
-    return Comparison(outcome.verdict, tuple([_plain(side) for side in outcome.sides]), _plain(outcome.element), outcome.message)
+    return Comparison(
+        outcome.verdict, tuple([_plain(side) for side in outcome.sides]), _plain(outcome.element), outcome.message
+    )
 
 
-def normalise(text: str, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT) -> Normal:
+def normalise(
+    text: str, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT
+) -> Normal:
     """The canonical form of an expression.
 
     `on` names the space, as in "K(Z/2, 3)"; `let` declares classes, as in ["x, y in H^2", "z in H^3(X; Z/4)"]; `limit`
@@ -278,12 +298,16 @@ def normalise(text: str, prime: int = 2, on: str | None = None, let: Iterable[st
     return Script(prime, on, let, limit).normalise(text)
 
 
-def compare(text: str, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT) -> Comparison:
+def compare(
+    text: str, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT
+) -> Comparison:
     """The verdict on a relation "a = b"; arguments as for `normalise`."""
     return Script(prime, on, let, limit).compare(text)
 
 
-def explain(text: str, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT) -> Explanation:
+def explain(
+    text: str, prime: int = 2, on: str | None = None, let: Iterable[str] = (), limit: int = DEFAULT_LIMIT
+) -> Explanation:
     """The derivation of an expression or a relation; arguments as for `normalise`."""
     return Script(prime, on, let, limit).explain(text)
 

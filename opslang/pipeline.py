@@ -7,25 +7,25 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from itertools import pairwise
-from typing import TYPE_CHECKING, Any, Literal, cast
+from typing import TYPE_CHECKING, Any, cast
 
 from attrs import evolve
 
 from opslang.ground.grading import degree
 from opslang.ground.source import Source, Span
 from opslang.ir.measure import element_degree, element_excess
-from opslang.ir.outcome import Kind, Link, Outcome, Verdict
 from opslang.ir.order import word_key
-from opslang.ir.tree import ClassElement, Element
+from opslang.ir.outcome import Kind, Link, Outcome, Verdict
+from opslang.ir.tree import ClassElement, Element, OperationElement
 from opslang.meaning import statements
 from opslang.meaning.indices import number
 from opslang.meaning.lower import Lowering
 from opslang.meaning.scope import Scope, spelled
 from opslang.meaning.spaces import space_value
-from opslang.meaning.value import Value, as_sort
+from opslang.meaning.value import Sort, Value, as_sort
+from opslang.report.diagnostic import Diagnostic, Refusal, error, note
 from opslang.spaces.family import NotKnown
 from opslang.spaces.space import SpaceValue, localise
-from opslang.report.diagnostic import Diagnostic, Refusal, error, note
 from opslang.syntax import surface as sf
 from opslang.syntax.parser import parse
 from opslang.tables.bockstein import Undefined
@@ -111,7 +111,9 @@ class Session:
     def _failed(self, source: Source, span: Span, kind: Kind, diagnostics: tuple[Diagnostic, ...]) -> Outcome:
         first = next((d for d in diagnostics if d.severity == "error"), None)
         name, message = (first.name, first.message) if first else (None, None)
-        return Outcome(source, span, kind, "error", self.scope.prime, name=name, message=message, diagnostics=diagnostics)
+        return Outcome(
+            source, span, kind, "error", self.scope.prime, name=name, message=message, diagnostics=diagnostics
+        )
 
     # --- statements -----------------------------------------------------------------------------
 
@@ -202,7 +204,7 @@ class Session:
 
     def _sides(self, statement: sf.RelationStatement, lowering: Lowering) -> tuple[Value, ...]:
         values = [lowering.sum(side) for side in statement.sides]
-        sort = next((value.sort for value in values if value.sort != "scalar"), "class")
+        sort: Sort = next((value.sort for value in values if value.sort != "scalar"), "class")
         for value, side in zip(values, statement.sides):
             if value.sort not in (sort, "scalar"):
                 first, second = ("an operation", "a class") if sort == "operation" else ("a class", "an operation")
@@ -253,19 +255,27 @@ class Session:
         elements = tuple([self.normal(value) for value in values])
         return elements, tuple([subtract(left, right) for left, right in pairwise(elements)])
 
-    def _compare(self, values: tuple[Value, ...], difference: Element, at: int) -> tuple[Verdict, tuple[str, str] | None]:
+    def _compare(
+        self, values: tuple[Value, ...], difference: Element, at: int
+    ) -> tuple[Verdict, tuple[str, str] | None]:
         """The verdict on one equation, and the name and the words of what is to be said first."""
         left, right = values[at], values[at + 1]
         apart = left.degree is not None and right.degree is not None and left.degree != right.degree
         if apart and not _bare_zero(left) and not _bare_zero(right):
-            return "false", ("degrees-differ", f"the right side has degree {right.degree}, the left side degree {left.degree}")
+            return "false", (
+                "degrees-differ",
+                f"the right side has degree {right.degree}, the left side degree {left.degree}",
+            )
         if not difference.terms:
             return "true", None
         if self.engine().modulo and isinstance(difference, ClassElement):
             classes = left.classes | right.classes
             decided = within(self.engine(), difference, tuple(classes), max(left.top, right.top))
             if decided is None:
-                return "undecided", ("modulo-lower-bocksteins", "equal at most modulo the images of the lower Bocksteins; not decided")
+                return "undecided", (
+                    "modulo-lower-bocksteins",
+                    "equal at most modulo the images of the lower Bocksteins; not decided",
+                )
             return ("true" if decided else "false"), None
         return "false", None
 
@@ -302,7 +312,14 @@ class Session:
     def _space_of(self, space: sf.Space | None, span: Span) -> SpaceValue:
         found = self.scope.space if space is None else space_value(space, self.scope)
         if found is None:
-            raise Refusal(error("no-space", "no space is named, and none is chosen", span, "write one in the brackets, or `on K(Z/2, 3)` before"))
+            raise Refusal(
+                error(
+                    "no-space",
+                    "no space is named, and none is chosen",
+                    span,
+                    "write one in the brackets, or `on K(Z/2, 3)` before",
+                )
+            )
         return found
 
     def _basis(self, statement: sf.BasisStatement, blank: Outcome) -> Outcome:
@@ -324,7 +341,9 @@ class Session:
         engine = self.engine()
         engine.start()
         if to < 0:
-            raise Refusal(error("index-range", f"a series goes to a degree of at least 0, and here it is {to}", statement.span))
+            raise Refusal(
+                error("index-range", f"a series goes to a degree of at least 0, and here it is {to}", statement.span)
+            )
         engine.budget.spend(to * to // 64)
         found = tuple(series(self.scope.prime, localise(space, self.scope.prime), to))
         return evolve(blank, space=space.text, items=found)
@@ -368,7 +387,7 @@ def _kind(statement: sf.Statement) -> Kind:
     return "declaration"
 
 
-def as_sort_or_class(value: Value, sort: Literal["scalar", "operation", "class"], span: Span) -> Value:
+def as_sort_or_class(value: Value, sort: Sort, span: Span) -> Value:
     """A value, scalars lifted to the sort of their neighbours; to a class where they stand alone."""
     return as_sort(value, "class" if sort == "scalar" else sort, span)
 
@@ -387,4 +406,4 @@ def subtract(left: Element, right: Element) -> Element:
         terms[term] = (terms.get(term, 0) - c) % p
     kept = [(term, c) for term, c in terms.items() if c]
     kept.sort(key=lambda pair: (degree(pair[0], p), word_key(pair[0], p)))
-    return evolve(left, terms=tuple(kept))
+    return OperationElement(p, tuple(kept))

@@ -46,7 +46,7 @@ class Class:
 
 
 def _span() -> Span:
-    return field(default=HERE, eq=False, repr=False)  # type: ignore[no-any-return]
+    return field(default=HERE, eq=False, repr=False)
 
 
 # --- operations ---------------------------------------------------------------------------------

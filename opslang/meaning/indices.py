@@ -47,5 +47,7 @@ def number(index: Index, span: Span) -> int:
 def bounded(n: int, span: Span) -> int:
     """n itself; a Refusal where it is absurdly large."""
     if n.bit_length() > MOST_BITS:
-        raise Refusal(error("index-too-large", f"a number of {n.bit_length()} bits stands here; the most is {MOST_BITS}", span))
+        raise Refusal(
+            error("index-too-large", f"a number of {n.bit_length()} bits stands here; the most is {MOST_BITS}", span)
+        )
     return n

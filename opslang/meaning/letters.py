@@ -1,6 +1,7 @@
 """Single operations, from surface to values: letters, multi-indices, Bocksteins, primitives.
 
-A *marker* is what is not an element of the algebra: a total operation, or beta_k with k >= 2.  It may only be applied to a class.
+A *marker* is what is not an element of the algebra: a total operation, or beta_k with k >= 2.  It may only be
+applied to a class.
 """
 
 from __future__ import annotations
@@ -70,12 +71,21 @@ def _squares_or_powers(factor: sf.Operation, prime: int) -> Value | Marker:
 
 def _read_squares_or_powers(factor: sf.Operation, head: str, prime: int) -> Value | Marker:
     if head == "Sq" and prime != 2:
-        raise Refusal(error("prime-of-operation", f"Sq is an operation at the prime 2, and the prime is {prime}", factor.span, "write P^i or beta"))
+        raise Refusal(
+            error(
+                "prime-of-operation",
+                f"Sq is an operation at the prime 2, and the prime is {prime}",
+                factor.span,
+                "write P^i or beta",
+            )
+        )
     if head == "P" and prime == 2:
         what = "P^i is an operation at odd primes, and the prime is 2"
         if not factor.indices:
-            what = "the total power P is an operation at odd primes, and the prime is 2; Pontryagin squares are not yet supported"
-        raise Refusal(error("prime-of-operation", what, factor.span, "write Sq^i, or choose an odd prime with `prime 3`"))
+            what = "the total power P is for odd primes, and the prime is 2; Pontryagin squares are not yet supported"
+        raise Refusal(
+            error("prime-of-operation", what, factor.span, "write Sq^i, or choose an odd prime with `prime 3`")
+        )
     if not factor.indices:
         return Marker(0, factor.span)
     indices = [number(index, factor.span) for index in factor.indices]

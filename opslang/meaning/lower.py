@@ -14,7 +14,19 @@ from opslang.ir import tree as ir
 from opslang.meaning.indices import bounded, number
 from opslang.meaning.letters import Marker, letter
 from opslang.meaning.scope import Key, Scope, spelled
-from opslang.meaning.value import NONE, Sort, Value, as_sort, cls, degrees_of, multiple, operation, polynomial_value, scalar, total
+from opslang.meaning.value import (
+    NONE,
+    Sort,
+    Value,
+    as_sort,
+    cls,
+    degrees_of,
+    multiple,
+    operation,
+    polynomial_value,
+    scalar,
+    total,
+)
 from opslang.report.diagnostic import Diagnostic, Refusal, error, note, warning
 from opslang.spaces.family import NotKnown
 from opslang.spaces.space import Localised
@@ -43,7 +55,7 @@ class Lowering:
         """A sum.  All terms must be of one sort; terms of different degrees are warned about."""
         terms = [(sign, self.product(product)) for sign, product in body.terms]
         sorts: list[Sort] = [value.sort for _, value in terms]
-        sort = next((s for s in sorts if s != "scalar"), "scalar")
+        sort: Sort = next((s for s in sorts if s != "scalar"), "scalar")
         if sort == "scalar":
             return scalar(sum([sign * value.number for sign, value in terms]))
         for (_, product), other in zip(body.terms, sorts):
@@ -55,7 +67,9 @@ class Lowering:
         degrees = degrees_of(lifted)
         if len(degrees) > 1 and None not in degrees and not mixed_degrees:
             listed = ", ".join(str(d) for d in sorted(d for d in degrees if d is not None))
-            self.diagnostics.append(warning("inhomogeneous-sum", f"the terms of this sum have different degrees: {listed}", body.span))
+            self.diagnostics.append(
+                warning("inhomogeneous-sum", f"the terms of this sum have different degrees: {listed}", body.span)
+            )
         return total(lifted, sort, self.scope.prime, body.span)
 
     def _mixed(self, body: sf.Sum, sorts: list[Sort], first: Sort, span: Span) -> NoReturn:
@@ -107,7 +121,9 @@ class Lowering:
             pending = []
         return self._assembled(body, coefficient, pending, cups, saw_scalar)
 
-    def _assembled(self, body: sf.Product, coefficient: int, pending: Pending, cups: list[Value], saw_scalar: bool) -> Value:
+    def _assembled(
+        self, body: sf.Product, coefficient: int, pending: Pending, cups: list[Value], saw_scalar: bool
+    ) -> Value:
         if not cups:
             if not pending:
                 return scalar(coefficient)
@@ -125,7 +141,9 @@ class Lowering:
 
     def _check_glue(self, body: sf.Product, at: int, pending: bool, cups: bool) -> None:
         if at and body.glues[at] == "cross" and (pending or not cups):
-            refuse("sorts-differ", "⊗ joins classes, and an operation stands at one of its sides", body.factors[at].span)
+            refuse(
+                "sorts-differ", "⊗ joins classes, and an operation stands at one of its sides", body.factors[at].span
+            )
 
     def _ambiguous(self, acted: sf.Factor, factor: sf.Factor) -> None:
         inner = f"{self._quote(acted.span)} {self._quote(factor.span)}"
@@ -159,7 +177,7 @@ class Lowering:
     def _needs_class(self, marker: Marker) -> NoReturn:
         refuse(
             "not-in-the-algebra",
-            f"{marker.name} is not an element of the Steenrod algebra: it may be applied to a class, and to nothing else",
+            f"{marker.name} is not in the Steenrod algebra: it may be applied to a class, and to nothing else",
             marker.span,
             "write the class at its right",
         )
@@ -222,7 +240,10 @@ class Lowering:
     def _cup(self, cups: list[Value], span: Span) -> Value:
         degree = _degree_sum(cups)
         top = bounded(sum(value.top for value in cups), span)
-        return cls(ir.Cup(tuple([value.cls for value in cups]), degree, top, span), NONE.union(*[value.classes for value in cups]))
+        return cls(
+            ir.Cup(tuple([value.cls for value in cups]), degree, top, span),
+            NONE.union(*[value.classes for value in cups]),
+        )
 
     # --- factors --------------------------------------------------------------------------------
 
@@ -261,7 +282,13 @@ class Lowering:
             return self._class_of_space(name, key, here)
         close = self.scope.like(key)
         how = f"declare it first: let {spelled(key)} in H^n"
-        refuse("unknown-name", f"{spelled(key)} is not declared", name.span, f"did you mean {close}? or {how}" if close else how, close)
+        refuse(
+            "unknown-name",
+            f"{spelled(key)} is not declared",
+            name.span,
+            f"did you mean {close}? or {how}" if close else how,
+            close,
+        )
 
     def _class_of_space(self, name: sf.Name, key: Key, here: Localised) -> Value:
         """A name that a named factor of the current space has."""
@@ -271,10 +298,20 @@ class Lowering:
         except NotKnown as reason:
             refuse("not-known", str(reason), name.span)
         if len(found) > 1:
-            refuse("ambiguous-class", f"several factors of the space have a class {spelled(key)}", name.span, "name the classes: RP^5(a) x RP^2(b)")
+            refuse(
+                "ambiguous-class",
+                f"several factors of the space have a class {spelled(key)}",
+                name.span,
+                "name the classes: RP^5(a) x RP^2(b)",
+            )
         if not found:
             known = "; ".join(f"{family.text}: {family.names(prime)}" for family in here.families)
-            refuse("no-such-class", f"the space has no class {spelled(key)}, and none was declared", name.span, f"its classes: {known}")
+            refuse(
+                "no-such-class",
+                f"the space has no class {spelled(key)}, and none was declared",
+                name.span,
+                f"its classes: {known}",
+            )
         if found[0]:
             return polynomial_value(found[0], prime, name.span)
         degree = next(f.name_degree(prime, key[0], key[1]) for f in here.families if f.named(prime, *key) is not None)
@@ -288,7 +325,11 @@ class Lowering:
             self._no_fundamental(factor, degree)
         if of is None:
             self.diagnostics.append(
-                note("zero-at-the-prime", f"the group of this class has no {self.scope.prime}-part, so the class is 0 at the prime {self.scope.prime}", factor.span)
+                note(
+                    "zero-at-the-prime",
+                    f"the group of this class has no {self.scope.prime}-part, so the class is 0",
+                    factor.span,
+                )
             )
             return cls(ir.ClassSum((), degree, degree, factor.span), NONE)
         return cls(ir.Fundamental(of, degree, degree, factor.span), frozenset((of,)))
@@ -299,9 +340,19 @@ class Lowering:
         if here is None or self.scope.space is None:
             if degree < 1:
                 refuse("degree-range", f"iota_n needs n >= 1, and here n is {degree}", factor.span)
-            refuse("no-such-class", f"{name} belongs to a product of spaces, and no space is chosen", factor.span, "choose one: on K(Z/2, 3) x K(Z/2, 3)")
+            refuse(
+                "no-such-class",
+                f"{name} belongs to a product of spaces, and no space is chosen",
+                factor.span,
+                "choose one: on K(Z/2, 3) x K(Z/2, 3)",
+            )
         known = ", ".join(spelled(("iota", of.degree, of.primes)) for of in here.classes) or "none at this prime"
-        refuse("no-such-class", f"{self.scope.space.text} has no class {name}", factor.span, f"its fundamental classes: {known}")
+        refuse(
+            "no-such-class",
+            f"{self.scope.space.text} has no class {name}",
+            factor.span,
+            f"its fundamental classes: {known}",
+        )
 
     def _power(self, factor: sf.Power) -> Value:
         exponent = number(factor.exponent, factor.span)
@@ -325,7 +376,11 @@ class Lowering:
         if value.sort == "scalar":
             return scalar(value.number)
         if value.sort == "class":
-            refuse("sorts-differ", "chi is the conjugation of the Steenrod algebra, and a class stands in its brackets", factor.body.span)
+            refuse(
+                "sorts-differ",
+                "chi is the conjugation of the Steenrod algebra, and a class stands in its brackets",
+                factor.body.span,
+            )
         return operation(ir.Chi(value.op, value.degree, factor.span), value.top)
 
 

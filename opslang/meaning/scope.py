@@ -6,9 +6,9 @@ from functools import lru_cache
 
 from attrs import define, field
 
-from opslang.spaces.space import Localised, SpaceValue, localise
 from opslang.ir.tree import Class
 from opslang.meaning.value import Value
+from opslang.spaces.space import Localised, SpaceValue, localise
 
 Key = tuple[str, int | None, int]
 """Letter, index and number of primes of a name."""
@@ -28,7 +28,8 @@ def universal(degree: int) -> Class:
 
 @define
 class Scope:
-    """The prime, the current space and the names declared so far.  `names` holds a class, or an abbreviation's value."""
+    """The prime, the current space and the names declared so far.  `names` holds a class, or an abbreviation's
+    value."""
 
     prime: int = 2
     space: SpaceValue | None = None

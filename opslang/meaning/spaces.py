@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from opslang.spaces.family import NotKnown
-from opslang.spaces.space import WORDS, AnyFactor, Factor, NamedFactor, SpaceValue, class_order
 from opslang.meaning.indices import number
 from opslang.meaning.scope import Scope
 from opslang.report.diagnostic import Refusal, error
+from opslang.spaces.family import NotKnown
+from opslang.spaces.space import WORDS, AnyFactor, Factor, NamedFactor, SpaceValue, class_order
 from opslang.syntax import surface as sf
 
 MOST_FACTORS = 1_000
@@ -90,19 +90,33 @@ def _named_factor(part: sf.NamedSpace, scope: Scope) -> NamedFactor:
         elif isinstance(argument, sf.Name) and argument.index is None and not argument.primes:
             letters.append(argument.letter)
         else:
-            raise Refusal(error("space-arguments", f"{part.name} takes a number or the letters of its classes in brackets", part.span))
+            raise Refusal(
+                error(
+                    "space-arguments",
+                    f"{part.name} takes a number or the letters of its classes in brackets",
+                    part.span,
+                )
+            )
     if part.power is not None:
         numbers.append(part.power)
     projective = part.name in ("RP", "CP", "HP")
     most = 2 if part.name == "lens" else 1 if projective else 0
     if len(numbers) > 1 or len(letters) > most or (projective and part.power is None and numbers):
-        how = f"{part.name}^n, or {part.name}^n(a)" if projective else "lens(m)" if part.name == "lens" else f"{part.name}, or {part.name}(n)"
+        how = (
+            f"{part.name}^n, or {part.name}^n(a)"
+            if projective
+            else "lens(m)"
+            if part.name == "lens"
+            else f"{part.name}, or {part.name}(n)"
+        )
         raise Refusal(error("space-arguments", f"{part.name} is written {how}", part.span))
     size = number(numbers[0], part.span) if numbers else None
     if part.name == "lens" and not size:
         raise Refusal(error("space-arguments", "lens takes the order of the group in brackets: lens(4)", part.span))
     if size is not None and (size < 0 or (size < 1 and not projective)):
-        raise Refusal(error("degree-range", f"the number of {part.name} is at least 1, and here it is {size}", part.span))
+        raise Refusal(
+            error("degree-range", f"the number of {part.name} is at least 1, and here it is {size}", part.span)
+        )
     return NamedFactor(part.name, size, tuple(letters))
 
 

@@ -24,7 +24,13 @@ def prime(statement: sf.PrimeStatement, scope: Scope) -> list[Diagnostic]:
     if not is_prime(p):
         raise Refusal(error("not-a-prime", f"{p} is not a prime", statement.span))
     if scope.set_prime(p):
-        return [note("classes-dropped", f"the prime is now {p}: the classes and abbreviations declared so far are dropped", statement.span)]
+        return [
+            note(
+                "classes-dropped",
+                f"the prime is now {p}: the classes and abbreviations declared so far are dropped",
+                statement.span,
+            )
+        ]
     return []
 
 
@@ -52,7 +58,9 @@ def declare(statement: sf.DeclareStatement, scope: Scope) -> list[Diagnostic]:
     """`let x, y in H^n(X; G)`."""
     degree = number(statement.degree, statement.span)
     if degree < 1:
-        raise Refusal(error("degree-range", f"a declared class has degree at least 1, and here it is {degree}", statement.span))
+        raise Refusal(
+            error("degree-range", f"a declared class has degree at least 1, and here it is {degree}", statement.span)
+        )
     order = coefficient_order(statement.coefficients, scope.prime)
     found: list[Diagnostic] = []
     values: dict[Key, Value] = {}
@@ -62,7 +70,13 @@ def declare(statement: sf.DeclareStatement, scope: Scope) -> list[Diagnostic]:
         if key in values:
             raise Refusal(error("declared-twice", f"{spelled(key)} stands twice in this declaration", name.span))
         if order is None:
-            found.append(note("zero-at-the-prime", f"the coefficients have no {scope.prime}-part, so {spelled(key)} is 0", name.span))
+            found.append(
+                note(
+                    "zero-at-the-prime",
+                    f"the coefficients have no {scope.prime}-part, so {spelled(key)} is 0",
+                    name.span,
+                )
+            )
             values[key] = cls(ir.ClassSum((), degree, degree, name.span), NONE)
             continue
         of = Class(name.letter, index, name.primes, degree, order)
@@ -81,9 +95,17 @@ def abbreviate(statement: sf.AbbreviateStatement, scope: Scope, lowering: Loweri
     return value
 
 
-def _put(scope: Scope, key: Key, value: Value, statement: sf.DeclareStatement | sf.AbbreviateStatement) -> list[Diagnostic]:
+def _put(
+    scope: Scope, key: Key, value: Value, statement: sf.DeclareStatement | sf.AbbreviateStatement
+) -> list[Diagnostic]:
     known = scope.names.get(key)
     scope.names[key] = value
     if known is not None and known != value:
-        return [warning("redeclared", f"{spelled(key)} was declared before; from here on it is what this line says", statement.span)]
+        return [
+            warning(
+                "redeclared",
+                f"{spelled(key)} was declared before; from here on it is what this line says",
+                statement.span,
+            )
+        ]
     return []

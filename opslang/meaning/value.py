@@ -88,9 +88,13 @@ def as_sort(value: Value, sort: Sort, span: Span) -> Value:
         return value
     if sort == "operation":
         one: ir.Op = ir.Composite((), 0, span)
-        return operation(one if value.number == 1 else ir.OpSum(((value.number, one),) if value.number else (), 0, span), 0)
+        return operation(
+            one if value.number == 1 else ir.OpSum(((value.number, one),) if value.number else (), 0, span), 0
+        )
     unit: ir.Cls = ir.Unit(0, 0, span)
-    return cls(unit if value.number == 1 else ir.ClassSum(((value.number, unit),) if value.number else (), 0, 0, span), NONE)
+    return cls(
+        unit if value.number == 1 else ir.ClassSum(((value.number, unit),) if value.number else (), 0, 0, span), NONE
+    )
 
 
 def multiple(value: Value, number: int, prime: int, span: Span) -> Value:

@@ -89,14 +89,20 @@ def record(outcome: Outcome, file: str) -> Record:
     }
     if outcome.links:
         found["links"] = [
-            {"verdict": link.verdict, "terms": terms(link.difference), "text": element_text(link.difference)} for link in outcome.links
+            {"verdict": link.verdict, "terms": terms(link.difference), "text": element_text(link.difference)}
+            for link in outcome.links
         ]
     if outcome.items is not None:
         found["items"] = _items(outcome)
     wrong = outcome.error
     if wrong is not None:
         place = outcome.source.place(wrong.span)
-        found |= {"line": place.line, "column": place.column, "end_line": place.end_line, "end_column": place.end_column}
+        found |= {
+            "line": place.line,
+            "column": place.column,
+            "end_line": place.end_line,
+            "end_column": place.end_column,
+        }
     return found
 
 

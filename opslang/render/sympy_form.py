@@ -25,11 +25,14 @@ def to_sympy(element: Element) -> Any:
     """The element as a sympy expression.  ModuleNotFoundError where sympy is not installed."""
     from sympy import Add, Integer, Mul, Symbol
 
+    p = element.prime
     terms = []
-    for term, coefficient in element.terms:
-        if isinstance(element, OperationElement):
-            factors = [Symbol(letter_text(token, element.prime, "latex"), commutative=False) for token in term]
-        else:
-            factors = [_generator(generator, element.prime) ** power for generator, power in term]  # type: ignore[misc, str-unpack]
-        terms.append(Mul(Integer(coefficient), *factors))
+    if isinstance(element, OperationElement):
+        for word, coefficient in element.terms:
+            letters = [Symbol(letter_text(token, p, "latex"), commutative=False) for token in word]
+            terms.append(Mul(Integer(coefficient), *letters))
+    else:
+        for monomial, coefficient in element.terms:
+            factors = [_generator(generator, p) ** power for generator, power in monomial]
+            terms.append(Mul(Integer(coefficient), *factors))
     return Add(*terms)

@@ -36,7 +36,13 @@ def letter_text(token: int, prime: int, notation: Notation) -> str:
     if token < 0 or (token == 0 and prime != 2):
         name = {"text": "beta", "unicode": "β", "latex": r"\beta"}[notation]
         return name + subscript(-token, notation) if token else name
-    head = ("Sq" if notation != "latex" else r"\mathrm{Sq}") if prime == 2 else "P" if notation != "latex" else r"\mathcal{P}"
+    head = (
+        ("Sq" if notation != "latex" else r"\mathrm{Sq}")
+        if prime == 2
+        else "P"
+        if notation != "latex"
+        else r"\mathcal{P}"
+    )
     return head + superscript(token, notation)
 
 
@@ -96,10 +102,12 @@ def term_texts(element: Element, notation: Notation = "text") -> list[str]:
     """The terms of an element, each with its coefficient."""
     p = element.prime
     one: Callable[..., str] = word_text if isinstance(element, OperationElement) else monomial_text
-    return [one(term, p, notation) if c == 1 else _multiple_text(c, one(term, p, notation), notation) for term, c in element.terms]
+    return [
+        one(term, p, notation) if c == 1 else _multiple_text(c, one(term, p, notation), notation)
+        for term, c in element.terms
+    ]
 
 
 def element_text(element: Element, notation: Notation = "text") -> str:
     """An element; "0" for zero."""
     return " + ".join(term_texts(element, notation)) or "0"
-

@@ -147,7 +147,8 @@ MEANING_CODES: dict[str, Code] = {
     ),
     "not-known": Code(
         "outside what is known of the space",
-        "The space is known, but not what is asked of it: an operation on a class on which it was not given, a rank or a degree out of "
+        "The space is known, but not what is asked of it: an operation on a class on which "
+        "it was not given, a rank or a degree out of "
         "range, a bundle without a Thom class.",
         "on BSpin(10)",
     ),

@@ -1,1 +1,2 @@
-"""Floor 3: the named spaces.  One file a family; each says its classes, its relations, its operations and their source."""
+"""Floor 3: the named spaces.  One file a family; each says its classes, its relations, its operations and their
+source."""

@@ -14,13 +14,15 @@ from opslang.spaces.family import ONE, ZERO, Family, Polynomial, collected, gene
 
 
 def wu(k: int, m: int) -> list[tuple[int, int]]:
-    """The pairs (k - t, m + t) with Sq^k w_m = sum w_{k-t} w_{m+t}, for k < m: those t with C(m-k+t-1, t) odd (Wu 1950)."""
+    """The pairs (k - t, m + t) with Sq^k w_m = sum w_{k-t} w_{m+t}, for k < m: those t with C(m-k+t-1, t) odd (Wu
+    1950)."""
     return [(k - t, m + t) for t in range(k + 1) if binomial_mod(m - k + t - 1, t, 2)]
 
 
 @frozen
 class Classifying(Family):
-    """A classifying space whose ring is polynomial on classes `letter`_i of degree `step` · i, i = first … rank (None: no end)."""
+    """A classifying space whose ring is polynomial on classes `letter`_i of degree `step` · i, i = first … rank
+    (None: no end)."""
 
     group: str
     rank: int | None
@@ -85,7 +87,9 @@ class Classifying(Family):
                 for a, b in wu(k, m):
                     terms += self.product((a, b))
         elif token:
-            rows = symmetric.linear_roots(prime, token, m) if self.step == 2 else symmetric.square_roots(prime, token, m)
+            rows = (
+                symmetric.linear_roots(prime, token, m) if self.step == 2 else symmetric.square_roots(prime, token, m)
+            )
             for r, c in rows:
                 terms += [(c * one, factors) for one, factors in self.product(r)]
         return collected(terms, prime)
@@ -122,9 +126,11 @@ class Orthogonal(Classifying):
 
 @frozen
 class Pontryagin(Classifying):
-    """BO(n), BSO(n), BSpin(n) at odd p: Pontryagin classes p_i; for BSO(n), n even, the Euler class e with e^2 = p_{n/2}.
+    """BO(n), BSO(n), BSpin(n) at odd p: Pontryagin classes p_i; for BSO(n), n even, the Euler class e with e^2 =
+    p_{n/2}.
 
-    `rank` is the greatest i with p_i a generator; `euler` is the degree of e (0: none); `written` is the space's own rank.
+    `rank` is the greatest i with p_i a generator; `euler` is the degree of e (0: none); `written` is the space's own
+    rank.
     """
 
     euler: int = 0
@@ -185,5 +191,6 @@ def unitary(group: str, rank: int | None, prime: int, factor: int) -> Family:
 
 
 def symplectic(group: str, rank: int | None, prime: int, factor: int) -> Family:
-    """BSp(rank): classes q_i of degree 4i, the elementary symmetric polynomials in the x_j^2, so that q_1 restricts to x^2."""
+    """BSp(rank): classes q_i of degree 4i, the elementary symmetric polynomials in the x_j^2, so that q_1 restricts
+    to x^2."""
     return Classifying(group, rank, "q", 4, 1, factor)

@@ -1,6 +1,7 @@
 """What a named space must say of itself.  Knows classes and polynomials in them, no engine.
 
-A polynomial is a tuple of terms (coefficient, ((class, exponent), …)).  A family is a frozen value; its classes carry it
+A polynomial is a tuple of terms (coefficient, ((class, exponent), …)).  A family is a frozen value; its classes
+carry it
 in `Class.ring`, so that an engine that meets a class finds the laws that hold on it.
 """
 

@@ -1,6 +1,7 @@
 """Projective spaces and lens spaces: truncated polynomial rings.
 
-RP^n: F_2[x]/(x^{n+1}).  CP^n: F_p[y]/(y^{n+1}).  HP^n: F_p[u]/(u^{n+1}), u restricting to y^2 on CP^{2n+1}, so that P u = u (1 + u^{(p-1)/2})^2.
+RP^n: F_2[x]/(x^{n+1}).  CP^n: F_p[y]/(y^{n+1}).  HP^n: F_p[u]/(u^{n+1}), u restricting to y^2 on CP^{2n+1}, so that
+P u = u (1 + u^{(p-1)/2})^2.
 lens(m) is K(Z/m, 1): Lambda[x] tensor F_p[y] with beta_k x = y, where p^k is the p-part of m (F_2[x] where that is 2).
 Common practice; the binomials follow from the Cartan formula.
 """
@@ -26,7 +27,11 @@ class Projective(Family):
 
     @property
     def text(self) -> str:
-        return f"{self.field}P" + ("" if self.size is None else f"^{self.size}") + (f"({self.letter})" if self.named_by_user else "")
+        return (
+            f"{self.field}P"
+            + ("" if self.size is None else f"^{self.size}")
+            + (f"({self.letter})" if self.named_by_user else "")
+        )
 
     def _degree(self, prime: int) -> int:
         """The degree of the generator; 0 where there is none at the prime."""

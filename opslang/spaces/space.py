@@ -1,4 +1,5 @@
-"""Spaces as values: products of Eilenberg-MacLane spaces and of named ones, and what their cohomology is made from at a prime."""
+"""Spaces as values: products of Eilenberg-MacLane spaces and of named ones, and what their cohomology is made from
+at a prime."""
 
 from __future__ import annotations
 
@@ -23,7 +24,8 @@ class Factor:
 
 @frozen
 class NamedFactor:
-    """A named space: its word, its number (None: no end, or stable), the letters given to its classes, and the base of a Thom space."""
+    """A named space: its word, its number (None: no end, or stable), the letters given to its classes, and the base
+    of a Thom space."""
 
     word: str
     number: int | None = None
@@ -69,7 +71,8 @@ class SpaceValue:
 
 @frozen
 class Localised:
-    """A space at a prime: its fundamental classes, those names of fundamental classes that are 0 there (degree, primes), its named factors."""
+    """A space at a prime: its fundamental classes, those names of fundamental classes that are 0 there (degree,
+    primes), its named factors."""
 
     classes: tuple[Class, ...]
     vanishing: frozenset[tuple[int, int]]
@@ -109,4 +112,14 @@ def localise(space: SpaceValue, prime: int) -> Localised:
     return Localised(tuple(classes), frozenset(vanishing), tuple(families))
 
 
-__all__ = ["WORDS", "AnyFactor", "Factor", "Localised", "NamedFactor", "NotKnown", "SpaceValue", "class_order", "localise"]
+__all__ = [
+    "WORDS",
+    "AnyFactor",
+    "Factor",
+    "Localised",
+    "NamedFactor",
+    "NotKnown",
+    "SpaceValue",
+    "class_order",
+    "localise",
+]

@@ -1,8 +1,11 @@
 """BSpin at 2.  Source: Quillen 1971.
 
-H^*(BSpin) is H^*(BSO) modulo w_2, Sq^1 w_2, Sq^2 Sq^1 w_2, …: the relation of degree 2^r + 1 begins with w_{2^r+1}, so it writes
-that class through the others (w_3 = w_5 = w_9 = 0, w_17 = w_4 w_13 + w_6 w_11 + w_7 w_10, …).  H^*(BSpin(n)) has the relations up to
-Sq^{2^{h-2}} … Sq^1 w_2 and one more polynomial generator w_{2^h}(Delta), of degree 2^h, which is called Delta_{2^h} here;
+H^*(BSpin) is H^*(BSO) modulo w_2, Sq^1 w_2, Sq^2 Sq^1 w_2, …: the relation of degree 2^r + 1 begins with w_{2^r+1},
+so it writes
+that class through the others (w_3 = w_5 = w_9 = 0, w_17 = w_4 w_13 + w_6 w_11 + w_7 w_10, …).  H^*(BSpin(n)) has the
+relations up to
+Sq^{2^{h-2}} … Sq^1 w_2 and one more polynomial generator w_{2^h}(Delta), of degree 2^h, which is called Delta_{2^h}
+here;
 n = 3 … 9 (h = 2 for n = 3, 4; 3 for 5 … 8; 4 for 9).
 """
 
@@ -57,7 +60,8 @@ def _square(k: int, word: tuple[int, ...], rank: int | None) -> Sums:
 
 @lru_cache(maxsize=64)
 def relations(rank: int | None) -> tuple[tuple[int, Sums], ...]:
-    """The pairs (i, sum) with w_i = sum in H^*(BSpin(rank)), by increasing i; the sums hold no w_j of an earlier pair."""
+    """The pairs (i, sum) with w_i = sum in H^*(BSpin(rank)), by increasing i; the sums hold no w_j of an earlier
+    pair."""
     found: list[tuple[int, Sums]] = [(2, frozenset())]
     current: Sums = frozenset({(2,)})
     for r in range(exponent(rank) - 1):
@@ -133,7 +137,9 @@ class Spin(Orthogonal):
         return Orthogonal.named(self, prime, letter, index, primes)
 
     def names(self, prime: int) -> str:
-        shown = ", ".join(f"{of.letter}_{of.index}" for of in self.classes(prime, 20 if self.rank is None else 2**LARGEST_RANK))
+        shown = ", ".join(
+            f"{of.letter}_{of.index}" for of in self.classes(prime, 20 if self.rank is None else 2**LARGEST_RANK)
+        )
         return shown + (", …" if self.rank is None else "")
 
     def _sq1(self, m: int) -> Polynomial:
@@ -152,7 +158,10 @@ class Spin(Orthogonal):
             return self._collected(wu(token, of.index or 0))
         if self._empty(of.degree + token):
             return ZERO
-        raise NotKnown(f"Sq^{token} of {of.letter}_{of.index} needs the Stiefel-Whitney classes of the spin representation, which are not known here")
+        raise NotKnown(
+            f"Sq^{token} of {of.letter}_{of.index} needs the Stiefel-Whitney classes of the spin representation, "
+            "which are not known here"
+        )
 
     def _empty(self, degree: int) -> bool:
         """Whether H^degree is 0."""

@@ -1,7 +1,9 @@
 """Reduced powers on elementary symmetric polynomials, by the splitting principle.  Knows numbers and partitions only.
 
-Let the roots x_i of a bundle satisfy sum_k P^k s^k (x) = x + … in such a way that 1 + t P_s(x) is a polynomial in x, say
-prod_j (1 + theta_j x) with N factors.  Then the total power of sum_m c_m t^m is prod_i prod_j (1 + theta_j x_i), that is
+Let the roots x_i of a bundle satisfy sum_k P^k s^k (x) = x + … in such a way that 1 + t P_s(x) is a polynomial in x,
+say
+prod_j (1 + theta_j x) with N factors.  Then the total power of sum_m c_m t^m is prod_i prod_j (1 + theta_j x_i),
+that is
 prod_j c(theta_j) = sum over partitions r of at most N parts of m_r(theta) c_{r_1} c_{r_2} …; the elementary symmetric
 polynomials of the theta_j are the coefficients of 1 + t P_s(x).  So what is needed is the coefficient of one product
 of elementary symmetric polynomials in each monomial symmetric polynomial m_r in N variables: the solution of a
@@ -76,7 +78,8 @@ def _times_elementary(r: int, f: dict[Partition, int], variables: int, p: int) -
 
 @lru_cache(maxsize=256)
 def coefficients(p: int, variables: int, target: Partition) -> tuple[tuple[Partition, int], ...]:
-    """For each partition r the coefficient mod p of e_target = e_{t_1} e_{t_2} … in m_r, in so many variables; nonzero ones only.
+    """For each partition r the coefficient mod p of e_target = e_{t_1} e_{t_2} … in m_r, in so many variables;
+    nonzero ones only.
 
     NotKnown where there are too many partitions to go through.
     """
@@ -94,7 +97,9 @@ def coefficients(p: int, variables: int, target: Partition) -> tuple[tuple[Parti
     return tuple([(r, c) for r, c in found.items() if c])
 
 
-def _row(product: Partition, rows: dict[Partition, dict[Partition, int]], variables: int, p: int) -> dict[Partition, int]:
+def _row(
+    product: Partition, rows: dict[Partition, dict[Partition, int]], variables: int, p: int
+) -> dict[Partition, int]:
     """The product e_{t_1} e_{t_2} … on the basis m_r; products of fewer factors are remembered."""
     known = rows.get(product)
     if known is None:
@@ -103,7 +108,8 @@ def _row(product: Partition, rows: dict[Partition, dict[Partition, int]], variab
 
 
 def linear_roots(p: int, k: int, m: int) -> tuple[tuple[Partition, int], ...]:
-    """P^k of the m-th elementary symmetric polynomial in roots with P x = x + x^p: pairs (r, c), the sum of c c_{r_1} c_{r_2} …
+    """P^k of the m-th elementary symmetric polynomial in roots with P x = x + x^p: pairs (r, c), the sum of c
+    c_{r_1} c_{r_2} …
 
     1 + t(x + s x^p) has the elementary symmetric polynomials e_1 = t and e_p = ts.
     """

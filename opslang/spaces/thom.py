@@ -1,6 +1,7 @@
 """Thom spaces of the universal bundles over BO(n), BSO(n), BSpin(n), BU(n), BSU(n), BSp(n).
 
-H^* is 1 and U times the classes of the base: Sq^i U = w_i U (Thom 1952); at odd p the total power of U is U times the product of the
+H^* is 1 and U times the classes of the base: Sq^i U = w_i U (Thom 1952); at odd p the total power of U is U times
+the product of the
 1 + x_j^{p-1}, by the splitting principle; U^2 is the Euler class times U.
 """
 
@@ -76,9 +77,7 @@ class Thom(Family):
         if self.base.letter != "q":
             return single[k]
         # over BSp(n) each quaternionic line counts twice
-        terms = [
-            (c * d, [*left, *right]) for a in range(k + 1) for c, left in single[a] for d, right in single[k - a]
-        ]
+        terms = [(c * d, [*left, *right]) for a in range(k + 1) for c, left in single[a] for d, right in single[k - a]]
         return collected(terms, prime)
 
     def _elementary(self, rows: tuple[tuple[symmetric.Partition, int], ...], prime: int) -> Polynomial:
@@ -111,5 +110,7 @@ def thom(base: Family, prime: int, factor: int) -> Thom:
     if rank is None:
         raise NotKnown("the universal bundle needs a rank here: thom(BO(n)) with a number n")
     if base.group == "O" and prime != 2:
-        raise NotKnown("the universal bundle over BO(n) is not oriented, so it has no Thom class at an odd prime; take BSO(n)")
+        raise NotKnown(
+            "the universal bundle over BO(n) is not oriented, so it has no Thom class at an odd prime; take BSO(n)"
+        )
     return Thom(base, rank * (base.step if not isinstance(base, Pontryagin) else 1), factor)

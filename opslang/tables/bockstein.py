@@ -22,10 +22,7 @@ from attrs import frozen
 
 from opslang.ground.arith import digits
 from opslang.tables.ring2 import Ring2
-from opslang.tables.ring_odd import RingOdd
 from opslang.tables.slots import exponents
-
-Ring = Ring2 | RingOdd
 
 
 class Undefined(Exception):
@@ -34,7 +31,8 @@ class Undefined(Exception):
 
 @frozen
 class Piece:
-    """(g^{p^j})^times in a monomial: its slot, p^j, its order (None: every Bockstein of it is 0), and beta_order of g^{p^j}."""
+    """(g^{p^j})^times in a monomial: its slot, p^j, its order (None: every Bockstein of it is 0), and beta_order of
+    g^{p^j}."""
 
     slot: int
     scale: int
@@ -44,15 +42,15 @@ class Piece:
     from_power: bool
 
 
-def _terms(ring: Ring, f: Any) -> list[tuple[int, int]]:
+def _terms(ring: Any, f: Any) -> list[tuple[int, int]]:
     return [(x, 1) for x in f] if isinstance(ring, Ring2) else list(f.items())
 
 
-def _single(ring: Ring, monomial: int, coefficient: int = 1) -> Any:
+def _single(ring: Any, monomial: int, coefficient: int = 1) -> Any:
     return {monomial} if isinstance(ring, Ring2) else {monomial: coefficient % ring.prime}
 
 
-def _first_order(ring: Ring, slot: int) -> tuple[int | None, Any]:
+def _first_order(ring: Any, slot: int) -> tuple[int | None, Any]:
     """The order of the generator in a slot, and its Bockstein of that order."""
     word = ring.slots.word[slot]
     root = ring.slots.roots[ring.slots.root[slot]]
@@ -72,7 +70,7 @@ def _first_order(ring: Ring, slot: int) -> tuple[int | None, Any]:
     return 1, ring.letter(0, {place: 1})
 
 
-def _pieces(ring: Ring, monomial: int) -> list[Piece]:
+def _pieces(ring: Any, monomial: int) -> list[Piece]:
     pieces = []
     p = ring.prime
     for slot, exponent in exponents(monomial, ring.width):
@@ -94,7 +92,7 @@ def _pieces(ring: Ring, monomial: int) -> list[Piece]:
     return pieces
 
 
-def _beta_of_power(ring: Ring, y: Any, degree: int, order: int, image: Any) -> Any:
+def _beta_of_power(ring: Any, y: Any, degree: int, order: int, image: Any) -> Any:
     """beta_{order+1}(y^p), for y of even degree with beta_order y = image."""
     value = ring.multiply(ring.power(y, ring.prime - 1), image)
     if isinstance(ring, Ring2) and order == 1:
@@ -102,7 +100,7 @@ def _beta_of_power(ring: Ring, y: Any, degree: int, order: int, image: Any) -> A
     return value
 
 
-def higher(ring: Ring, k: int, f: Any) -> tuple[Any, bool]:
+def higher(ring: Any, k: int, f: Any) -> tuple[Any, bool]:
     """beta_k of an element, and whether it is defined only modulo the images of the lower Bocksteins.
 
     Raises Undefined where a monomial holds a piece of order below k.
@@ -122,7 +120,7 @@ def higher(ring: Ring, k: int, f: Any) -> tuple[Any, bool]:
     return result, modulo
 
 
-def _derive(ring: Ring, monomial: int, piece: Piece) -> Any:
+def _derive(ring: Any, monomial: int, piece: Piece) -> Any:
     """The summand of beta(monomial) in which one unit of the piece is replaced by its image, with its sign."""
     place = piece.slot * ring.width
     before = monomial & ((1 << place) - 1)
@@ -135,11 +133,13 @@ def _derive(ring: Ring, monomial: int, piece: Piece) -> Any:
     return ring.multiply(head, _single(ring, right))
 
 
-def _reason(ring: Ring, k: int, f: Any, order: int) -> str:
+def _reason(ring: Any, k: int, f: Any, order: int) -> str:
     name = "Sq^1" if ring.prime == 2 else "beta"
     lower = ring.letter(1, f) if isinstance(ring, Ring2) else ring.letter(0, f)
+    only = f"beta_{k} is defined only on classes on which the lower Bocksteins vanish"
     if lower:
-        return f"beta_{k} is defined only on classes on which the lower Bocksteins vanish, and {name} of this class is not 0"
+        return f"{only}, and {name} of this class is not 0"
     if order > 1:
-        return f"beta_{k} is defined only on classes on which the lower Bocksteins vanish, and beta_{order} of this class is not seen to be 0"
-    return f"beta_{k} of this class is not shown to be defined: {name} of it is 0, but no lift of it to Z/{ring.prime}^{k} is known"
+        return f"{only}, and beta_{order} of this class is not seen to be 0"
+    lift = f"Z/{ring.prime}^{k}"
+    return f"beta_{k} of this class is not shown to be defined: {name} of it is 0, but no lift of it to {lift} is known"

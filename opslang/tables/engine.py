@@ -12,10 +12,10 @@ from collections.abc import Iterator, Sequence
 from itertools import pairwise
 from typing import Any
 
-from opslang.ir.order import word_key
-from opslang.ir import tree as ir
-from opslang.ir.tree import ClassElement, OperationElement
 from opslang.ground.grading import degree as word_degree
+from opslang.ir import tree as ir
+from opslang.ir.order import word_key
+from opslang.ir.tree import ClassElement, OperationElement
 from opslang.tables.bockstein import higher
 from opslang.tables.budget import DEFAULT_LIMIT, Budget, TooLarge
 from opslang.tables.powers import Powers
@@ -76,7 +76,8 @@ class Engine:
         return ClassElement(self.prime, ring.decode(Evaluation(self, ring).cls(tree)))
 
     def normal_classes(self, trees: Sequence[ir.Cls]) -> tuple[list[ClassElement], list[ClassElement]]:
-        """The canonical forms of several classes, and the differences of each with the next.  Raises TooLarge, Undefined."""
+        """The canonical forms of several classes, and the differences of each with the next.  Raises TooLarge,
+        Undefined."""
         ring: Any = self.ring(max([tree.top for tree in trees]))
         walk = Evaluation(self, ring)
         values = [walk.cls(tree) for tree in trees]
@@ -264,7 +265,8 @@ class Evaluation:
         return found[token]
 
     def primitive(self, k: int) -> Any:
-        """Milnor's primitive: Q_0 is the Bockstein, Q_{j+1} the commutator of P^{p^j} (Sq^{2^{j+1}}) with Q_j (Milnor 1958)."""
+        """Milnor's primitive: Q_0 is the Bockstein, Q_{j+1} the commutator of P^{p^j} (Sq^{2^{j+1}}) with Q_j
+        (Milnor 1958)."""
         p = self.prime
         element = self.algebra.times(1 if p == 2 else 0, self._one())
         for j in range(k):
@@ -369,7 +371,8 @@ class Evaluation:
         return result
 
     def _apply_conjugate_letter(self, token: int, element: Any) -> Any:
-        """chi of a letter on an element, by the same sum as in the algebra, over the degrees where something is left."""
+        """chi of a letter on an element, by the same sum as in the algebra, over the degrees where something is
+        left."""
         ring = self.ring
         if self.prime != 2 and token == 0:
             return ring.letter(0, element)

@@ -26,7 +26,8 @@ def _roots(of: Class) -> tuple[tuple[Word, int, bool], ...]:
 
 
 def _words(p: int, degree: int, killed: bool, to: int) -> Iterator[tuple[Word, int]]:
-    """The words of polynomial generators on a root of the given degree, with the degrees of the generators, up to `to`."""
+    """The words of polynomial generators on a root of the given degree, with the degrees of the generators, up to
+    `to`."""
     waiting: list[tuple[Word, int]] = [((), degree)] if degree <= to else []
     while waiting:
         word, d = waiting.pop()
@@ -70,7 +71,7 @@ def items(p: int, space: Localised, to: int, budget: Budget | None = None) -> li
     for family in space.families:
         for of in family.classes(p, to):
             height = family.height(p, of)
-            if p != 2 and of.degree % 2 or (p == 2 and of.degree == 1 and of.order != 1):
+            if squares_to_zero(Generator((), of), of.degree, p):
                 height = 2
             found.append((Generator((), of), of.degree, height))
     found.sort(key=lambda item: generator_key(item[0], p))
@@ -142,7 +143,8 @@ def counts(p: int, of: Class, to: int) -> tuple[list[int], list[int]]:
 
 
 def series(p: int, space: Localised, to: int) -> list[int]:
-    """The dimensions of H^0 … H^to of a space, by the Euler transform of the numbers of generators.  Quadratic in `to`."""
+    """The dimensions of H^0 … H^to of a space, by the Euler transform of the numbers of generators.  Quadratic in
+    `to`."""
     weight = [0] * (to + 1)
     others = []
     for of in space.classes:
@@ -221,7 +223,9 @@ def _admission(p: int, space: Localised) -> Callable[[Monomial], bool] | None:
         if any(all(powers.get(of, 0) >= exponent for of, exponent in lead) for lead in rules):
             return False
         return all(
-            family.admits(p, tuple([(of, exponent) for of, exponent in powers.items() if of.factor == at and of.ring is not None]))
+            family.admits(
+                p, tuple([(of, exponent) for of, exponent in powers.items() if of.factor == at and of.ring is not None])
+            )
             for at, family in _numbered(space)
         )
 

@@ -1,4 +1,5 @@
-"""Whether a class lies in the images of lower Bocksteins, in the ring of the classes it is made from.  Linear algebra mod p."""
+"""Whether a class lies in the images of lower Bocksteins, in the ring of the classes it is made from.  Linear
+algebra mod p."""
 
 from __future__ import annotations
 
@@ -75,7 +76,7 @@ def encode_element(engine: Engine, ring: Any, element: ClassElement) -> Any:
 
 
 def _vector(f: Any, p: int) -> dict[int, int]:
-    return {x: 1 for x in f} if p == 2 else dict(f)
+    return dict.fromkeys(f, 1) if p == 2 else dict(f)
 
 
 class Span:

@@ -29,7 +29,13 @@ class Products(dict[int, Packeds]):
     __slots__ = ("_budget", "_entries", "_held", "_mask", "_pair", "_prime", "_stored", "_width")
 
     def __init__(
-        self, prime: int, pair: Callable[[int, int, int], Packeds], width: int, budget: Budget, entries: int, stored: int
+        self,
+        prime: int,
+        pair: Callable[[int, int, int], Packeds],
+        width: int,
+        budget: Budget,
+        entries: int,
+        stored: int,
     ) -> None:
         super().__init__()
         self._prime = prime
@@ -151,7 +157,7 @@ class Powers:
             for c, k, j in inside:
                 found[(j << 1 | 1) << width | k << 1] = c
             return found
-        rows = ((1, 0, ()), (0, 0, iter_powers(a, b, p)))
+        rows: tuple[tuple[int, int, Iterable[tuple[int, int, int]]], ...] = ((0, 0, iter_powers(a, b, p)),)
         if bockstein:
             left, middle = iter_powers_bockstein(a, b, p)
             rows = ((1, 0, left), (0, 1, middle))

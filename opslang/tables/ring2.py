@@ -3,7 +3,8 @@
 A monomial is one int: the exponent of generator number s stands in slot s of `width` bits.  An element is a set of
 monomials; a product of monomials is a sum of ints, the square of an element a shift by one bit.
 
-Strategy.  The Cartan formula is a product of truncated total squares, one for each binary digit of each exponent (a digit
+Strategy.  The Cartan formula is a product of truncated total squares, one for each binary digit of each exponent (a
+digit
 2^j contributes the 2^j-th power of the total square, by Frobenius), highest digit first; partial degrees that can no
 longer reach the target are dropped.
 """

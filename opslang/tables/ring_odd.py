@@ -4,13 +4,14 @@ A monomial is one int: the exponent of generator number s stands in slot s of `w
 have exponents 0 and 1.  The order of the slots is the order of the factors; signs come from it.  An element is a
 dict from monomials to coefficients 1 … p-1.
 
-Strategy.  As at p = 2: the Cartan formula is a product of truncated total powers, one for each unit of each base-p digit
+Strategy.  As at p = 2: the Cartan formula is a product of truncated total powers, one for each unit of each base-p
+digit
 of each exponent, the digit at p^j contributing the p^j-th power of the total power.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Mapping
+from collections.abc import Callable, Mapping
 from math import gcd
 
 from opslang.ground.arith import digits, p_part
@@ -25,7 +26,8 @@ Terms = tuple[tuple[int, int], ...]
 
 
 class RingOdd:
-    """The ring and its reduced powers and Bockstein.  Exponents, and twice the letters of words, must stay below 2**width."""
+    """The ring and its reduced powers and Bockstein.  Exponents, and twice the letters of words, must stay below
+    2**width."""
 
     def __init__(self, prime: int, width: int, budget: Budget) -> None:
         self.prime = prime
@@ -113,7 +115,8 @@ class RingOdd:
         return self.prime ** p_part(found, self.prime) if found else 1
 
     def _negative(self, x: int, y: int) -> bool:
-        """Whether putting the odd generators of x y in order changes the sign; x, y hold lowest bits of odd slots only."""
+        """Whether putting the odd generators of x y in order changes the sign; x, y hold lowest bits of odd slots
+        only."""
         parity = 0
         while y:
             low = y & -y
@@ -291,7 +294,8 @@ class RingOdd:
         return result
 
     def derivation(self, f: Mapping[int, int], on_generator: Callable[[int], Mapping[int, int]], degree: int) -> Poly:
-        """The derivation of the given degree that is `on_generator` on the generators of slots (sign (-1)^{degree |x|})."""
+        """The derivation of the given degree that is `on_generator` on the generators of slots (sign (-1)^{degree
+        |x|})."""
         p, odd, width = self.prime, self.slots.nilpotent, self.width
         result: Poly = {}
         for x, c in f.items():

@@ -30,7 +30,8 @@ class Root:
 
 @frozen
 class Rule:
-    """A relation of a named space: the exponents of its leading monomial, that monomial packed, what it equals (None: 0)."""
+    """A relation of a named space: the exponents of its leading monomial, that monomial packed, what it equals
+    (None: 0)."""
 
     lead: tuple[tuple[int, int], ...]
     packed: int
@@ -51,7 +52,8 @@ class Slots:
         self.word: list[int] = []
         self.degree: list[int] = []
         self.nilpotent = 0
-        """The lowest bit of every slot whose generator squares to 0: odd degree at an odd prime; at 2 degree 1 and killed by Sq^1."""
+        """The lowest bit of every slot whose generator squares to 0: odd degree at an odd prime; at 2 degree 1 and
+        killed by Sq^1."""
         self.decoded: dict[int, Decoded] = {}
         """Monomials decoded lately."""
         self.rules: list[Rule] = []
@@ -118,7 +120,7 @@ class Slots:
         width = self.width
         mask = (1 << width) - 1
         for rule in self.rules:
-            if all([(monomial >> slot * width & mask) >= exponent for slot, exponent in rule.lead]):
+            if all((monomial >> slot * width & mask) >= exponent for slot, exponent in rule.lead):
                 return rule
         return None
 

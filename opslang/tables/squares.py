@@ -59,7 +59,9 @@ class Products(dict[int, Collection[int]]):
 
     __slots__ = ("_budget", "_entries", "_held", "_mask", "_pair", "_stored", "_width")
 
-    def __init__(self, pair: Callable[[int, int], list[int]], width: int, budget: Budget, entries: int, stored: int) -> None:
+    def __init__(
+        self, pair: Callable[[int, int], list[int]], width: int, budget: Budget, entries: int, stored: int
+    ) -> None:
         super().__init__()
         self._pair = pair
         self._width = width
