@@ -15,9 +15,10 @@ from opslang.lint.model import BigSum, ClassFact, ClassName, Condition, Index, K
 from opslang.lint.symbolic.degrees import own_variables
 from opslang.lint.symbolic.homogeneity import factors_of
 from opslang.lint.symbolic.polynomial import Polynomial
-from opslang.lint.symbolic.values import compare
+from opslang.lint.symbolic.values import compare, value_of
 
 MOST_POINTS = 9
+LARGEST_INDEX = 22
 PRIMES = (3, 5)
 """What is tried where p is any odd prime."""
 UNKNOWN_DEGREES = ((2, 1, 3), (1, 3, 2), (3, 2, 1))
@@ -106,6 +107,8 @@ def tried(statement: Statement, known: Known, domain: tuple[Condition, ...], mos
     points = []
     failed = 0
     for number, given in enumerate(_grid(symbols, domain, primes)):
+        if _too_large(statement, given):
+            continue
         values = {name: value for name, value in given.items() if name != "p" or known.prime is None}
         here = _with_degrees(evolve(known, prime=given["p"]), unknown, number)
         lengths = {f"|{name}|": _degree(here, name) for name in unknown}
@@ -119,6 +122,16 @@ def tried(statement: Statement, known: Known, domain: tuple[Condition, ...], mos
         if len(points) >= most or failed > 3 + 2 * len(points):
             break
     return Trial(tuple(points), symbols) if points else None
+
+
+def _too_large(statement: Statement, given: Mapping[str, int]) -> bool:
+    """Whether an index is too large at some values for a quick trial."""
+    for side in statement.sides:
+        for index in indices_in(side):
+            value = value_of(index, given)
+            if value is not None and value > LARGEST_INDEX:
+                return True
+    return False
 
 
 def _unknown(spelling: str, statement: Statement, known: Known) -> bool:

@@ -12,6 +12,8 @@ from opslang.lint.symbolic.homogeneity import about_operations, factors_of
 from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
 from opslang.lint.templates.shapes import adem, adem_range, cartan, only_product, says_range, wu
 
+ENOUGH, FEW = 6, 3
+"""Points at which a relation is tried: between operations, and between classes, where a failure would not count."""
 _PARITY = ("even", "odd", "parity", "power", "divisible", "congruent", "binary", "mod", "digit", "multiple")
 
 
@@ -52,12 +54,13 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
     if not _fit(statement, known) or adem(statement) or cartan(statement) or wu(statement):
         return None
     domain = (*statement.conditions, *known.ranges)
-    trial = tried(statement, known, domain)
+    classes = classes_of(statement)
+    trial = tried(statement, known, domain, FEW if classes else ENOUGH)
     if trial is None:
         return None
     if not trial.false:
         return Verdict("agrees", reason="agrees for " + trial.extent)
-    if classes_of(statement) or _stated(statement):
+    if classes or _stated(statement):
         return None
     if not trial.true and len(trial.false) >= (3 if trial.symbols else 2):
         return found(_wrong(statement, trial, "false-for-small-values", "this holds for none of the values tried"))
