@@ -13,21 +13,22 @@ from threading import Thread
 from typing import TYPE_CHECKING, Any
 
 from prompt_toolkit.application.current import get_app
-from prompt_toolkit.completion import DynamicCompleter
 from prompt_toolkit.enums import DEFAULT_BUFFER, EditingMode
 from prompt_toolkit.filters import has_focus
 from prompt_toolkit.formatted_text import StyleAndTextTuples
 from prompt_toolkit.key_binding import KeyBindings, KeyPressEvent
 from prompt_toolkit.lexers import DynamicLexer, Lexer
 from prompt_toolkit.output import ColorDepth
-from prompt_toolkit.shortcuts.prompt import CompleteStyle, PromptSession
+from prompt_toolkit.shortcuts.prompt import PromptSession
 from prompt_toolkit.styles import Style
 
 from opslang.front.history import Remembered, state_folder
-from opslang.front.status import Status
+from opslang.front.status import Status, choices
 
 if TYPE_CHECKING:
     from asyncio import TimerHandle
+
+    from prompt_toolkit.buffer import Buffer
 
     from opslang.front.completion import World
 
@@ -35,6 +36,8 @@ PAUSE = 0.12
 """Seconds without a key after which the input is looked at."""
 LONG_PAUSE = 0.6
 LONG = 1_500
+MOST_ROWS = 6
+"""Rows that the choices of Tab may take at the bottom."""
 
 _COLOURS = {
     "prompt": "bold",
@@ -76,6 +79,7 @@ class Console:
         self._coloured = coloured
         self._lexer: Lexer | None = None
         self._completer: Any = None
+        self._choices: list[str] = []
         self._waiting: TimerHandle | None = None
         self._editor: PromptSession[str] = self._made()
         self.keys = keys
@@ -86,8 +90,6 @@ class Console:
             multiline=True,
             key_bindings=self._bindings(),
             lexer=DynamicLexer(self._colouring),
-            completer=DynamicCompleter(self._completing),
-            complete_style=CompleteStyle.READLINE_LIKE,
             complete_while_typing=False,
             enable_history_search=True,
             enable_suspend=True,
@@ -101,6 +103,7 @@ class Console:
         # Where the terminal does not answer, there is no line at the bottom; that is no news for the user.
         editor.app.renderer.cpr_not_supported_callback = None
         editor.default_buffer.on_text_changed += self._changed
+        editor.default_buffer.on_cursor_position_changed += self._moved
         editor.app.after_render += _in_background
         return editor
 
@@ -131,11 +134,38 @@ class Console:
             else:
                 buffer.insert_text("\n")
 
+        @bindings.add("tab", filter=focused)
+        def _tab(event: KeyPressEvent) -> None:
+            self._complete_at(event.current_buffer)
+
         @bindings.add("escape", "enter", filter=focused)
         def _line(event: KeyPressEvent) -> None:
             event.current_buffer.insert_text("\n")
 
         return bindings
+
+    def _complete_at(self, buffer: Buffer) -> None:
+        """Puts in what all completions have in common; where that is nothing, the bottom line names them."""
+        from prompt_toolkit.completion import CompleteEvent, get_common_complete_suffix
+
+        document = buffer.document
+        found = list(self._completing().get_completions(document, CompleteEvent(completion_requested=True)))
+        if len({(each.text, each.start_position) for each in found}) == 1:
+            buffer.delete_before_cursor(-found[0].start_position)
+            buffer.insert_text(found[0].text)
+        elif common := get_common_complete_suffix(document, found):
+            buffer.insert_text(common)
+        elif found:
+            self._offer([each.display_text for each in found])
+
+    def _offer(self, words: list[str]) -> None:
+        """Names the choices in the bottom line, or above the prompt where the terminal is not known to have one."""
+        if self._editor.app.renderer.height_is_known:
+            self._choices = words
+            return
+        from prompt_toolkit.application import run_in_terminal
+
+        run_in_terminal(lambda: print(*words, sep="   "))
 
     # --- what is loaded when it is needed -------------------------------------------------------
 
@@ -159,15 +189,22 @@ class Console:
     # --- the line at the bottom -----------------------------------------------------------------
 
     def _bottom(self) -> StyleAndTextTuples:
+        size = get_app().output.get_size()
+        if self._choices:
+            return [*choices(self._choices, size.columns, max(1, min(MOST_ROWS, size.rows - 2)))]
         around = self._around()
         if self.keys == "vi":
             from prompt_toolkit.filters import vi_insert_mode
 
             mode = "insert" if vi_insert_mode() else "command"
             around = [f"{mode}   {text}" for text in around]
-        return [*self._status.fragments(self._editor.default_buffer.text, around, get_app().output.get_size().columns)]
+        return [*self._status.fragments(self._editor.default_buffer.text, around, size.columns)]
+
+    def _moved(self, _: object) -> None:
+        self._choices = []
 
     def _changed(self, _: object) -> None:
+        self._choices = []
         from asyncio import get_running_loop
 
         if self._waiting is not None:

@@ -89,8 +89,13 @@ def lowered(statement: sf.Statement, scope: Scope, text: str) -> tuple[Value, ..
 
 
 def reads_alike(text: str, scope: Scope, other: Scope) -> bool:
-    """Whether a statement says the same in two scopes."""
-    if (scope.prime, scope.space) != (other.prime, other.space):
+    """Whether a statement says the same in two scopes, and of the same space."""
+    return scope.space == other.space and means_alike(text, scope, other)
+
+
+def means_alike(text: str, scope: Scope, other: Scope) -> bool:
+    """Whether the names in a statement stand for the same in two scopes."""
+    if scope.prime != other.prime:
         return False
     statement, _ = parse(Source("input", text))
     if statement is None:

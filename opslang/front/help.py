@@ -46,6 +46,9 @@ def page(name: str, width: int) -> str | None:
     wanted = " ".join(name.strip("`'\"").split()).lower()
     found = wanted if wanted in TOPICS else _ALSO.get(wanted)
     if found is None:
+        begun = {_ALSO.get(topic, topic) for topic in (*TOPICS, *_ALSO) if topic.startswith(wanted)}
+        found = begun.pop() if len(begun) == 1 and len(wanted) > 2 else None
+    if found is None:
         from opslang.front.explain import explain
 
         return explain(name.strip(), width)

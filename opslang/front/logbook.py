@@ -12,7 +12,7 @@ from typing import Literal
 
 from attrs import define, evolve, frozen
 
-from opslang.front.glance import copy_of, lowered, reads_alike
+from opslang.front.glance import copy_of, lowered, means_alike, reads_alike
 from opslang.ground.source import Source, Span
 from opslang.ir.outcome import Outcome
 from opslang.meaning.scope import Key, Scope
@@ -130,6 +130,9 @@ class Logbook:
                 )
                 raise Refusal(error("no-such-result", words, found.span()))
             self._check_length(entry, found.span())
+            if not self._still_holds(entry, scope):
+                words = f"result {number} was found before the prime was changed, and what it is made of is gone"
+                raise Refusal(error("no-such-result", words, found.span()))
             key = self._key(number, text, scope)
             name = spelling(key, tex)
             pieces += [text[done : found.start()], name]
@@ -139,6 +142,13 @@ class Logbook:
             done = found.end()
             borrowed.append((number, key))
         return Expanded("".join([*pieces, text[done:]]), tuple(edits), tuple(dict.fromkeys(borrowed)))
+
+    def _still_holds(self, entry: Entry, scope: Scope) -> bool:
+        """Whether a script can still say a result: right behind it, or here if its canonical form reads as it did."""
+        eras = self._eras()
+        if eras[self.entries.index(entry)] == eras[-1]:
+            return True
+        return means_alike(_definition(entry), entry.before, scope)
 
     def _check_length(self, entry: Entry, span: Span) -> None:
         length = len(_definition(entry))
@@ -225,18 +235,36 @@ class Logbook:
 
     def script(self, head: list[str]) -> str:
         """The lines, and a `let` after each result that a later line refers to."""
-        wanted: dict[int, list[Key]] = {}
-        for entry in self.entries:
+        eras = self._eras()
+        found = {entry.number: era for entry, era in zip(self.entries, eras) if entry.number is not None}
+        after: set[tuple[int, Key]] = set()
+        before: list[list[tuple[int, Key]]] = []
+        said: set[tuple[int, int, Key]] = set()
+        for entry, era in zip(self.entries, eras):
+            before.append([])
             for number, key in entry.borrowed:
-                names = wanted.setdefault(number, [])
-                if key not in names:
-                    names.append(key)
+                if found[number] == era:
+                    after.add((number, key))
+                elif (era, number, key) not in said:
+                    said.add((era, number, key))
+                    before[-1].append((number, key))
         lines = list(head)
-        for entry in self.entries:
+        for entry, borrowed in zip(self.entries, before):
+            lines += [self._let(number, key) for number, key in borrowed]
             lines.append(entry.text)
-            for key in wanted.get(entry.number or 0, ()):
-                lines.append(f"let {spelling(key)} = {_definition(entry)}")
+            lines += [self._let(number, key) for number, key in sorted(after) if number == entry.number]
         return "\n".join(lines) + "\n"
+
+    def _let(self, number: int, key: Key) -> str:
+        return f"let {spelling(key)} = {_definition(self.result(number))}"
+
+    def _eras(self) -> list[int]:
+        """How often the prime was changed before each line, and before the next one: each change drops the names."""
+        eras = [0]
+        for entry in self.entries:
+            changed = entry.role == "declaration" and entry.outcome and entry.outcome.prime != entry.before.prime
+            eras.append(eras[-1] + bool(changed))
+        return eras
 
 
 def _definition(entry: Entry) -> str:

@@ -14,7 +14,6 @@ from attrs import evolve
 
 from opslang.front.glance import LONGEST, Glance, copy_of, glance, same_scope
 from opslang.front.logbook import THAT, Entry, Expanded, Logbook, Role, as_typed
-from opslang.front.output import ansi
 from opslang.front.pasting import displayed, on_one_line, opens_display
 from opslang.front.statement import Settings
 from opslang.front.vocabulary import shell_statement
@@ -26,10 +25,20 @@ from opslang.pipeline import DEFAULT_LIMIT, Session, kind_of
 from opslang.render.show import show
 from opslang.render.text import Notation
 from opslang.report.diagnostic import Diagnostic, Refusal, error
-from opslang.report.render import cells, plain, render
+from opslang.report.render import Paint, cells, plain, render
 from opslang.syntax.layout import chunks, is_complete
 
 _WHY_THAT = re.compile(r"\s*why\s+(that(?:_(\d+)|_\{(\d+)\})?)\s*\Z")
+
+
+TYPED = "\0typed"
+"""Stands for the file name of what was typed."""
+
+
+def _shorter(text: str, paint: Paint = plain) -> str:
+    """A diagnostic about typed text: no file name; the column is where the marks stand, and line 1 need not be said."""
+    place = re.compile(re.escape(paint("place", "\\x00typed:@:")).replace("@", r"(\d+):\d+") + " ")
+    return place.sub(lambda found: "" if found.group(1) == "1" else f"line {found.group(1)}: ", text)
 
 
 class Sitting:
@@ -78,16 +87,16 @@ class Sitting:
     def complain(self, diagnostic: Diagnostic, source: Source) -> None:
         """A diagnostic to the terminal, its message broken to the width."""
         width = self.width()
-        text = render(diagnostic, source, plain, width)
-        paint = ansi if self.settings.paint is not plain else plain
+        source = evolve(source, name=TYPED if source.name == "input" else source.name)
+        text = _shorter(render(diagnostic, source, plain, width))
         if all(cells(row) <= width for row in text.split("\n")):
-            text = render(diagnostic, source, self.settings.paint, width)
-            self.say(text)
+            paint = self.settings.paint
+            self.say(_shorter(render(diagnostic, source, paint, width), paint))
             return
         head, *rows = text.split("\n")
         lines = wrap(head, width, subsequent_indent="    ")
         label = f"{diagnostic.severity}:"
-        lines[0] = lines[0].replace(label, paint(diagnostic.severity, label), 1)
+        lines[0] = lines[0].replace(label, self.settings.paint(diagnostic.severity, label), 1)
         marked = render(evolve(diagnostic, message="", help="", labels=()), source, plain, width).split("\n")[1:]
         lines += marked
         lines += [

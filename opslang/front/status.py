@@ -39,6 +39,20 @@ def line(words: str, tone: str, place: str, around: list[str], width: int) -> li
     return [(f"class:status.{tone}", left), ("", " " * gap), ("class:status.right", right)]
 
 
+def choices(words: list[str], width: int, rows: int) -> list[Fragment]:
+    """What Tab offers, in lines; what does not fit into so many rows is left out, and an ellipsis says so."""
+    from textwrap import wrap
+
+    gap = "\0" * 2
+    lines = [
+        each.replace("\0", " ").rstrip()
+        for each in wrap(" ".join(word.replace(" ", "\0") + gap for word in words), width - 1)
+    ]
+    if len(lines) > rows:
+        lines = [*lines[: rows - 1], "..."]
+    return [("class:status.quiet", "\n".join(fitted(each, width - 1) for each in lines))]
+
+
 Look = Callable[[str], tuple[str, str, str]]
 """Gives words, tone and place of a text."""
 
