@@ -38,11 +38,12 @@ def cut(token: Token, at: int) -> tuple[Token, Token]:
 class Frame:
     """One file being read: its tokens, how far it is read, and what was pending when a further file was drawn in."""
 
-    __slots__ = ("at", "file", "pending", "silent", "tokens")
+    __slots__ = ("at", "file", "pending", "silent", "size", "tokens")
 
     def __init__(self, tokens: list[Token], file: int, silent: bool) -> None:
         self.tokens = tokens
         self.at = 0
+        self.size = len(tokens)
         self.file = file
         self.silent = silent
         self.pending: list[Token] = []
@@ -57,6 +58,7 @@ class Intake:
         self.fuel = 200_000
         self.since = 0
         self.last: Token | None = None
+        self.silent = False
 
     def open(self, tokens: list[Token], file: int, silent: bool) -> None:
         """Read these tokens of a file before whatever else is to come."""
@@ -64,12 +66,20 @@ class Intake:
             self.frames[-1].pending = self.pending
         self.pending = []
         self.frames.append(Frame(tokens, file, silent))
+        self.silent = silent
         self.fuel += 12 * len(tokens)
 
     def leave_file(self) -> None:
         """Forget the rest of the file that is being read."""
         self.frames.pop()
         self.pending = self.frames[-1].pending if self.frames else []
+        self.silent = bool(self.frames) and self.frames[-1].silent
+
+    def speak(self) -> None:
+        """The preamble is over."""
+        for frame in self.frames:
+            frame.silent = False
+        self.silent = False
 
     def next(self) -> Token | None:
         """The next token; None when all files are read."""
@@ -78,10 +88,10 @@ class Intake:
         self.since = 0
         while self.frames:
             frame = self.frames[-1]
-            if frame.at < len(frame.tokens):
-                token = frame.tokens[frame.at]
-                frame.at += 1
-                return token
+            at = frame.at
+            if at < frame.size:
+                frame.at = at + 1
+                return frame.tokens[at]
             self.leave_file()
             if self.pending:
                 return self.pending.pop()

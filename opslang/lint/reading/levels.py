@@ -102,8 +102,8 @@ class Stack:
     def open_brace(self, token: Token) -> None:
         """{"""
         self.raise_level("}", "group", token)
-        if self.math:
-            self.keep("open", "{", token)
+        if self.math and self.out is not None:
+            self.out.append(token if token.text == "{" else token._replace(kind="open", text="{"))
 
     def close_brace(self, token: Token) -> None:
         """}: closes the innermost brace; a formula that was left open inside it is lost."""

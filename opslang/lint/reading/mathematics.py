@@ -163,11 +163,17 @@ def braced(reader: Reader, token: Token) -> None:
     following = reader.intake.peek()
     if following is not None and following.kind in ("sub", "sup"):
         reader.intake.pending.pop()
-        note = reader.intake.argument(long=False)
-        if note is not None:
-            reader.keep("note", plain(note), following)
+        reader.intake.argument(long=False)
     reader.intake.push([bound("open", "{", token), *argument, bound("close", "}", end)])
     bare(reader, token)
+
+
+def equation_number(reader: Reader, token: Token) -> None:
+    """\\eqno (1): the number goes, to the end of the display."""
+    while (following := reader.intake.peek()) is not None:
+        if following.kind in ("shift", "par", "leave", "close") or following.text in ("\\]", "\\end"):
+            return
+        reader.intake.pending.pop()
 
 
 def first_choice(reader: Reader, token: Token) -> None:
@@ -336,6 +342,7 @@ def _table() -> dict[str, Handler]:
         (("\\\\",), row),
         (("\\begin",), begin),
         (("\\mathchoice",), first_choice),
+        (("\\eqno", "\\leqno"), equation_number),
     )
     for names, handler in plan:
         assert isinstance(names, (frozenset, dict, tuple))

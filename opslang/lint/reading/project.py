@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import os
 import re
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from opslang.lint.reading.document import File, Token
@@ -87,15 +88,14 @@ class Project:
 
     def draw_in(self, reader: Reader, name: str, token: Token) -> None:
         """\\input: the tokens of that file come next."""
-        frames = reader.intake.frames
         path = self.find(name, (".tex", "", ".ltx"), self.files[token.file].path)
         if path is None:
-            if self.follow and not frames[-1].silent:
+            if self.follow and not reader.intake.silent:
                 reader.notice("file-not-found", f"{name} was not found and what it defines is not known", token)
             return
         if reader.only_definitions and not self._only_defines(path):
             return
-        self._open(reader, path, token, frames[-1].silent if frames else False, package=False)
+        self._open(reader, path, token, reader.intake.silent, package=False)
 
     def _only_defines(self, path: str) -> bool:
         """Whether a file drawn in by the body of the main file is one of definitions and no chapter."""
@@ -152,19 +152,28 @@ class Project:
                 continue
             for name in names:
                 path = os.path.join(place, name)
-                if os.path.realpath(path) != os.path.realpath(first.path) and _draws_in(path, wanted):
+                if os.path.realpath(path) != os.path.realpath(first.path) and wanted in _drawn_in(path):
                     return path
         return None
 
 
-def _draws_in(path: str, wanted: str) -> bool:
+def _drawn_in(path: str) -> frozenset[str]:
+    """The files, without their endings, that a main file draws in; none when it is no main file."""
+    try:
+        status = os.stat(path)
+    except OSError:
+        return frozenset()
+    return _drawn_in_version(path, status.st_mtime_ns, status.st_size)
+
+
+@lru_cache(maxsize=500)
+def _drawn_in_version(path: str, changed: int, size: int) -> frozenset[str]:
     try:
         text = load(path).text
     except OSError:
-        return False
+        return frozenset()
     if "\\documentclass" not in text:
-        return False
+        return frozenset()
     folder = os.path.dirname(path)
-    return any(
-        os.path.splitext(os.path.realpath(os.path.join(folder, name)))[0] == wanted for name in _DRAWN.findall(text)
-    )
+    names = (os.path.join(folder, name) for name in _DRAWN.findall(text) if "\0" not in name)
+    return frozenset(os.path.splitext(os.path.realpath(name))[0] for name in names)

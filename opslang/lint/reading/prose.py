@@ -123,7 +123,7 @@ def begin(reader: Reader, token: Token) -> None:
         token = token._replace(end=last.end)
     if name == "document":
         begin_document(reader)
-    elif intake.frames and intake.frames[-1].silent:
+    elif intake.silent:
         return
     elif name in reader.tables.environments:
         begin_own(reader, token, name)
@@ -141,8 +141,7 @@ def begin(reader: Reader, token: Token) -> None:
 
 def begin_document(reader: Reader) -> None:
     """The preamble is over."""
-    for frame in reader.intake.frames:
-        frame.silent = False
+    reader.intake.speak()
     reader.levels.clear()
 
 

@@ -79,22 +79,20 @@ class Reader(Stack):
     def run(self) -> None:
         """Read all there is."""
         intake = self.intake
-        following = intake.next
+        following, command, signs, acts = intake.next, self.command, self.signs, self.acts
         while (token := following()) is not None:
-            kind = token.kind
-            if intake.frames and intake.frames[-1].silent:
+            kind = token[0]
+            if intake.silent:
                 self.silently(token)
             elif kind == "run":
                 if self.math:
-                    self.signs(token)
+                    signs(token)
                 else:
-                    self.say(token.text, token)
+                    self.say(token[1], token)
             elif kind == "command":
-                self.command(token)
-            else:
-                act = self.acts.get(kind)
-                if act is not None:
-                    act(token)
+                command(token)
+            elif kind in acts:
+                acts[kind](token)
         self.give_up_all()
         self.page.end_paragraph()
 
@@ -186,16 +184,16 @@ class Reader(Stack):
         handler = (MATHEMATICS if self.math else PROSE).get(name)
         if handler is not None:
             handler(self, token)
-        elif not self.define(token) and self.math:
-            self.keep("command", name, token)
+        elif not self.define(token) and self.out is not None and self.math:
+            self.out.append(token if token.kind == "command" else token._replace(kind="command"))
 
     def sign(self, token: Token) -> None:
         """^ _ & #."""
         if self.math:
             if token.kind == "param":
                 self.spoilt = True
-            else:
-                self.keep(token.kind, token.text, token)
+            elif self.out is not None:
+                self.out.append(token)
         elif token.kind != "param":
             self.say(" " if token.kind == "align" else token.text, token)
 

@@ -32,7 +32,7 @@ TEXT_ENVIRONMENTS: dict[str, str] = {
     "figure": "o", "figure*": "o", "table": "o", "table*": "o", "wrapfigure": "omom", "itemize": "o", "enumerate": "o",
     "description": "o", "tabular": "om", "tabular*": "mom", "tabularx": "mm", "longtable": "om", "array": "om",
     "minipage": "oom", "multicols": "m", "thebibliography": "m", "tikzpicture": "o", "adjustbox": "m", "list": "mm",
-    "sseqdata": "o", "sseqpage": "o", "center": "", "document": "", "frame": "oo", "picture": "",
+    "sseqdata": "o", "sseqpage": "o", "center": "", "document": "", "frame": "<oo", "picture": "",
 }  # fmt: skip
 """Arguments of environments of text that are no words; of any other the square bracket is its title."""
 
