@@ -67,7 +67,8 @@ def read_product(stretch: Stretch) -> Product:
         glues.append(glue)
         glue = ""
     if not factors:
-        raise NotRead("a term is missing", stretch.origin(stretch.at, stretch.at + 1))
+        reason = "a term is missing" if stretch.done else f"{stretch.tokens[stretch.at].text} was not understood"
+        raise NotRead(reason, stretch.origin(stretch.at, stretch.at + 1))
     if glue:
         raise NotRead("a sign of multiplication with nothing after it", stretch.origin(stretch.at - 1))
     glues[0] = ""

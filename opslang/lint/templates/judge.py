@@ -12,6 +12,8 @@ from opslang.lint.symbolic.homogeneity import about_operations, factors_of
 from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
 from opslang.lint.templates.shapes import adem, adem_range, cartan, only_product, says_range, wu
 
+TEMPLATE = 30
+"""Points at which a general relation is tried; its first wrong coefficient may stand far out."""
 ENOUGH, FEW = 6, 3
 """Points at which a relation is tried: between operations, and between classes, where a failure would not count."""
 _PARITY = ("even", "odd", "parity", "power", "divisible", "congruent", "binary", "mod", "digit", "multiple")
@@ -25,7 +27,7 @@ def template(statement: Statement, known: Known) -> Verdict | None:
     if shape is not None:
         return _adem(statement, known, shape)  # type: ignore[arg-type]
     if cartan(statement):
-        trial = tried(statement, known, statement.conditions)
+        trial = tried(statement, known, statement.conditions, TEMPLATE // 2)
         if trial is None:
             return None
         if trial.false:
@@ -37,7 +39,7 @@ def template(statement: Statement, known: Known) -> Verdict | None:
 def _adem(statement: Statement, known: Known, shape: tuple) -> Verdict | None:  # type: ignore[type-arg]
     name, a, b = shape
     said = (*statement.conditions, *known.ranges)
-    trial = tried(statement, known, (*adem_range(name, a, b), *statement.conditions))
+    trial = tried(statement, known, (*adem_range(name, a, b), *statement.conditions), TEMPLATE)
     if trial is None:
         return None
     if trial.false:
