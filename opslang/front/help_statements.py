@@ -24,7 +24,7 @@ STATEMENTS: dict[str, Topic] = {
         "Formulas with = between them are compared: true, or false with the difference. Chains a = b = c are "
         "compared link by link.",
         ("Sq^2 Sq^2 = Sq^3 Sq^1", "Sq^2 Sq^2 iota_3 = Sq^3 Sq^1 iota_3"),
-        ("=", "compare"),
+        ("=",),
     ),
     "let": Topic(
         "Declares classes, of which nothing but the degree is known, or abbreviates an expression. With "
@@ -55,6 +55,24 @@ STATEMENTS: dict[str, Topic] = {
         "Gives the dimensions of the cohomology of a space from degree 0 on.",
         ("series K(Z/4, 3) to 12",),
         ("dimension", "poincare series"),
+    ),
+    "map": Topic(
+        "Names a map of spaces by the classes that those of its target are taken to; f^* pulls classes back. The map is checked: "
+        "degrees, coefficients, relations and operations of the target. `standard`, `diagonal` and `projection 1` name maps that need no "
+        "further word; `map h = g f` composes.",
+        ("map f : K(Z/2, 3) -> K(Z/2, 5) with iota_5 -> Sq^2 iota_3", "f^*(Sq^1 iota_5)", "map r : BU(3) -> BO(6) standard", "r^* w_4"),
+        ("pull-back",),
+    ),
+    "bundle": Topic(
+        "Names a vector bundle by its total class w, c or p; w_i(E), c_i(E), W_i(E) are classes of its base, sums, inverses and tensor "
+        "products with line bundles are bundles, and thom(E) is a space. The declared class is checked.",
+        ("bundle E of rank 3 over RP^4(a) with w = 1 + a", "w_2(E + E)", "on thom(E)", "Sq^1 U"),
+        ("vector bundle", "whitney sum"),
+    ),
+    "compare": Topic(
+        "Compares two spaces up to a degree: dimensions, ranks of operations, of their composites, of cup products. What it prints shows "
+        "that the two are not isomorphic; that it finds nothing shows nothing.",
+        ("compare RP^4, CP^2 to 8",),
     ),
     "comment": Topic(
         "Everything from # to the end of the line is a comment. A line that is one is kept in a saved session.",

@@ -76,6 +76,38 @@ class Builder(IndexRules, SpaceRules):
         space = children[1] if len(children) > 3 else None
         return s.SeriesStatement(space, children[-1].value, span_of(children))
 
+    def map_statement(self, children: list[Any]) -> s.MapStatement:
+        how = children[6]
+        assignments = tuple([child for child in children[7:] if isinstance(child, s.Assignment)])
+        number = int(children[7].value) if how.type == "PROJECTION" else 0
+        word = how.type.lower()
+        return s.MapStatement(children[1].value, children[3], children[5], word, assignments, number, span_of(children))
+
+    def compose_statement(self, children: list[Any]) -> s.ComposeStatement:
+        return s.ComposeStatement(children[1].value, children[3], span_of(children))
+
+    def bundle_statement(self, children: list[Any]) -> s.BundleStatement:
+        rank: s.Index | None = None
+        space: s.Space | None = None
+        for before, child in zip(children, children[1:]):
+            if getattr(before, "type", "") == "RANK":
+                rank = child.value
+            elif getattr(before, "type", "") == "OVER":
+                space = child
+        classes = tuple([child for child in children if isinstance(child, s.Assignment)])
+        return s.BundleStatement(children[1].value, rank, space, classes, span_of(children))
+
+    def bundle_sum_statement(self, children: list[Any]) -> s.BundleSumStatement:
+        return s.BundleSumStatement(children[1].value, children[3], span_of(children))
+
+    def assignment(self, children: list[Any]) -> s.Assignment:
+        return s.Assignment(children[0], children[2], span_of(children))
+
+    total_class = assignment
+
+    def compare_statement(self, children: list[Any]) -> s.CompareStatement:
+        return s.CompareStatement(children[1], children[3], children[5].value, span_of(children))
+
     # --- expressions -----------------------------------------------------------------------------
 
     def sign(self, children: list[Any]) -> Sign:
@@ -155,6 +187,10 @@ class Builder(IndexRules, SpaceRules):
     def conjugate(self, children: list[Any]) -> s.Conjugate | s.Power:
         scripts = sorted_scripts(children[0], children[4:], self.text, "power")
         return with_power(s.Conjugate(children[2], span_of(children[:4])), scripts)
+
+    def construction(self, children: list[Any]) -> s.Construction | s.Power:
+        scripts = sorted_scripts(children[0], children[4:], self.text, "power")
+        return with_power(s.Construction(children[0].value, children[2], span_of(children[:4])), scripts)
 
     def letter(self, children: list[Any]) -> Part:
         return Part(children[0].value, span_of(children))

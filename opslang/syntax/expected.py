@@ -19,12 +19,24 @@ USAGE: dict[str, str] = {
     "WHY": "why Sq^2 Sq^2",
     "BASIS": "basis H^9(K(Z/2, 3))",
     "SERIES": "series K(Z/4, 3) to 20",
+    "MAP": "map f : X -> Y with y -> x^2, map f : X -> Y standard, map d : X -> X x X diagonal, or map h = g f",
+    "BUNDLE": "bundle E of rank 3 over X with w = 1 + a, or bundle D = E + F",
+    "COMPARE": "compare RP^4, CP^2 to 8",
 }
 """How each statement is written."""
 
 _SINGLES = (
     ("IN", "`in`"),
     ("TO", "`to`"),
+    ("WITH", "`with`"),
+    ("OVER", "`over`"),
+    ("OF", "`of rank`"),
+    ("RANK", "`rank`"),
+    ("DIAGONAL", "`diagonal`"),
+    ("PROJECTION", "`projection`"),
+    ("STANDARD", "`standard`"),
+    ("COLON", "a colon"),
+    ("ARROW", "->"),
     ("EQUALS", "`=`"),
     ("LETTER_H", "H^n"),
     ("COMMA", "a comma"),
@@ -85,7 +97,7 @@ def wanted_in_words(accepted: Set[str], previous: str) -> str:
         seen.discard("UNDER")
     wanted += [words for kind, words in _SINGLES if kind in seen]
     if not wanted:
-        return "something else"
+        return "an opening (" if "LPAR" in seen else "something else"
     return wanted[0] if len(wanted) == 1 else ", ".join(wanted[:-1]) + " or " + wanted[-1]
 
 

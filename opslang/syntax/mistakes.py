@@ -14,7 +14,7 @@ from opslang.syntax.spellings import GREEK_NAMES, KEYWORDS, RESERVED, STATEMENT_
 
 _TAKEN = frozenset(kind for kind, _ in RESERVED.values())
 _LETTERS = frozenset(("NAME", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X"))
-_SPATIAL = frozenset(("PRIME_WORD", "SPACE_WORD", "ON", "BASIS", "SERIES"))
+_SPATIAL = frozenset(("PRIME_WORD", "SPACE_WORD", "ON", "BASIS", "SERIES", "MAP", "BUNDLE", "COMPARE"))
 _PROJECTIVE = frozenset(("RP", "CP", "HP"))
 LONGEST_SPLIT = 40
 """No mend is offered for longer runs of letters."""
@@ -35,24 +35,27 @@ def mistakes(reading: Reading) -> list[Diagnostic]:
     long = _long_index(tokens, indices)
     if long is not None:
         return [long]
-    spaces = _spaces_from(tokens)
+    spaces = _spaces_among(tokens)
     found = (
         slip
         for at, token in enumerate(tokens)
-        if (check := (_AMONG_SPACES if at >= spaces else _CHECKS).get(token.kind)) is not None
+        if (check := (_AMONG_SPACES if at in spaces else _CHECKS).get(token.kind)) is not None
         and (not indices[at] or token.kind == "RUN")
         and (slip := check(reading, at)) is not None
     )
     return list(islice(found, MANY))
 
 
-def _spaces_from(tokens: list[Token]) -> int:
-    """The place from which on names are names of spaces."""
+def _spaces_among(tokens: list[Token]) -> range:
+    """The places at which names are names of spaces."""
+    end = len(tokens)
+    if tokens[0].kind in ("MAP", "BUNDLE"):
+        return range(next((at for at, token in enumerate(tokens) if token.kind in ("WITH", "EQUALS")), end))
     if tokens[0].kind in _SPATIAL:
-        return 0
+        return range(end)
     if tokens[0].kind == "LET":
-        return next((at for at, token in enumerate(tokens) if token.kind == "IN"), len(tokens))
-    return len(tokens)
+        return range(next((at for at, token in enumerate(tokens) if token.kind == "IN"), end), end)
+    return range(0)
 
 
 def index_positions(tokens: list[Token]) -> list[bool]:

@@ -82,7 +82,8 @@ def read(text: str) -> Statement | None:
         return None if body is None else WhyStatement(body, (word.start(1), body.span[1]))
     from opslang.syntax.plain_statements import READERS
 
-    return READERS[keyword](text[:end])
+    reader = READERS.get(keyword)
+    return None if reader is None else reader(text[:end])
 
 
 def value_of(script: str) -> int:

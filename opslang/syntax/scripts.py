@@ -10,7 +10,7 @@ from opslang.syntax import surface as s
 from opslang.syntax.parts import Part, Script, Scripted, end, single, start
 from opslang.syntax.spelling import shown
 
-Base = TypeVar("Base", s.Bockstein, s.Milnor, s.Fundamental, s.Name, s.Number, s.Group, s.Conjugate)
+Base = TypeVar("Base", s.Bockstein, s.Milnor, s.Fundamental, s.Name, s.Number, s.Group, s.Conjugate, s.Construction)
 
 
 def sorted_scripts(base: Any, scripts: list[Script], text: str, allowed: str) -> Scripted:

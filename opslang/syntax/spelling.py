@@ -15,6 +15,7 @@ from opslang.report.diagnostic import Diagnostic, error, warning
 from opslang.syntax.spellings import (
     COMMANDS,
     FONTS,
+    INSIDE,
     KEYWORDS,
     LATER,
     LATER_INSIDE,
@@ -66,6 +67,7 @@ _SHAPES = rf"""
     | (?P<command>\\[A-Za-z]+)
     | (?P<escape>\\.)
     | (?P<dots>\.\.+)
+    | (?P<arrow>-{{1,2}}>)
     | (?P<sign>.)
     """
 _FLAGS = re.VERBOSE | re.DOTALL
@@ -76,7 +78,7 @@ _EMPTY = re.compile(r"\s*\}")
 _PIECES = re.compile(r"Sq|[A-Za-z]")
 _CLOSERS = {"RPAR": "LPAR", "RSQUARE": "LSQUARE", "RBRACE": "LBRACE"}
 _OPENERS = frozenset(_CLOSERS.values())
-_SPATIAL = frozenset(("SPACE_WORD", "ON", "BASIS", "SERIES"))
+_SPATIAL = frozenset(("SPACE_WORD", "ON", "BASIS", "SERIES", "MAP", "BUNDLE", "COMPARE"))
 _LETTERS = frozenset(("NAME", "RUN", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X", "PP", "QQ"))
 _NEUTRAL_ESCAPES = frozenset(",;:!> \t\\[]()/")
 
@@ -113,6 +115,8 @@ class Reading:
         self.tokens.append(Token(kind, value, start, end))
         if kind == "IN" and self._keyword == "LET":
             self._spatial = True
+        elif self._keyword in ("MAP", "BUNDLE") and kind in ("WITH", "EQUALS"):
+            self._spatial = False
 
     def _previous(self) -> str:
         return self.tokens[-1].kind if self.tokens else ""
@@ -152,12 +156,12 @@ class Reading:
             self._keyword = KEYWORDS[text]
             self._spatial = self._keyword in _SPATIAL
             self._put((self._keyword, text), start, end)
+        elif text in INSIDE.get(self._keyword, ()):
+            self._put((INSIDE[self._keyword][text], text), start, end)
         elif (not self.tokens and text in LATER) or text in LATER_INSIDE:
             self._later(LATER_INSIDE.get(text) or LATER[text], start, end)
         elif text == "in" and (not self.tex or self._keyword == "LET"):
             self._put(("IN", "in"), start, end)
-        elif text == "to" and self._keyword == "SERIES":
-            self._put(("TO", "to"), start, end)
         elif self._spatial:
             self._spatial_word(text, start, end)
         elif text in WORDS:
@@ -256,6 +260,9 @@ class Reading:
 
     def dangling(self, text: str, start: int, end: int) -> None:
         self._fault("unfinished", "the line is to go on after \\, and nothing follows", start, start + 1, "", "")
+
+    def arrow(self, text: str, start: int, end: int) -> None:
+        self._put(("ARROW", "->"), start, end)
 
     def dots(self, text: str, start: int, end: int) -> None:
         self._sign(("DOTS", "…"), start, end)
@@ -369,7 +376,7 @@ _READERS = {
     name: getattr(Reading, name)
     for name in (
         *("number", "word", "pull", "raised_prime", "raised", "lowered", "primes", "face", "aside", "command"),
-        *("escape", "dots", "dangling", "sign"),
+        *("escape", "dots", "arrow", "dangling", "sign"),
     )
 }
 

@@ -18,19 +18,19 @@ KEYWORDS: dict[str, str] = {
     "why": "WHY",
     "basis": "BASIS",
     "series": "SERIES",
+    "map": "MAP",
+    "bundle": "BUNDLE",
+    "compare": "COMPARE",
 }
 """The first words of the statements that are read, with their tokens."""
 
 LATER: dict[str, str] = {
-    "map": "the statement `map`",
-    "bundle": "the statement `bundle`",
     "manifold": "the statement `manifold`",
     "kernel": "the statement `kernel`",
     "image": "the statement `image`",
     "rank": "the statement `rank`",
     "solve": "the statement `solve`",
     "relations": "the statement `relations`",
-    "compare": "the statement `compare`",
     "for": "a family `for all …`",
     "sum": "a sum over a variable",
 }
@@ -45,6 +45,14 @@ LATER_INSIDE: dict[str, str] = {
 """Words of the same kind that may stand further on in a line."""
 
 STATEMENT_WORDS = frozenset(KEYWORDS) | frozenset(LATER)
+
+INSIDE: dict[str, dict[str, str]] = {
+    "SERIES": {"to": "TO"},
+    "COMPARE": {"to": "TO"},
+    "MAP": {"with": "WITH", "diagonal": "DIAGONAL", "projection": "PROJECTION", "standard": "STANDARD"},
+    "BUNDLE": {"with": "WITH", "over": "OVER", "of": "OF", "rank": "RANK"},
+}
+"""Words that have a meaning inside the statement of a keyword, with their tokens."""
 
 RESERVED: dict[str, Meaning] = {
     "Sq": ("SQ", "Sq"),
@@ -120,6 +128,9 @@ WORDS: dict[str, Meaning] = {
     "binom": ("BINOM", "binom"),
     "cup": ("CUP", "cup"),
     "cross": ("CROSS", "cross"),
+    "transgression": ("CONSTRUCT", "transgression"),
+    "suspension": ("CONSTRUCT", "suspension"),
+    "dual": ("CONSTRUCT", "dual"),
 }
 """Words that are one token wherever they stand as a whole run of letters."""
 
@@ -153,6 +164,9 @@ SYMBOLS: dict[str, Meaning] = {
     ",": ("COMMA", ","),
     ";": ("SEMICOLON", ";"),
     "∈": ("IN", "in"),
+    ":": ("COLON", ":"),
+    "→": ("ARROW", "->"),
+    "↦": ("ARROW", "->"),
     ".": ("DOT", "."),
     "…": ("DOTS", "…"),
     "⋯": ("DOTS", "…"),
@@ -187,6 +201,11 @@ COMMANDS: dict[str, Meaning] = {
     "circ": ("COMPOSE", "compose"),
     "oplus": ("OPLUS", "+"),
     "in": ("IN", "in"),
+    "colon": ("COLON", ":"),
+    "to": ("ARROW", "->"),
+    "rightarrow": ("ARROW", "->"),
+    "longrightarrow": ("ARROW", "->"),
+    "mapsto": ("ARROW", "->"),
     "lvert": ("BAR", "|"),
     "rvert": ("BAR", "|"),
     "vert": ("BAR", "|"),

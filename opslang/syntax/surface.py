@@ -108,6 +108,15 @@ class Conjugate:
 
 
 @frozen
+class Construction:
+    """`transgression(…)`, `suspension(…)` of a class, `dual(…)` of a bundle."""
+
+    head: str
+    body: "Sum"
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
 class PullBack:
     """`f^*(…)` or `f^* x`: the pull-back along a named map."""
 
@@ -125,7 +134,7 @@ class Power:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-Factor = Union[Operation, Bockstein, Milnor, Fundamental, Name, Number, Group, Conjugate, PullBack, Power]
+Factor = Union[Operation, Bockstein, Milnor, Fundamental, Name, Number, Group, Conjugate, Construction, PullBack, Power]
 
 
 @frozen
@@ -288,6 +297,67 @@ class SeriesStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
+@frozen
+class Assignment:
+    """`x -> a^2`, where a map takes a class of its target; `w = 1 + a`, the total class of a bundle."""
+
+    left: Sum
+    right: Sum
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
+class MapStatement:
+    """`map f : X -> Y with …`; `how` is "with", "diagonal", "standard" or "projection" (on the factor `number`)."""
+
+    name: str
+    source: Space
+    target: Space
+    how: str
+    assignments: tuple[Assignment, ...] = ()
+    number: int = 0
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
+class ComposeStatement:
+    """`map h = g f`: first f, then g."""
+
+    name: str
+    body: Product
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
+class BundleStatement:
+    """`bundle E of rank 3 over X with w = 1 + a`: rank and space may be None; with no classes, the universal bundle."""
+
+    name: str
+    rank: Index | None
+    space: Space | None
+    classes: tuple[Assignment, ...] = ()
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
+class BundleSumStatement:
+    """`bundle D = E + F`: a name for a bundle that is made from others."""
+
+    name: str
+    body: Sum
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
+class CompareStatement:
+    """`compare X, Y to 12`."""
+
+    left: Space
+    right: Space
+    to: Index
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
 Statement = Union[
     PrimeStatement,
     SpaceStatement,
@@ -299,4 +369,9 @@ Statement = Union[
     WhyStatement,
     BasisStatement,
     SeriesStatement,
+    MapStatement,
+    ComposeStatement,
+    BundleStatement,
+    BundleSumStatement,
+    CompareStatement,
 ]
