@@ -112,6 +112,7 @@ def test_text_in_mathematics_is_one_token() -> None:
         (r"\only<2->{x} \alert{y}", "x y"),
         ("x''", "x ' '"),
         (r"x = y \eqno (1)", "x = y"),
+        (r"x \not= y \not\in z \not\sim w", r"x \neq y \notin z \not \sim w"),
         (r"\unknowncommand{x}", r"\unknowncommand { x }"),
     ],
 )

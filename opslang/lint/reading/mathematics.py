@@ -168,6 +168,19 @@ def braced(reader: Reader, token: Token) -> None:
     bare(reader, token)
 
 
+def negated(reader: Reader, token: Token) -> None:
+    """\\not= and \\not\\in are one sign each."""
+    if reader.intake.follows("="):
+        reader.keep("command", "\\neq", token)
+        return
+    following = reader.intake.peek()
+    if following is not None and following.text in signs.NEGATED:
+        reader.intake.pending.pop()
+        reader.keep("command", signs.NEGATED[following.text], token)
+    else:
+        reader.keep("command", token.text, token)
+
+
 def equation_number(reader: Reader, token: Token) -> None:
     """\\eqno (1): the number goes, to the end of the display."""
     while (following := reader.intake.peek()) is not None:
@@ -342,6 +355,7 @@ def _table() -> dict[str, Handler]:
         (("\\\\",), row),
         (("\\begin",), begin),
         (("\\mathchoice",), first_choice),
+        (("\\not",), negated),
         (("\\eqno", "\\leqno"), equation_number),
     )
     for names, handler in plan:

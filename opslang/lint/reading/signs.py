@@ -135,6 +135,9 @@ ALIASES = {
 }  # fmt: skip
 """Commands that print the same sign, or the same one larger: the left becomes the right."""
 
+NEGATED = {"\\in": "\\notin", "\\ni": "\\notni", "\\mid": "\\nmid", "\\cong": "\\ncong"}
+"""What \\not makes of a relation."""
+
 OF_ITS_KIND: dict[str, tuple[str, str]] = {
     "\\vert": ("other", "|"), "\\lbrack": ("other", "["), "\\rbrack": ("other", "]"), "\\sp": ("sup", "^"),
     "\\sb": ("sub", "_"), "\\bgroup": ("open", "{"), "\\egroup": ("close", "}"), "\\lt": ("other", "<"),
