@@ -139,8 +139,9 @@ def test_letters_of_indices_are_numbers() -> None:
 
 _PIECES = st.sampled_from(
     [r"\mathrm{Sq}^", "{", "}", "2", "n", "x", "_", "^", "(", ")", "=", "+", "-", r"\sum", r"\binom", "&", r"\\", ",",
-     r"\text{if }", "|", r"\mid", r"\{", r"\}", r"\in", "H^2", r"\colon", r"\to", "[", "]", r"\cdots", r"\lfloor", r"\chi",
-     r"\frac", "d", r"\mapsto", r"\quad", ".", r"\begin{cases}", r"\end{cases}", r"\bar", "C", "'", "!"]
+     r"\text{if }", "|", r"\mid", r"\{", r"\}", r"\in", "H^2", r"\colon", r"\to", "[", "]", r"\cdots",
+     r"\lfloor", r"\chi", r"\frac", "d", r"\mapsto", r"\quad", ".", r"\begin{cases}", r"\end{cases}",
+     r"\bar", "C", "'", "!"]
 )  # fmt: skip
 
 

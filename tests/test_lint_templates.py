@@ -1,4 +1,6 @@
-"""General relations with symbols: the right ones agree, planted slips are found; Wu's formula against published values."""
+"""General relations with symbols: the right ones agree, planted slips are found; Wu's formula against published
+values.
+"""
 
 from __future__ import annotations
 
@@ -9,8 +11,8 @@ from opslang.lint.run import lint_text
 from opslang.lint.templates.wu import formula
 
 MINE = (
-    "degrees-differ", "adem-cartan", "false-for-small-values", "bound-variable", "index-of-one-digit", "ambiguous-scope",
-    "rows-of-a-map", "coproduct", "wu-formula",
+    "degrees-differ", "adem-cartan", "false-for-small-values", "bound-variable", "index-of-one-digit",
+    "ambiguous-scope", "rows-of-a-map", "coproduct", "wu-formula",
 )  # fmt: skip
 BAD = [(name, line) for name in MINE for line in getattr(rule_named(name), "bad", ())]
 GOOD = [(name, line) for name in MINE for line in getattr(rule_named(name), "good", ())]
@@ -33,7 +35,9 @@ def test_good_lines_are_passed_over(name: str, tex: str) -> None:
 
 
 # Adem 1952; Steenrod and Epstein 1962, chapter I and chapter VI.
-ADEM = r"$\mathrm{Sq}^a\mathrm{Sq}^b=\sum_{j=0}^{\lfloor a/2\rfloor}\binom{b-1-j}{a-2j}\mathrm{Sq}^{a+b-j}\mathrm{Sq}^j$"
+ADEM = (
+    r"$\mathrm{Sq}^a\mathrm{Sq}^b=\sum_{j=0}^{\lfloor a/2\rfloor}\binom{b-1-j}{a-2j}\mathrm{Sq}^{a+b-j}\mathrm{Sq}^j$"
+)
 ODD = (
     r"Let $p$ be an odd prime. For $a<pb$, "
     r"$P^aP^b=\sum_{j=0}^{\lfloor a/p\rfloor}(-1)^{a+j}\binom{(p-1)(b-j)-1}{a-pj}P^{a+b-j}P^j$"
@@ -57,7 +61,9 @@ def test_a_slip_in_adems_relation_is_found(old: str, new: str) -> None:
     assert said(f"For $0<a<2b$, {ADEM.replace(old, new)}")
 
 
-@pytest.mark.parametrize(("old", "new"), [(r"(-1)^{a+j}", ""), (r"(b-j)-1", r"(b-j)"), (r"a-pj", r"a-2j"), ("a+b-j", "a-j")])
+@pytest.mark.parametrize(
+    ("old", "new"), [(r"(-1)^{a+j}", ""), (r"(b-j)-1", r"(b-j)"), (r"a-pj", r"a-2j"), ("a+b-j", "a-j")]
+)
 def test_a_slip_in_the_odd_relation_is_found(old: str, new: str) -> None:
     assert said(ODD) == []
     assert said(ODD.replace(old, new))

@@ -1,4 +1,6 @@
-"""Graded groups and spaces as sides: H^n(X; G), K(G, n), sets of maps O(a, b).  What stands in their brackets stays tokens."""
+"""Graded groups and spaces as sides: H^n(X; G), K(G, n), sets of maps O(a, b).  What stands in their brackets stays
+tokens.
+"""
 
 from __future__ import annotations
 

@@ -17,8 +17,9 @@ NOT_LETTERS = frozenset(
 GREEK = frozenset(
     "\\" + name
     for name in (
-        "alpha beta gamma delta epsilon varepsilon zeta eta theta vartheta iota kappa lambda mu nu xi pi varpi rho varrho "
-        "sigma varsigma tau upsilon phi varphi chi psi omega Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi Psi Omega ell"
+        "alpha beta gamma delta epsilon varepsilon zeta eta theta vartheta iota kappa lambda mu nu xi pi varpi rho "
+        "varrho sigma varsigma tau upsilon phi varphi chi psi omega Gamma Delta Theta Lambda Xi Pi Sigma Upsilon Phi "
+        "Psi Omega ell"
     ).split()
 )
 ENDS_LENGTH = frozenset(("|", "\\|"))

@@ -1,4 +1,6 @@
-"""A formula cut into segments: rows joined, columns parted, words and punctuation taken out.  Knows layout, no grammar."""
+"""A formula cut into segments: rows joined, columns parted, words and punctuation taken out.  Knows layout, no
+grammar.
+"""
 
 from __future__ import annotations
 
@@ -88,7 +90,9 @@ def _parts(tokens: Sequence[Token], at: int) -> bool:
 
 
 def _joined_rows(tokens: list[Token], pairs: dict[int, int]) -> tuple[list[Token], dict[int, int]]:
-    """Rows that only go on (they begin or the row before ends with a sign of a sum or product) joined to the one before."""
+    """Rows that only go on (they begin or the row before ends with a sign of a sum or product) joined to the one
+    before.
+    """
     drop: set[int] = set()
     tops = []
     at = 0

@@ -12,7 +12,8 @@ GLUES: dict[str, str] = {
 EQUALS = frozenset(("=", "\\equiv", "≡"))
 DEFINES = frozenset(("\\coloneqq", ":=", "\\coloneq", "\\eqqcolon", "\\triangleq", "\\defeq", "≔"))
 ORDERS: dict[str, str] = {
-    "<": "<", ">": ">", "\\leq": "≤", "\\geq": "≥", "\\neq": "≠", "≤": "≤", "≥": "≥", "\\ll": "<", "\\gg": ">", "≠": "≠",
+    "<": "<", ">": ">", "\\leq": "≤", "\\geq": "≥", "\\neq": "≠", "≤": "≤", "≥": "≥", "\\ll": "<", "\\gg": ">",
+    "≠": "≠",
 }  # fmt: skip
 MEMBER = frozenset(("\\in", "∈"))
 MAPS = frozenset(("\\mapsto", "↦"))
@@ -30,8 +31,9 @@ ARROWS = frozenset(
 )
 COLONS = frozenset((":", "\\colon"))
 OTHERS = frozenset(
-    "\\cong \\simeq \\approx \\sim \\subset \\subseteq \\supset \\supseteq \\ni \\notin \\mid \\Rightarrow \\Leftrightarrow "
-    "\\iff \\Longrightarrow \\leftrightarrow \\propto \\perp \\subsetneq \\Longleftrightarrow ∉ ⊂ ⊆ ≅ ≃ \\preceq "
+    "\\cong \\simeq \\approx \\sim \\subset \\subseteq \\supset \\supseteq \\ni \\notin \\mid \\Rightarrow "
+    "\\Leftrightarrow \\iff \\Longrightarrow \\leftrightarrow \\propto \\perp \\subsetneq "
+    "\\Longleftrightarrow ∉ ⊂ ⊆ ≅ ≃ \\preceq "
     "\\leftarrow \\nmid \\prec \\succ \\rightleftarrows \\rightrightarrows".split()
 )
 """Relations that are read only so far as to part two sides."""
@@ -39,16 +41,16 @@ OTHERS = frozenset(
 PUNCTUATION = frozenset((",", ";", "."))
 
 CONDITIONAL = (
-    "if", "for", "when", "whenever", "where", "with", "provided", "unless", "such that", "because", "since", "as long as",
-    "in case", "on", "assuming", "s.t.",
+    "if", "for", "when", "whenever", "where", "with", "provided", "unless", "such that", "because", "since",
+    "as long as", "in case", "on", "assuming", "s.t.",
 )  # fmt: skip
 """Words after which a condition stands."""
 
 SUMS = frozenset("\\sum \\prod \\bigoplus \\bigotimes \\bigcup ∑ \\coprod".split())
 ACCENTS: dict[str, str] = {
-    "\\overline": "bar", "\\bar": "bar", "\\tilde": "tilde", "\\widetilde": "tilde", "\\hat": "hat", "\\widehat": "hat",
-    "\\underline": "under", "\\vec": "vec", "\\dot": "dot", "\\check": "check", "\\breve": "breve", "\\mathring": "ring",
-    "\\acute": "acute", "\\grave": "grave", "\\ddot": "ddot",
+    "\\overline": "bar", "\\bar": "bar", "\\tilde": "tilde", "\\widetilde": "tilde", "\\hat": "hat",
+    "\\widehat": "hat", "\\underline": "under", "\\vec": "vec", "\\dot": "dot", "\\check": "check",
+    "\\breve": "breve", "\\mathring": "ring", "\\acute": "acute", "\\grave": "grave", "\\ddot": "ddot",
 }  # fmt: skip
 MAP_LETTERS = frozenset(("d", "\\partial", "\\delta", "\\tau", "\\varphi"))
 """Letters that are read as a map where something stands at their right that they may act on."""

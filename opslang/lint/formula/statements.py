@@ -4,28 +4,21 @@ from __future__ import annotations
 
 from attrs import define, evolve, field
 
-from opslang.lint.formula.bounds import comparisons, parted
-from opslang.lint.formula.expression import sum_of
-from opslang.lint.formula.groups import cohomology, eilenberg, hom_set
+from opslang.lint.formula.bounds import comparisons
 from opslang.lint.formula.integers import as_index, number_letters, with_numbers
-from opslang.lint.formula.rows import RELATIONS, Segment, segments_of
+from opslang.lint.formula.rows import Segment, segments_of
+from opslang.lint.formula.sides import has_operation, kind_of, read_set, read_side, signs_of
 from opslang.lint.formula.signs import (
     ARROWS,
     COLONS,
     CONDITIONAL,
-    DEFINES,
-    EQUALS,
-    MAPS,
     MEMBER,
     ORDERS,
 )
 from opslang.lint.formula.stretch import NotRead, Stretch, shown
 from opslang.lint.model import (
-    Coefficient,
     Condition,
-    Index,
     Kind,
-    Opaque,
     Origin,
     Side,
     Statement,
@@ -70,7 +63,7 @@ class _Builder:
         if self._condition_in_brackets(segment):
             return
         modulus = self._modulus(stretch)
-        signs = _signs(stretch)
+        signs = signs_of(stretch)
         if not signs:
             if not self._set(segment):
                 self._bare(segment)
@@ -93,7 +86,9 @@ class _Builder:
             self.done[-1] = evolve(self.done[-1], notes=(*self.done[-1].notes, words))
 
     def _starts_anew(self, segment: Segment, signs: list[int]) -> bool:
-        """Whether a segment in the scope of an `if` is a statement of its own: a comma or gap, then an equation of operations."""
+        """Whether a segment in the scope of an `if` is a statement of its own: a comma or gap, then an equation of
+        operations.
+        """
         if segment.words or not ({"gap", "row", ";"} & set(segment.before)):
             return False
         return has_operation(segment.stretch)
@@ -120,7 +115,7 @@ class _Builder:
         try:
             conditions = comparisons(inner)
         except NotRead:
-            return bool(_signs(inner)) and self._words_condition(segment)
+            return bool(signs_of(inner)) and self._words_condition(segment)
         if not conditions:
             return False
         self._add_conditions(conditions, segment)
@@ -232,7 +227,7 @@ class _Builder:
         start = spans[0][0]
         for number, text in enumerate(texts):
             right, missing = read[number + 1]
-            kind = _kind(text, left, right)
+            kind = kind_of(text, left, right)
             begin = (
                 start
                 if number == 0 and not inherited
@@ -328,96 +323,10 @@ class _Builder:
                 inherited,
                 formula=self.formula,
                 at=at,
-            )  # fmt: skip
+            )
         )
 
     def finished(self) -> tuple[Statement, ...]:
         """All statements of the formula."""
         self._flush()
         return tuple(self.done)
-
-
-def _signs(stretch: Stretch) -> list[int]:
-    """The places of the signs of relation outside brackets."""
-    found = []
-    at = stretch.at
-    while at < stretch.end:
-        token = stretch.tokens[at]
-        if token.kind in ("other", "command") and token.text in RELATIONS:
-            found.append(at)
-            if token.text == ":" and at + 1 < stretch.end and stretch.tokens[at + 1].text == "=":
-                found.pop()
-        at = stretch.pairs.get(at, at) + 1
-    return found
-
-
-def _kind(sign: str, left: Side, right: Side) -> Kind:
-    if sign in MEMBER:
-        return "membership"
-    if sign in MAPS:
-        return "mapsto"
-    if sign in DEFINES:
-        return "definition"
-    if sign in EQUALS:
-        if isinstance(left, Index) or isinstance(right, Index):
-            return "degree"
-        return "relation"
-    return "other"
-
-
-def has_operation(stretch: Stretch) -> bool:
-    """Whether the head of an operation stands among the tokens."""
-    tokens = stretch.tokens
-    for at in range(stretch.at, stretch.end):
-        token = tokens[at]
-        if token.kind == "word" and token.text in ("Sq", "SQ"):
-            return True
-        if token.text == "S" and at + 1 < stretch.end and tokens[at + 1].text == "q":
-            return True
-        if token.text in ("P", "Q", "\\beta", "\\chi") and token.kind in ("letter", "command"):
-            return True
-    return False
-
-
-def read_set(stretch: Stretch) -> tuple[tuple[Side, ...], tuple[Condition, ...], tuple[Unread, ...], Origin] | None:
-    """The members and the conditions of a set, or of a polynomial ring on one; None where there is no bar in it."""
-    close = stretch.end - 1
-    begin = next((at for at in range(stretch.at, stretch.end) if stretch.pairs.get(at) == close), None)
-    if begin is None or stretch.tokens[begin].text not in ("\\{", "[", "("):
-        return None
-    bar = next((at for at in range(begin + 1, close) if stretch.tokens[at].text in ("\\mid", "|", ":")), None)
-    if bar is None or begin > stretch.at + 6 or not has_operation(Stretch(stretch.tokens, stretch.pairs, begin, bar)):
-        return None
-    inner = Stretch(stretch.tokens, stretch.pairs, begin + 1, bar)
-    read = [read_side(part) for part in parted(inner, ",")]
-    conditions: list[Condition] = []
-    for part in parted(Stretch(stretch.tokens, stretch.pairs, bar + 1, close), ",", ";"):
-        try:
-            found = comparisons(Stretch(part.tokens, part.pairs, part.at, part.end))
-        except NotRead:
-            found = ()
-        conditions += found or (Condition("words", None, None, shown(part.rest()), part.whole()),)
-    unread = tuple([one for _, many in read for one in many])
-    return tuple([side for side, _ in read]), tuple(conditions), unread, stretch.origin(stretch.at, stretch.end)
-
-
-def read_side(stretch: Stretch) -> tuple[Side, tuple[Unread, ...]]:
-    """One side of a relation, and what of it was not understood."""
-    trial = Stretch(stretch.tokens, stretch.pairs, stretch.at, stretch.end)
-    if trial.done:
-        return Opaque((), stretch.whole()), (Unread("nothing stands here", stretch.whole()),)
-    for reader in (cohomology, eilenberg, hom_set):
-        group = reader(trial)
-        if group is not None:
-            return group, ()
-        trial.at = stretch.at
-    try:
-        body = sum_of(trial)
-    except NotRead as trouble:
-        return Opaque(tuple(stretch.rest()), stretch.whole()), (Unread(trouble.reason, trouble.at),)
-    terms = body.terms
-    if len(terms) == 1 and len(terms[0][1].factors) == 1:
-        only = terms[0][1].factors[0]
-        if isinstance(only, Coefficient) and only.value.kind == "length":
-            return only.value, ()
-    return body, ()

@@ -28,7 +28,9 @@ class NotRead(Exception):
 
 
 def pairs_of(tokens: Sequence[Token]) -> dict[int, int]:
-    """For each opening brace, bracket or environment the number of its closing token; brackets without a partner have none."""
+    """For each opening brace, bracket or environment the number of its closing token; brackets without a partner
+    have none.
+    """
     pairs: dict[int, int] = {}
     waiting: list[tuple[str, int]] = []
     for at, token in enumerate(tokens):

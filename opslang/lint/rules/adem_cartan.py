@@ -10,7 +10,8 @@ RULE = LintRule(
     title="a general relation with a wrong index, binomial, limit or without its range",
     why="The general relations are copied from paper to paper, and a slip in an index is copied with them.",
     bad=(
-        r"$\mathrm{Sq}^a\mathrm{Sq}^b=\sum_{j=0}^{\lfloor a/2\rfloor}\binom{b-j}{a-2j}\mathrm{Sq}^{a+b-j}\mathrm{Sq}^j$ for $0<a<2b$",
+        r"$\mathrm{Sq}^a\mathrm{Sq}^b=\sum_{j=0}^{\lfloor a/2\rfloor}\binom{b-j}{a-2j}\mathrm{Sq}^{a+b-j}\mathrm{Sq}^j$"
+        r" for $0<a<2b$",
         r"$\mathrm{Sq}^a\mathrm{Sq}^b=\sum_{j}{b-1-j \choose a-2j}\mathrm{Sq}^{a+b-j}\mathrm{Sq}^j$",
         r"$\mathrm{Sq}^k(xy)=\sum_{i=1}^{k}\mathrm{Sq}^i x\,\mathrm{Sq}^{k-i}y$",
     ),

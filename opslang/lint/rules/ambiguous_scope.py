@@ -4,7 +4,19 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from opslang.lint.model import ClassName, Finding, Known, Operation, Origin, Power, Product, Statement, Sum, Verdict, found
+from opslang.lint.model import (
+    ClassName,
+    Finding,
+    Known,
+    Operation,
+    Origin,
+    Power,
+    Product,
+    Statement,
+    Sum,
+    Verdict,
+    found,
+)
 from opslang.lint.rule import LintRule
 
 
@@ -14,7 +26,9 @@ def check(statement: Statement, known: Known) -> Verdict | None:
         return None
     for side in statement.sides:
         for at in _ambiguous(side, known):
-            message = "does the operation act on the first class alone, or on the product?\nput its argument in brackets"
+            message = (
+                "does the operation act on the first class alone, or on the product?\nput its argument in brackets"
+            )
             return found(Finding("ambiguous-scope", "warning", message, at))
     return None
 
@@ -34,7 +48,11 @@ def _in_product(product: Product, known: Known) -> Iterator[Origin]:
             continue
         if head.head == "P" and known.prime in (None, 2):
             continue
-        if isinstance(first, (ClassName, Power)) and isinstance(second, (ClassName, Power)) and not any(glues[at + 1 : at + 3]):
+        if (
+            isinstance(first, (ClassName, Power))
+            and isinstance(second, (ClassName, Power))
+            and not any(glues[at + 1 : at + 3])
+        ):
             yield Origin(head.at.file, head.at.start, second.at.end)
 
 

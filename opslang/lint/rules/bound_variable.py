@@ -5,7 +5,7 @@ from __future__ import annotations
 from opslang.lint.model import Finding, Known, Statement, Verdict
 from opslang.lint.rule import LintRule
 from opslang.lint.symbolic.binding import Misbound, slips
-from opslang.lint.symbolic.homogeneity import about_operations
+from opslang.lint.symbolic.walk import about_operations
 
 _WORDS = {
     "own-limit": "the summation variable {0} stands in its own limit",

@@ -28,7 +28,9 @@ def check(statement: Statement, known: Known) -> Verdict | None:
     extra = [f"Sq^{i} ⊗ Sq^{j}" for i, j in sorted(odd, reverse=True) if (i, j) not in wanted]
     words = [f"missing: {', '.join(missing)}"] if missing else []
     words += [f"does not belong: {', '.join(extra)}"] if extra else []
-    return found(Finding("coproduct", "error", f"this is not the coproduct of Sq^{n}\n{'; '.join(words)}", statement.at))
+    return found(
+        Finding("coproduct", "error", f"this is not the coproduct of Sq^{n}\n{'; '.join(words)}", statement.at)
+    )
 
 
 def _single(side: Sum) -> int | None:

@@ -1,4 +1,6 @@
-"""Both sides of a relation have one degree; a class lies in the group it is said to lie in; an operation raises as it should."""
+"""Both sides of a relation have one degree; a class lies in the group it is said to lie in; an operation raises as
+it should.
+"""
 
 from __future__ import annotations
 

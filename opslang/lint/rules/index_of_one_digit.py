@@ -23,7 +23,9 @@ def check(statement: Statement, known: Known) -> Verdict | None:
 def _finding(first: Token, last: Token) -> Finding:
     at = Origin(first.file, first.start, last.end)
     length = last.end - first.start
-    message = f"TeX takes one digit as the index, and the other {'is a factor' if length == 2 else 'digits are a factor'}"
+    message = (
+        f"TeX takes one digit as the index, and the other {'is a factor' if length == 2 else 'digits are a factor'}"
+    )
     return Finding("index-of-one-digit", "warning", message + "\nput the whole index in braces", at)
 
 

@@ -8,8 +8,8 @@ from collections.abc import Iterable
 from opslang.lint.model import Finding, Known, Statement, Sum
 from opslang.lint.rule import Draft, LintRule
 from opslang.lint.symbolic.degrees import Measure, Unmeasured
-from opslang.lint.symbolic.homogeneity import about_operations
 from opslang.lint.symbolic.polynomial import Polynomial
+from opslang.lint.symbolic.walk import about_operations
 
 
 def check(draft: Draft) -> Iterable[Finding]:
@@ -47,7 +47,9 @@ def _odd_rows(rows: list[tuple[Statement, Polynomial]]) -> Iterable[Finding]:
         return
     for statement, shift in rows:
         if shift != usual:
-            message = f"this row raises the degree by {shift}, the other rows by {usual}\none map raises all degrees alike"
+            message = (
+                f"this row raises the degree by {shift}, the other rows by {usual}\none map raises all degrees alike"
+            )
             yield Finding("rows-of-a-map", "error", message, statement.at)
 
 

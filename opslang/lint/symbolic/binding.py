@@ -9,7 +9,7 @@ from attrs import frozen
 from opslang.lint.formula.integers import indices_in, letters_of
 from opslang.lint.model import BigSum, Bounds, ClassName, Dots, Index, Known, Mystery, Operation, Statement, Sum
 from opslang.lint.symbolic.degrees import own_variables
-from opslang.lint.symbolic.homogeneity import factors_of
+from opslang.lint.symbolic.walk import factors_of
 
 
 @frozen

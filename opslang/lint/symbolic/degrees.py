@@ -1,7 +1,8 @@
 """Degrees of expressions with symbols.  Knows the degrees of the operations (|Sq^i| = i, |P^i| = 2i(p-1), |beta| = 1,
 |Q_k|) and what the draft says of its classes; computes no value of an operation.
 
-A class of unknown degree counts with a symbol `|x|`, so that it may cancel.  Source: Steenrod and Epstein 1962; Milnor 1958.
+A class of unknown degree counts with a symbol `|x|`, so that it may cancel.  Source: Steenrod and Epstein 1962;
+Milnor 1958.
 """
 
 from __future__ import annotations
@@ -196,7 +197,12 @@ class Measure:
         degree = self.known.degree(name)
         if degree is not None:
             fact = self.known.fact(name)
-            if fact is not None and self.bound and fact.degree is not None and not fact.degree.symbols.isdisjoint(self.bound):
+            if (
+                fact is not None
+                and self.bound
+                and fact.degree is not None
+                and not fact.degree.symbols.isdisjoint(self.bound)
+            ):
                 raise Unmeasured("a letter stands for two things")
             return self._with_prime(degree)
         if self.bound and any(not set(letters_of(index)).isdisjoint(self.bound) for index in name.index):
@@ -268,7 +274,9 @@ def _is_power_of_two(value: Polynomial) -> bool:
 
 
 def own_variables(bounds: Bounds) -> tuple[str, ...]:
-    """The variables that a sum binds: with limits its first, with conditions those that all stand on one side of an equation."""
+    """The variables that a sum binds: with limits its first, with conditions those that all stand on one side of an
+    equation.
+    """
     if bounds.lower is not None or not bounds.conditions:
         return bounds.variables
     for condition in bounds.conditions:
@@ -339,5 +347,7 @@ def equations(conditions: tuple[Condition, ...], fixed: frozenset[str] = frozens
 
 def normal(value: Polynomial) -> Polynomial:
     """I_+ is |I|."""
-    renamed = {name: Polynomial.symbol(f"|{name[0]}|") for name in value.symbols if len(name) == 3 and name.endswith("_+")}
+    renamed = {
+        name: Polynomial.symbol(f"|{name[0]}|") for name in value.symbols if len(name) == 3 and name.endswith("_+")
+    }
     return value.substitute(renamed)

@@ -1,32 +1,27 @@
 """Whether the parts of a statement have one degree, and one sort.
 
-Strategy.  All terms of both sides are measured; each one is compared with the first.  A difference that is 0 is well; one that
-is a number, or a form in free symbols that is not 0, is a fault; one that holds a degree which is not known is not checked.
+Strategy.  All terms of both sides are measured; each one is compared with the first.  A difference that is 0 is
+well; one that
+is a number, or a form in free symbols that is not 0, is a fault; one that holds a degree which is not known is not
+checked.
 """
 
 from __future__ import annotations
-
-from collections.abc import Iterator
 
 from attrs import frozen
 
 from opslang.lint.formula.integers import indices_in, letters_of
 from opslang.lint.model import (
-    BigSum,
     Call,
     ClassName,
     Cohomology,
-    Conjugate,
-    Factor,
     Finding,
-    Group,
     Index,
     Known,
     Number,
     Operation,
     Origin,
     Power,
-    Product,
     Side,
     Statement,
     Sum,
@@ -35,7 +30,9 @@ from opslang.lint.model import (
 from opslang.lint.symbolic.degrees import Measure, Term, Unmeasured, equations, is_zero, normal
 from opslang.lint.symbolic.polynomial import Polynomial
 from opslang.lint.symbolic.values import polynomial_of
+from opslang.lint.symbolic.walk import about_operations, factors_of, operations_in
 
+ODD_PRIMES = (3, 5, 7, 11, 13, 17)
 NEAR = 1500
 """A symbolic degree said further away than this many signs is not held against a formula."""
 
@@ -48,72 +45,6 @@ class Apart:
     wanted: Polynomial
     at: Origin
     inside: bool
-
-
-def factors_of(node: object) -> Iterator[Factor]:
-    """All factors in a side, inner ones too."""
-    if isinstance(node, Sum):
-        for _, product in node.terms:
-            yield from factors_of(product)
-    elif isinstance(node, Product):
-        for factor in node.factors:
-            yield from factors_of(factor)
-    elif isinstance(node, (Group, Conjugate)):
-        yield node
-        yield from factors_of(node.body)
-    elif isinstance(node, Power):
-        yield node
-        yield from factors_of(node.base)
-    elif isinstance(node, Call):
-        yield node
-        for argument in node.arguments:
-            yield from factors_of(argument)
-    elif isinstance(node, BigSum):
-        yield node
-        yield from factors_of(node.body)
-    elif isinstance(node, Index):
-        for part in node.parts:
-            yield from factors_of(part)
-    elif node is not None and not isinstance(node, (str, int, Cohomology)):
-        yield node  # type: ignore[misc]
-
-
-def operations_in(statement: Statement) -> list[Operation]:
-    """The operations that occur in a statement."""
-    return [factor for side in statement.sides for factor in factors_of(side) if isinstance(factor, Operation)]
-
-
-def about_operations(statement: Statement, known: Known) -> bool:
-    """Whether a statement speaks of operations: P only at odd primes, beta only where it acts on something or is alone with Sq^1."""
-    for operation in operations_in(statement):
-        if operation.head == "Sq":
-            return True
-        if operation.head == "P" and known.prime != 2 and (known.prime is not None or "prime" in known.conventions):
-            return True
-        if operation.head == "Q" and known.conventions.get("Q"):
-            return True
-    return any(_acting_bockstein(side) for side in statement.sides)
-
-
-def _acting_bockstein(side: object) -> bool:
-    """Whether a Bockstein has a class at its right somewhere."""
-    if isinstance(side, Sum):
-        return any(_acting_bockstein(product) for _, product in side.terms)
-    if isinstance(side, Product):
-        for left, right in zip(side.factors, side.factors[1:]):
-            if isinstance(left, Operation) and left.head == "beta" and not left.upper:
-                if isinstance(right, (ClassName, Group, Power)):
-                    return True
-        return any(_acting_bockstein(factor) for factor in side.factors)
-    if isinstance(side, (Group, Conjugate)):
-        return _acting_bockstein(side.body)
-    if isinstance(side, Power):
-        return _acting_bockstein(side.base)
-    if isinstance(side, Call):
-        return any(_acting_bockstein(argument) for argument in side.arguments)
-    if isinstance(side, BigSum):
-        return _acting_bockstein(side.body)
-    return False
 
 
 # --- the checks ---------------------------------------------------------------------------------
@@ -277,9 +208,15 @@ def certain(difference: Polynomial, statement: Statement, known: Known, measure:
             continue
         if len(signs) > 1 and not _said_near(symbol, statement, known):
             raise NotKnown(f"how {symbol} and the indices of the formula are related")
-    if len(signs) > 1 and difference.symbols == {"p"} and any(difference.at({"p": p}) == 0 for p in (3, 5, 7, 11, 13, 17)):
+    if (
+        len(signs) > 1
+        and difference.symbols == {"p"}
+        and any(difference.at({"p": p}) == 0 for p in (3, 5, 7, 11, 13, 17))
+    ):
         raise NotKnown("the prime")
-    indices = {letter for operation in operations_in(statement) for index in operation.upper for letter in letters_of(index)}
+    indices = {
+        letter for operation in operations_in(statement) for index in operation.upper for letter in letters_of(index)
+    }
     if len(signs) > 1 and _top_square(statement) and indices & difference.symbols - {"p"}:
         raise NotKnown("how the index and the degree of the class are related")
 

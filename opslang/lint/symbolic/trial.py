@@ -13,9 +13,9 @@ from attrs import evolve, frozen
 from opslang.lint.formula.integers import indices_in, letters_of
 from opslang.lint.model import BigSum, ClassFact, ClassName, Condition, Index, Known, Statement, Sum
 from opslang.lint.symbolic.degrees import own_variables
-from opslang.lint.symbolic.homogeneity import factors_of
 from opslang.lint.symbolic.polynomial import Polynomial
 from opslang.lint.symbolic.values import compare, value_of
+from opslang.lint.symbolic.walk import factors_of
 
 MOST_POINTS = 9
 LARGEST_INDEX = 22

@@ -97,7 +97,9 @@ def compare(sign: str, left: Index, right: Index, values: Mapping[str, int]) -> 
 
 
 def polynomial_of(index: Index, length: Length | None = None) -> Polynomial | None:
-    """An integer expression as a polynomial; `length` says what |…| comes to.  None where it holds an ellipsis or an unknown length."""
+    """An integer expression as a polynomial; `length` says what |…| comes to.  None where it holds an ellipsis or an
+    unknown length.
+    """
     kind, parts = index.kind, index.parts
     if kind == "number":
         return Polynomial.of(index.number or 0)
@@ -152,7 +154,7 @@ def power(base: Polynomial, exponent: Polynomial) -> Polynomial | None:
     """A power; 2^{j-1} is half of the symbol 2^{j}."""
     fixed = exponent.constant
     if fixed is not None:
-        if isinstance(fixed, Fraction) or fixed < 0 or fixed > MOST_POWER and base.constant is None:
+        if isinstance(fixed, Fraction) or fixed < 0 or (fixed > MOST_POWER and base.constant is None):
             return Polynomial.symbol(f"({base})^{{{exponent}}}")
         if fixed > 64:
             return None

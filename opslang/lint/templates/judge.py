@@ -1,15 +1,29 @@
 """The verdict on a relation with symbols: where it must hold, tried there.
 
-Adem's relation must hold in its range, Cartan's everywhere; any other relation where the draft says, and where the draft
+Adem's relation must hold in its range, Cartan's everywhere; any other relation where the draft says, and where the
+draft
 says nothing it is a fault only if it holds nowhere.
 """
 
 from __future__ import annotations
 
 from opslang.lint.formula.integers import letters_of
-from opslang.lint.model import Call, Condition, Dots, Finding, Known, Number, Operation, Statement, Sum, Verdict, found
-from opslang.lint.symbolic.homogeneity import about_operations, factors_of
+from opslang.lint.model import (
+    Call,
+    Condition,
+    Dots,
+    Finding,
+    Index,
+    Known,
+    Number,
+    Operation,
+    Statement,
+    Sum,
+    Verdict,
+    found,
+)
 from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
+from opslang.lint.symbolic.walk import about_operations, factors_of
 from opslang.lint.templates.shapes import adem, adem_range, cartan, only_product, says_range, wu
 
 TEMPLATE = 30
@@ -25,7 +39,7 @@ def template(statement: Statement, known: Known) -> Verdict | None:
         return None
     shape = adem(statement)
     if shape is not None:
-        return _adem(statement, known, shape)  # type: ignore[arg-type]
+        return _adem(statement, known, shape)
     if cartan(statement):
         trial = tried(statement, known, statement.conditions, TEMPLATE // 2)
         if trial is None:
@@ -36,7 +50,7 @@ def template(statement: Statement, known: Known) -> Verdict | None:
     return None
 
 
-def _adem(statement: Statement, known: Known, shape: tuple) -> Verdict | None:  # type: ignore[type-arg]
+def _adem(statement: Statement, known: Known, shape: tuple[str, Index, Index]) -> Verdict | None:
     name, a, b = shape
     said = (*statement.conditions, *known.ranges)
     trial = tried(statement, known, (*adem_range(name, a, b), *statement.conditions), TEMPLATE)
@@ -46,7 +60,9 @@ def _adem(statement: Statement, known: Known, shape: tuple) -> Verdict | None:  
         return found(_wrong(statement, trial, "adem-relation", "this is not the Adem relation"))
     if not says_range(said, a, b) and letters_of(a):
         wanted = {"Sq": "0 < a < 2b", "P": "a < pb", "PbP": "a ≤ pb"}[name]
-        message = f"the range of the Adem relation is not said\nit holds for {wanted} only, a and b being the two indices"
+        message = (
+            f"the range of the Adem relation is not said\nit holds for {wanted} only, a and b being the two indices"
+        )
         return found(Finding("range-missing", "warning", message, statement.at))
     return Verdict("agrees", reason="agrees for " + trial.extent)
 
@@ -97,7 +113,12 @@ def _quantified(statement: Statement, known: Known, domain: tuple[Condition, ...
 
 
 def _fit(statement: Statement, known: Known) -> bool:
-    if statement.kind != "relation" or len(statement.sides) != 2 or statement.unread or known.prime is None and "prime" not in known.conventions:
+    if (
+        statement.kind != "relation"
+        or len(statement.sides) != 2
+        or statement.unread
+        or (known.prime is None and "prime" not in known.conventions)
+    ):
         return False
     if not all(isinstance(side, Sum) for side in statement.sides):
         return False

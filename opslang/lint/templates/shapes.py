@@ -1,9 +1,24 @@
-"""The shapes of the general relations: which statements are Adem's, Cartan's or Wu's.  Knows shapes, computes nothing."""
+"""The shapes of the general relations: which statements are Adem's, Cartan's or Wu's.  Knows shapes, computes
+nothing.
+"""
 
 from __future__ import annotations
 
 from opslang.lint.formula.integers import letters_of
-from opslang.lint.model import BigSum, ClassName, Coefficient, Condition, Group, Index, Operation, Power, Product, Side, Statement, Sum
+from opslang.lint.model import (
+    BigSum,
+    ClassName,
+    Coefficient,
+    Condition,
+    Group,
+    Index,
+    Operation,
+    Power,
+    Product,
+    Side,
+    Statement,
+    Sum,
+)
 
 NOUGHT = Index("number", (0,))
 

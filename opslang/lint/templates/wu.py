@@ -14,9 +14,9 @@ from itertools import product as grid
 from opslang.ground.arith import binomial_mod
 from opslang.lint.formula.closed import to_surface
 from opslang.lint.model import ClassName, Finding, Index, Known, Statement, Sum, Verdict, found
-from opslang.lint.symbolic.homogeneity import factors_of
 from opslang.lint.symbolic.trial import free_symbols
 from opslang.lint.symbolic.values import compare, value_of
+from opslang.lint.symbolic.walk import factors_of
 from opslang.lint.templates.shapes import wu
 from opslang.syntax import surface as sf
 
@@ -153,5 +153,3 @@ def _finding(statement: Statement, letter: str, k: int, m: int, at: str) -> Find
 
 def _name(monomial: Monomial, letter: str) -> str:
     return " ".join(f"{letter}_{index}" for index in monomial) or "1"
-
-
