@@ -16,7 +16,8 @@ from pathlib import Path
 from time import monotonic, perf_counter, sleep
 
 import pytest
-from command import environment, opslang
+from command import ROOT, environment, opslang
+from documentation import blocks
 from terminal import PATIENCE, Terminal
 
 if sys.platform == "win32":
@@ -358,3 +359,17 @@ def test_in_tmux(tmp_path: Path) -> None:
         tmux("send-keys", "C-d")
     finally:
         subprocess.run(["tmux", "-S", str(tmp_path / "socket"), "kill-server"], capture_output=True, check=False)
+
+
+def test_the_session_in_the_readme_goes_as_it_stands_there(tmp_path: Path) -> None:
+    ((_, session),) = [block for block in blocks(ROOT / "README.md", "text") if block[1].startswith("ops 1>")]
+    with Terminal(tmp_path, columns=80, rows=60) as terminal:
+        terminal.at_prompt(1)
+        for prompt, line in re.findall(r"^ops (\d+)> (.*)$", session, re.M):
+            terminal.at_prompt(int(prompt))
+            terminal.press(line + "\r")
+            terminal.sees(line)
+        terminal.sees("saved in")
+        shown = terminal.text()
+    assert session in shown + "\n"
+    assert "Sq^2 r_1" in (tmp_path / "morning.ops").read_text()
