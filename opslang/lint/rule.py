@@ -14,6 +14,7 @@ from os.path import dirname, join
 
 from attrs import field, frozen
 
+from opslang.lint.context.stream import Paragraph
 from opslang.lint.model import Finding, Known, Severity, Statement, Verdict
 from opslang.lint.reading.document import Document
 
@@ -32,6 +33,7 @@ class Draft:
 
     document: Document
     units: tuple[Unit, ...]
+    paragraphs: tuple[Paragraph, ...] = ()
 
 
 Check = Callable[[Statement, Known], "Verdict | None"]

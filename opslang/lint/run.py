@@ -10,6 +10,7 @@ from collections.abc import Iterable, Sequence
 from hashlib import sha256
 
 from opslang.lint.context.build import units_of
+from opslang.lint.context.stream import paragraphs
 from opslang.lint.model import Finding, Origin, Verdict
 from opslang.lint.reading import Document, Notice, read_file, read_text
 from opslang.lint.reading.project import Project, load
@@ -72,7 +73,7 @@ def report_on(document: Document, name: str) -> Report:
         checked += known
         unchecked += not known
         formulas.append(_covered(document, unit, verdict))
-    findings += _compared(Draft(document, tuple(units)))
+    findings += _compared(Draft(document, tuple(units), tuple(paragraphs(document.pieces))))
     rows = [_row(document, finding) for finding in findings if not allowed.allows(finding)]
     return Report(
         name,

@@ -9,7 +9,7 @@ from collections.abc import Iterator, Mapping, Sequence
 
 from attrs import define, evolve, field
 
-from opslang.lint.context.directives import Allowed, Said, allowed_in, directives_of
+from opslang.lint.context.directives import Allowed, allowed_in, directives_of
 from opslang.lint.context.facts import Ledger, Saying, Spot
 from opslang.lint.context.names import class_names, names_of
 from opslang.lint.context.sayings import degree_written, from_formula, from_words, in_its_ring, numbers_said
@@ -136,7 +136,10 @@ class _Builder:
     def _hypothesis(self, paragraph: Paragraph, spot: Spot) -> bool:
         """Whether a declaration stands behind an if."""
         before = paragraph.text[max(0, spot.offset - 24) : spot.offset].lower()
-        return any(f" {word} " in f" {before} " for word in ("if", "when", "whenever", "unless", "suppose"))
+        return any(
+            f" {word} " in f" {before} "
+            for word in ("if", "when", "whenever", "unless", "suppose", "need", "needs", "would", "require")
+        )
 
     # --- the second pass ------------------------------------------------------------------------
 
@@ -171,7 +174,8 @@ class _Builder:
             ranges=tuple(ranges),
             rules=rules,
             integers=self.numbers.get(spot.paragraph, frozenset()) | no_operations(paragraph, formula, spot.offset),
-            sentences=paragraph.text[start:end],
+            sentences=paragraph.shown(start, end),
+            lead=paragraph.shown(paragraph.sentences[paragraph.sentence_at(spot.offset)][0], spot.offset),
             script=context.lines,
             space=particular_space(paragraph, spot.offset),
         )
@@ -239,19 +243,34 @@ class _Builder:
         degree = _index_degree(name)
         if degree is None:
             return fact
+        same, here, section = self.settings.spaces_near(spot)
+        near = next((space for space in same if _fits(space, degree)), None)
+        if near is not None and near.group is not None:
+            return _of_space(degree, near)
         if fact is not None and (fact.order is not None or fact.order_text):
             return fact if fact.degree is not None else evolve(fact, degree=degree)
-        here, section = self.settings.spaces_near(spot)
-        for spaces in (here, section[::-1]):
-            fitting = [space for space in spaces if _fits(space, degree)]
+        for spaces in (here, section):
+            fitting = [space for space in spaces if space.kind == "K" and _fits(space, degree)]
             groups = {space.group for space in fitting}
             if len(groups) == 1:
-                group = groups.pop()
-                assert group is not None
-                return ClassFact(degree, group.order, group.text, fitting[0].text, "the space named beside it")
+                return _of_space(degree, fitting[0])
             if groups:
                 return ClassFact(degree, None, "", "several", "several spaces of this degree are named")
+        general = [space for space in (*here, *section) if space.kind == "K"]
+        if len({space.group for space in general}) == 1:
+            return _of_space(degree, general[0])
         return fact or ClassFact(degree, None, "", "", "the notation of fundamental classes")
+
+
+def _of_space(degree: Polynomial, space: SpaceSaid) -> ClassFact:
+    """The fundamental class of that degree with the coefficients of a space."""
+    assert space.group is not None
+    text = (
+        space.text
+        if space.kind == "K" and _fits(space, degree)
+        else f"K({space.text.partition(',')[0].removeprefix('K(')},{degree})"
+    )
+    return ClassFact(degree, space.group.order, space.group.text, text, "the space named beside it")
 
 
 def first_primitive(left: Sum, right: Sum) -> str | None:
@@ -268,6 +287,8 @@ def first_primitive(left: Sum, right: Sum) -> str | None:
 
 
 def _fits(space: SpaceSaid, degree: Polynomial) -> bool:
+    if space.kind == "group":
+        return True
     return space.kind == "K" and space.group is not None and degree_written(space.degree) == degree
 
 

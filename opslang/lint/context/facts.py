@@ -14,7 +14,6 @@ from attrs import define, evolve, field, frozen
 from opslang.lint.model import NOWHERE, ClassFact, Origin
 from opslang.lint.symbolic.polynomial import Polynomial
 
-
 SEVERAL = "several spaces"
 
 

@@ -60,7 +60,7 @@ class Scripts:
             return EMPTY
         found = EMPTY
         for (file, start), context in self._steps:
-            if file == formula.file and start < formula.start or file < formula.file:
+            if (file == formula.file and start < formula.start) or file < formula.file:
                 found = context
         return found
 

@@ -11,7 +11,7 @@ from collections.abc import Sequence
 from attrs import define, field, frozen
 
 from opslang.lint.context.facts import Spot
-from opslang.lint.context.spaces import SpaceSaid, mentioned, particular, written
+from opslang.lint.context.spaces import NO_GROUP, SpaceSaid, group_said, mentioned, particular, written
 from opslang.lint.context.stream import Paragraph
 from opslang.lint.reading import Formula
 
@@ -89,13 +89,13 @@ class Settings:
         lasting = {said.prime for said in self.primes if not said.local and said.spot.section < spot.section}
         return lasting.pop() if len(lasting) == 1 else ODD if lasting == {ODD} else None
 
-    def spaces_near(self, spot: Spot) -> tuple[list[SpaceSaid], list[SpaceSaid]]:
-        """The spaces named in the paragraph of a place, and those named before it in its section."""
-        here = [at.space for at in self.spaces if at.spot.paragraph == spot.paragraph]
-        section = [
-            at.space for at in self.spaces if at.spot.section == spot.section and at.spot.paragraph < spot.paragraph
-        ]
-        return here, section
+    def spaces_near(self, spot: Spot) -> tuple[list[SpaceSaid], ...]:
+        """The spaces named in the sentence of a place (the nearest first), in its paragraph, in its section before."""
+        here = [at for at in self.spaces if at.spot.paragraph == spot.paragraph]
+        same = [at for at in here if at.spot.sentence == spot.sentence]
+        same.sort(key=lambda at: (at.spot.offset > spot.offset, abs(at.spot.offset - spot.offset)))
+        section = [at for at in self.spaces if at.spot.section == spot.section and at.spot.paragraph < spot.paragraph]
+        return tuple([[at.space for at in found] for found in (same, here, section[::-1])])
 
 
 def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: int, section: int) -> None:
@@ -115,6 +115,13 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
             found.append(PrimeSaid(spot, int(prime[1]), not lasting))
         if "K(" in plain or "B^" in plain:
             settings.spaces += [SpaceAt(spot, space) for space in mentioned(plain)]
+    for group in _GROUP.finditer(text):
+        said = group_said(written(paragraph.formula(group[1]).tokens))
+        if said is not None:
+            spot = Spot(section, at, paragraph.sentence_at(group.start()), group.start())
+            settings.spaces.append(
+                SpaceAt(spot, SpaceSaid("group", written(paragraph.formula(group[1]).tokens), "", said))
+            )
     found += _primes_in_words(settings, paragraph, at, section)
     settings.primes += sorted(found, key=lambda said: said.spot.offset)
 
@@ -143,22 +150,26 @@ def _primes_in_words(settings: Settings, paragraph: Paragraph, at: int, section:
     return found
 
 
-_PARTICULAR = re.compile(r"\b(?:manifolds?|spheres?|suspensions?|stunted|skelet\w+|cells?|complex of dimension|lens spaces?)\b", re.IGNORECASE)
+_GROUP = re.compile(r"\bgroup ([\ue000-\uf7ff])")
+_PARTICULAR = re.compile(
+    r"\b(?:manifolds?|spheres?|suspensions?|stunted|skelet\w+|cells?|complex of dimension|lens spaces?)\b",
+    re.IGNORECASE,
+)
 _HYPOTHESIS = re.compile(
     r"\b(?:if|when|whenever|suppose|assume|provided|such that|with|unless|satisfying|satisfies|let|put|requires?|needs)\b"
     r"(?:\s+(?:that|also|moreover|we have|both))*\s*(?:[\ue000-\uf7ff]\s*(?:,|and|, and)\s*)*$",
     re.IGNORECASE,
 )
-_SUPPOSED = re.compile(r"^[^.;]{0,30}\b(?:is|are|was|were) (?:supposed|assumed|given)\b", re.IGNORECASE)
+_SUPPOSED = re.compile(r"^\s*(?:is|are|was|were) (?:supposed|assumed|given)\b", re.IGNORECASE)
 
 
 def particular_space(paragraph: Paragraph, place: int) -> str:
     """What the sentence around a formula says of its space that makes more hold there than in general."""
     start, end = paragraph.sentences[paragraph.sentence_at(place)]
     for formula, at in zip(paragraph.formulas, paragraph.places):
-        if start <= at < end:
+        if at < end:
             found = particular(written(formula.tokens))
-            if found:
+            if found and (start <= at or found == NO_GROUP):
                 return found
     words = _PARTICULAR.search(paragraph.text, start, end)
     return words.group() if words else ""

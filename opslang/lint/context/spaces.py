@@ -144,7 +144,13 @@ _NAMES = re.compile(r"\b(RP|CP|HP)\^\{?(\w+|\\infty)\}?")
 
 def named_in(text: str) -> list[SpaceSaid]:
     """The projective spaces named in a plain spelling."""
-    return [SpaceSaid(found[1], found[0], found[2]) for found in _NAMES.finditer(text.replace("{RP}", "RP").replace("{CP}", "CP"))]
+    return [
+        SpaceSaid(found[1], found[0], found[2])
+        for found in _NAMES.finditer(text.replace("{RP}", "RP").replace("{CP}", "CP"))
+    ]
+
+
+NO_GROUP = "a space with a group that is 0"
 
 
 def particular(text: str) -> str:
@@ -153,5 +159,5 @@ def particular(text: str) -> str:
         if space.degree.isdigit():
             return space.text
     if re.match(r"H\^.*=0[.,;]?$", text):
-        return "a space with a group that is 0"
+        return NO_GROUP
     return ""

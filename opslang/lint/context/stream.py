@@ -10,6 +10,7 @@ from collections.abc import Iterator, Sequence
 
 from attrs import field, frozen
 
+from opslang.lint.context.spaces import written
 from opslang.lint.reading import Formula, Piece, Text
 
 FIRST = 0xE000
@@ -41,6 +42,10 @@ class Paragraph:
             if offset < end:
                 return number
         return len(self.sentences) - 1
+
+    def shown(self, start: int, end: int) -> str:
+        """A stretch of the text with the formulas written out, each between dollars."""
+        return re.sub(SIGN, lambda found: f"${written(self.formula(found.group()).tokens)}$", self.text[start:end])
 
     def around(self, offset: int, reach: int = 1) -> tuple[int, int]:
         """The stretch of text of the sentence at an offset and of that many before and after it."""

@@ -108,9 +108,7 @@ def desk(prime: int, script: tuple[str, ...]) -> tuple[Desk, frozenset[str]]:
     }
     here = session.scope.localised()
     if here is not None:
-        kept |= {
-            of.letter + ("" if of.index is None else f"_{of.index}") + "'" * of.primes for of in here.classes
-        }
+        kept |= {of.letter + ("" if of.index is None else f"_{of.index}") + "'" * of.primes for of in here.classes}
     return session, frozenset(kept)
 
 
@@ -126,6 +124,8 @@ def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None
     again = _by_convention(*whole, known, values, why)
     if again.answer in ("true", "unknown") or decision.answer == "unknown":
         return again
+    if again.name == "degrees-differ" and decision.name != again.name:
+        return decision  # the name stands for something else here
     return evolve(again, special=again.special or decision.special)
 
 
@@ -244,6 +244,8 @@ def _read(outcome: Outcome, session: Desk, statement: sf.RelationStatement, spec
     from opslang.render.text import element_text
 
     name = outcome.name or ""
+    if name == "degrees-differ" and any(not side.terms for side in outcome.sides):
+        name = ""  # a side that comes to 0 has any degree
     if outcome.verdict == "error":
         return Decision("unknown", outcome.message or "it cannot be computed", name=name, special=special)
     texts = [element_text(side) for side in outcome.sides]

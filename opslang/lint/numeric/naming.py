@@ -77,7 +77,9 @@ class Naming:
             value = value_of(index, self.values)
             parts.append(spelled(index) if value is None else str(value))
         below = ",".join(parts)
-        return name.letter + (f"_{below}" if below else "") + "'" * name.primes + (f"^{name.label}" if name.label else "")
+        return (
+            name.letter + (f"_{below}" if below else "") + "'" * name.primes + (f"^{name.label}" if name.label else "")
+        )
 
     def fact(self, name: ClassName) -> ClassFact:
         """What is known of a class.  Raises Unnamed where its degree is not."""

@@ -20,13 +20,15 @@ def check(statement: Statement, known: Known) -> Verdict | None:
     decision = decide(left, right, known)
     if decision.answer == "true":
         return Verdict("true", reason=decision.reason)
-    if not decision.certainly_false or decision.name == "degrees-differ":
+    if not decision.certainly_false:
         return Verdict("not-checked", (), decision.special or decision.reason, decision.needed)
     again = decide(left, right, known, why=True)
     return found(_finding(statement, again))
 
 
 def _finding(statement: Statement, decision: Decision) -> Finding:
+    if decision.name in ("degrees-differ", "wrong-page"):
+        return Finding("false-relation", "error", decision.reason, statement.at)
     what = "operations" if decision.sort == "operation" else "classes"
     if decision.right == "0":
         message = f"the left side is not 0\nit is {decision.left}"
