@@ -15,8 +15,8 @@ from opslang.ground.grading import degree
 from opslang.ground.source import Source, Span
 from opslang.ir.measure import element_degree, element_excess
 from opslang.ir.order import word_key
-from opslang.ir.outcome import Kind, Link, Outcome, Verdict
-from opslang.ir.tree import ClassElement, Element, OperationElement
+from opslang.ir.outcome import Kind, Link, Outcome, Verdict, changed
+from opslang.ir.tree import Class, ClassElement, Element, OperationElement
 from opslang.meaning import statements
 from opslang.meaning.indices import number
 from opslang.meaning.lower import Lowering
@@ -90,7 +90,7 @@ class Session:
         try:
             kind = _kind(statement)
             outcome = self._answer(statement, Outcome(source, span, kind, "ok", self.scope.prime), lowering)
-            return evolve(outcome, diagnostics=(*lowering.diagnostics, *outcome.diagnostics))
+            return changed(outcome, diagnostics=(*lowering.diagnostics, *outcome.diagnostics))
         except Refusal as refusal:
             found = refusal.diagnostic
         except TooLarge as refusal:
@@ -128,17 +128,17 @@ class Session:
                 lowering.diagnostics += statements.declare(statement, scope)
             case sf.AbbreviateStatement():
                 value = statements.abbreviate(statement, scope, lowering)
-                self._one_name_one_class(value, statement.span)
-                return self._described(evolve(blank, degree=value.degree), (value,))
+                self._one_name_one_class(value.classes, statement.span)
+                return self._described(changed(blank, degree=value.degree), (value,))
             case sf.OnStatement():
                 lowering.diagnostics += statements.on(statement, scope)
-                return evolve(blank, space=scope.space.text if scope.space else None)
+                return changed(blank, space=scope.space.text if scope.space else None)
             case sf.SpaceStatement():
                 lowering.diagnostics += statements.space(statement, scope)
-                return evolve(blank, space=scope.spaces[statement.name].text)
+                return changed(blank, space=scope.spaces[statement.name].text)
             case sf.PrimeStatement():
                 lowering.diagnostics += statements.prime(statement, scope)
-                return evolve(blank, prime=scope.prime)
+                return changed(blank, prime=scope.prime)
             case sf.WhyStatement():
                 return self._why(statement, blank, lowering)
             case sf.BasisStatement():
@@ -149,7 +149,7 @@ class Session:
 
     def _expression(self, statement: sf.ExpressionStatement, blank: Outcome, lowering: Lowering) -> Outcome:
         value = as_sort_or_class(lowering.sum(statement.body), "class", statement.body.span)
-        self._one_name_one_class(value, statement.span)
+        self._one_name_one_class(value.classes, statement.span)
         engine = self.engine()
         engine.start()
         element = self.normal(value)
@@ -170,24 +170,26 @@ class Session:
 
     def _measured(self, outcome: Outcome, element: Element, written: int | None) -> Outcome:
         degree = element_degree(element) if element.terms else written
-        return evolve(outcome, element=element, degree=degree, excess=element_excess(element))
+        return changed(outcome, element=element, degree=degree, excess=element_excess(element))
 
     def _described(self, outcome: Outcome, values: tuple[Value, ...]) -> Outcome:
         """The sort of the values, and the space that their classes live in."""
         sort = next((value.sort for value in values if value.sort != "scalar"), "class")
         if sort == "operation":
-            return evolve(outcome, sort="operation")
+            return changed(outcome, sort="operation")
         if self.scope.space is not None:
-            return evolve(outcome, sort="class", space=self.scope.space.text)
+            return changed(outcome, sort="class", space=self.scope.space.text)
         classes = {of for value in values for of in value.classes}
         space = None
         if classes and all(of.letter == "iota" for of in classes):
             space = " x ".join(f"K(Z/{self.scope.prime}, {n})" for n in sorted(of.degree for of in classes))
-        return evolve(outcome, sort="class", space=space)
+        return changed(outcome, sort="class", space=space)
 
-    def _one_name_one_class(self, value: Value, span: Span) -> None:
+    def _one_name_one_class(self, classes: frozenset[Class], span: Span) -> None:
+        if len(classes) < 2:
+            return
         seen = {}
-        for of in value.classes:
+        for of in classes:
             key = (of.letter, of.index, of.primes)
             if key in seen:
                 raise Refusal(
@@ -210,8 +212,7 @@ class Session:
                 first, second = ("an operation", "a class") if sort == "operation" else ("a class", "an operation")
                 raise Refusal(error("sorts-differ", f"the left side is {first}, and this side is {second}", side.span))
         lifted = tuple([as_sort_or_class(value, sort, side.span) for value, side in zip(values, statement.sides)])
-        classes = lifted[0].classes.union(*[value.classes for value in lifted[1:]])
-        self._one_name_one_class(evolve(lifted[0], classes=classes), statement.span)
+        self._one_name_one_class(lifted[0].classes.union(*[value.classes for value in lifted[1:]]), statement.span)
         return lifted
 
     def _relation(self, statement: sf.RelationStatement, blank: Outcome, lowering: Lowering) -> Outcome:
@@ -234,7 +235,7 @@ class Session:
         degrees = {value.degree for value in values if not _bare_zero(value)}
         degree = degrees.pop() if len(degrees) == 1 else None if degrees else 0
         outcome = self._described(blank, values)
-        outcome = evolve(
+        outcome = changed(
             outcome,
             verdict=cast(Verdict, worst),
             element=shown,
@@ -300,7 +301,7 @@ class Session:
         elements = outcome.sides or (cast(Element, outcome.element),)
         agreed(derivations, elements, statement.span)
         steps = tuple([item for derivation in derivations for item in items(derivation)])
-        return evolve(outcome, kind="derivation", items=steps, derivations=tuple(derivations))
+        return changed(outcome, kind="derivation", items=steps, derivations=tuple(derivations))
 
     def _cross_checked(self, outcome: Outcome, values: tuple[Value, ...], elements: tuple[Element, ...]) -> Outcome:
         """The outcome, unless the explaining engine finishes with another element."""
@@ -331,7 +332,7 @@ class Session:
         engine = self.engine()
         engine.start()
         found = tuple(basis(prime, localise(space, prime), degree, engine.budget)) if degree >= 0 else ()
-        return evolve(blank, space=space.text, sort="class", degree=degree, basis=found, items=found)
+        return changed(blank, space=space.text, sort="class", degree=degree, basis=found, items=found)
 
     def _series(self, statement: sf.SeriesStatement, blank: Outcome) -> Outcome:
         from opslang.tables.generators import series
@@ -346,7 +347,7 @@ class Session:
             )
         engine.budget.spend(to * to // 64)
         found = tuple(series(self.scope.prime, localise(space, self.scope.prime), to))
-        return evolve(blank, space=space.text, items=found)
+        return changed(blank, space=space.text, items=found)
 
 
 def derive_value(value: Value, prime: int) -> tuple[Derivation, tuple[Diagnostic, ...]]:

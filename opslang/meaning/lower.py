@@ -5,7 +5,8 @@ An operation acts on the one factor at its right; a power binds tighter than an 
 
 from __future__ import annotations
 
-from typing import Any, NoReturn
+from collections.abc import Callable
+from typing import Any, NoReturn, cast
 
 from attrs import define, field
 
@@ -98,26 +99,30 @@ class Lowering:
         cups: list[Value] = []
         last: tuple[sf.Factor, bool] | None = None  # the last class factor, and whether an operation acts on it
         saw_scalar = False
+        glues = body.glues
         for at, factor in enumerate(body.factors):
-            value = self.factor(factor)
-            if isinstance(value, Value) and value.sort == "scalar":
-                if not (pending and at == len(body.factors) - 1 and isinstance(factor, sf.Group)):
-                    coefficient *= value.number
-                    saw_scalar = True
-                    continue
-                value = as_sort(value, "class", factor.span)
-            if isinstance(value, Marker) or value.sort == "operation":
-                self._check_glue(body, at, bool(pending), bool(cups))
+            value = _READERS[type(factor)](self, factor)
+            if type(value) is Value:
+                sort = value.sort
+                if sort == "scalar":
+                    if not (pending and at == len(glues) - 1 and type(factor) is sf.Group):
+                        coefficient *= value.number
+                        saw_scalar = True
+                        continue
+                    value = as_sort(value, "class", factor.span)
+                    sort = "class"
+            else:
+                sort = "operation"
+            glue = glues[at]
+            if sort == "operation":
+                if glue == "cross":
+                    self._check_glue(body, at, bool(pending), bool(cups))
                 pending.append((value, factor.span))
                 continue
-            glue = body.glues[at]
-            if glue == "compose" and not pending:
-                refuse("sorts-differ", "∘ composes operations, and a class stands at its right", factor.span)
-            if glue == "" and last is not None and last[1] and not pending:
-                self._ambiguous(last[0], factor)
-            self._ambiguous_power(pending, factor)
-            cups.append(self._apply(pending, value, (pending[0][1][0] if pending else factor.span[0], factor.span[1])))
-            last = (factor, bool(pending) and not isinstance(factor, sf.Group))
+            self._check_class(factor, glue, pending, last)
+            start = pending[0][1][0] if pending else factor.span[0]
+            cups.append(self._apply(pending, cast(Value, value), (start, factor.span[1])))
+            last = (factor, bool(pending) and type(factor) is not sf.Group)
             pending = []
         return self._assembled(body, coefficient, pending, cups, saw_scalar)
 
@@ -139,6 +144,16 @@ class Lowering:
             value = cups[0] if len(cups) == 1 else self._cup(cups, body.span)
         return multiple(value, coefficient, self.scope.prime, body.span) if saw_scalar else value
 
+    def _check_class(self, factor: sf.Factor, glue: str, pending: Pending, last: tuple[sf.Factor, bool] | None) -> None:
+        """What is to be said of a class at its place in a product."""
+        if pending:
+            if type(factor) is sf.Power and type(factor.base) is sf.Group:
+                self._ambiguous_power(pending, factor)
+        elif glue == "compose":
+            refuse("sorts-differ", "∘ composes operations, and a class stands at its right", factor.span)
+        elif glue == "" and last is not None and last[1]:
+            self._ambiguous(last[0], factor)
+
     def _check_glue(self, body: sf.Product, at: int, pending: bool, cups: bool) -> None:
         if at and body.glues[at] == "cross" and (pending or not cups):
             refuse(
@@ -157,19 +172,18 @@ class Lowering:
             )
         )
 
-    def _ambiguous_power(self, pending: Pending, factor: sf.Factor) -> None:
-        if pending and isinstance(factor, sf.Power) and isinstance(factor.base, sf.Group):
-            start = pending[-1][1][0]
-            whole = f"({self.text[start : factor.base.span[1]]})^{self._exponent_text(factor)}"
-            self.diagnostics.append(
-                warning(
-                    "ambiguous-power",
-                    f"the operation acts on the power `{self._quote(factor.span)}`",
-                    (start, factor.span[1]),
-                    f"for the power of the value write {whole}",
-                    whole,
-                )
+    def _ambiguous_power(self, pending: Pending, factor: sf.Power) -> None:
+        start = pending[-1][1][0]
+        whole = f"({self.text[start : factor.base.span[1]]})^{self._exponent_text(factor)}"
+        self.diagnostics.append(
+            warning(
+                "ambiguous-power",
+                f"the operation acts on the power `{self._quote(factor.span)}`",
+                (start, factor.span[1]),
+                f"for the power of the value write {whole}",
+                whole,
             )
+        )
 
     def _exponent_text(self, factor: sf.Power) -> str:
         return str(factor.exponent) if isinstance(factor.exponent, int) else self._quote(factor.exponent.span)
@@ -209,14 +223,16 @@ class Lowering:
 
     def _apply(self, pending: Pending, argument: Value, span: Span) -> Value:
         """The pending operations applied to a class, rightmost first."""
+        if not pending:
+            return argument
         run: list[Value] = []
         for value, _ in reversed(pending):
-            if isinstance(value, Marker):
+            if type(value) is Marker:
                 argument = self._apply_run(run, argument, span)
                 run = []
                 argument = self._apply_marker(value, argument)
             else:
-                run.append(value)
+                run.append(cast(Value, value))
         return self._apply_run(run, argument, span)
 
     def _apply_run(self, run: list[Value], argument: Value, span: Span) -> Value:
@@ -249,20 +265,15 @@ class Lowering:
 
     def factor(self, factor: sf.Factor) -> Value | Marker:
         """One factor."""
-        if isinstance(factor, (sf.Operation, sf.Bockstein, sf.Milnor)):
-            return letter(factor, self.scope.prime)
-        if isinstance(factor, sf.Name):
-            return self._name(factor)
-        if isinstance(factor, sf.Fundamental):
-            return self._fundamental(factor)
-        if isinstance(factor, sf.Power):
-            return self._power(factor)
-        if isinstance(factor, sf.Number):
-            return scalar(bounded(factor.value, factor.span))
-        if isinstance(factor, sf.Group):
-            return self._group(factor)
-        if isinstance(factor, sf.Conjugate):
-            return self._conjugate(factor)
+        return _READERS[type(factor)](self, factor)
+
+    def _letter(self, factor: sf.Operation | sf.Bockstein | sf.Milnor) -> Value | Marker:
+        return letter(factor, self.scope.prime)
+
+    def _number(self, factor: sf.Number) -> Value:
+        return scalar(bounded(factor.value, factor.span))
+
+    def _pull_back(self, factor: sf.PullBack) -> NoReturn:
         refuse("not-yet-supported", "pull-backs along maps are not yet supported", factor.span)
 
     def _group(self, group: sf.Group) -> Value | Marker:
@@ -391,3 +402,17 @@ def _degree_sum(values: list[Value]) -> int | None:
             return None
         total_degree += value.degree
     return total_degree
+
+
+_READERS: dict[type, Callable[[Lowering, Any], Value | Marker]] = {
+    sf.Operation: Lowering._letter,
+    sf.Bockstein: Lowering._letter,
+    sf.Milnor: Lowering._letter,
+    sf.Name: Lowering._name,
+    sf.Fundamental: Lowering._fundamental,
+    sf.Power: Lowering._power,
+    sf.Number: Lowering._number,
+    sf.Group: Lowering._group,
+    sf.Conjugate: Lowering._conjugate,
+    sf.PullBack: Lowering._pull_back,
+}

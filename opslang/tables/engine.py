@@ -13,6 +13,7 @@ from itertools import pairwise
 from typing import Any
 
 from opslang.ground.grading import degree as word_degree
+from opslang.ground.grading import token_degree
 from opslang.ir import tree as ir
 from opslang.ir.order import word_key
 from opslang.ir.tree import ClassElement, OperationElement
@@ -26,6 +27,8 @@ from opslang.tables.squares import Squares
 _SLOTS = 96
 """A ring with more generators than this is made anew for the next statement: long ints are slow."""
 
+_PAIR = 256
+"""Pairs of letters are tried for 0 before a word is applied where their sum is below this."""
 _EASY = 20_000
 """Terms that a word may take before its factors are searched for one that vanishes."""
 
@@ -293,15 +296,19 @@ class Evaluation:
             case ir.Fundamental():
                 return ring.generator(tree.of)
             case ir.Apply():
-                return self.apply(tree.op, self.cls(tree.argument))
+                return ring.zero() if self._unstable(tree) else self.apply(tree.op, self.cls(tree.argument))
             case ir.ClassSum():
                 result = ring.zero()
                 for c, term in tree.terms:
                     ring.add(result, self.cls(term), c)
                 return result
             case ir.Cup():
+                if any(type(factor) is ir.Apply and self._unstable(factor) for factor in tree.factors):
+                    return ring.zero()
                 element = self.cls(tree.factors[0])
                 for factor in tree.factors[1:]:
+                    if not element:
+                        break
                     element = ring.multiply(element, self.cls(factor))
                 return element
             case ir.ClassPower():
@@ -317,11 +324,35 @@ class Evaluation:
                     self.engine.modulo_order = max(self.engine.modulo_order, tree.k)
                 return value
 
+    def _unstable(self, tree: ir.Apply) -> bool:
+        """Whether a word on a class of known degree is 0 by instability alone: a letter is above the degree it meets."""
+        if type(tree.op) is not ir.Composite or tree.argument.degree is None:
+            return False
+        p, degree = self.prime, tree.argument.degree
+        for token in reversed(tree.op.word):
+            if token > degree if p == 2 else 2 * token > degree:
+                return True
+            degree += token_degree(token, p)
+        return False
+
+    def _kills(self, word: ir.Word) -> bool:
+        """Whether two neighbouring letters of a word compose to 0."""
+        pair = self.algebra.pair
+        for a, b in pairwise(word):
+            if self.prime == 2:
+                if a < 2 * b and a + b < _PAIR and not pair(a, b):
+                    return True
+            elif a == b == 0 or (0 < a < self.prime * b and a + b < _PAIR and not pair(a, b, 0)):
+                return True
+        return False
+
     def apply(self, op: ir.Op, element: Any) -> Any:
         """An operation applied to an element of H^*."""
         ring = self.ring
         match op:
             case ir.Composite():
+                if len(op.word) > 1 and self._kills(op.word):
+                    return ring.zero()
                 for token in reversed(op.word):
                     element = ring.letter(token, element)
                     if not element:

@@ -234,7 +234,7 @@ class Ring2:
         rest = sum(reach)
         if k >= rest:
             return {monomial << 1} if k == rest and not monomial & self.slots.nilpotent else set()
-        square = self.square
+        squares, square = self._squares, self.square
         sums: dict[int, Collection[int]] = {0: (0,)}
         last = len(pieces) - 1
         for at in range(last):
@@ -243,7 +243,9 @@ class Ring2:
             rest -= most
             series = []
             for i in range(max(0, k - rest - max(sums)) + (1 << digit) - 1 >> digit, (min(k, most) >> digit) + 1):
-                terms = square(slot, i)
+                terms = squares.get((slot, i))
+                if terms is None:
+                    terms = square(slot, i)
                 if terms:
                     series.append((i << digit, [t << digit for t in terms] if digit else terms))
             self.budget.spend(len(series) + 1)
@@ -269,22 +271,32 @@ class Ring2:
 
     def _accumulate(self, sums: dict[int, Collection[int]], d: int, f: Collection[int], g: Collection[int]) -> None:
         """Add the product of two sums of monomials to the entry d."""
-        if len(g) > len(f):
-            f, g = g, f
-        self.budget.spend(1 + (len(f) * len(g) * self._length() >> 2))
+        many, few = len(f), len(g)
+        if few > many:
+            f, g, many, few = g, f, few, many
         into = sums.get(d)
-        if len(g) == 1:
+        if few == 1:
             (y,) = g
             if into is None:
                 sums[d] = {x + y for x in f}
-            else:
-                into.symmetric_difference_update([x + y for x in f])  # type: ignore[attr-defined]
-        else:
-            part: Poly = set() if into is None else into  # type: ignore[assignment]
-            toggle = part.symmetric_difference_update
-            for y in g:
-                toggle([x + y for x in f])
-            sums[d] = part
+                return
+            if many == 1:
+                (x,) = f
+                x += y
+                if x in into:
+                    into.remove(x)  # type: ignore[attr-defined]
+                else:
+                    into.add(x)  # type: ignore[attr-defined]
+                return
+            self.budget.spend(1 + (many * self._length() >> 2))
+            into.symmetric_difference_update([x + y for x in f])  # type: ignore[attr-defined]
+            return
+        self.budget.spend(1 + (many * few * self._length() >> 2))
+        part: Poly = set() if into is None else into  # type: ignore[assignment]
+        toggle = part.symmetric_difference_update
+        for y in g:
+            toggle([x + y for x in f])
+        sums[d] = part
 
     def _length(self) -> int:
         """How long monomials are, in units of some hundred generators."""
