@@ -94,3 +94,11 @@ def test_agreement_is_never_called_truth() -> None:
     messages = [row.message for row in report.formulas]
     assert any("agrees for n ≤" in message for message in messages)
     assert not any(message.startswith("true") for message in messages)
+
+
+LINE = r"Let $a\in H^1(X;\mathbb{Z}/2)$. $\mathrm{Sq}^i(a^m)=\binom{m}{i}a^{m+i}$"
+
+
+def test_powers_of_a_class_of_degree_one() -> None:
+    assert said(LINE) == []
+    assert said(LINE.replace(r"\binom{m}", r"\binom{2m}")) == ["false-for-small-values"]

@@ -10,6 +10,7 @@ from __future__ import annotations
 from opslang.lint.formula.integers import letters_of
 from opslang.lint.model import (
     Call,
+    ClassName,
     Condition,
     Dots,
     Finding,
@@ -22,9 +23,10 @@ from opslang.lint.model import (
     Verdict,
     found,
 )
+from opslang.lint.symbolic.polynomial import ONE
 from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
 from opslang.lint.symbolic.walk import about_operations, factors_of
-from opslang.lint.templates.shapes import adem, adem_range, cartan, only_product, says_range, wu
+from opslang.lint.templates.shapes import adem, adem_range, cartan, has_binomial, only_product, says_range, wu
 
 TEMPLATE = 30
 """Points at which a general relation is tried; its first wrong coefficient may stand far out."""
@@ -78,6 +80,8 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
         return None
     if not trial.false:
         return Verdict("agrees", reason="agrees for " + trial.extent)
+    if classes and _powers_of_a_line(statement, known):
+        return found(_wrong(statement, trial, "false-for-small-values", "this does not hold for all values"))
     if classes or _stated(statement):
         return None
     if not trial.true and len(trial.false) >= (3 if trial.symbols else 2):
@@ -85,6 +89,21 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
     if trial.true and _quantified(statement, known, domain):
         return found(_wrong(statement, trial, "false-for-small-values", "this does not hold for all values"))
     return Verdict("not-checked", reason=f"it fails for {trial.false[0].text}", needed="for which values it is meant")
+
+
+def _powers_of_a_line(statement: Statement, known: Known) -> bool:
+    """Sq^i(a^m) = binomial · a^{m+i}, with a of degree 1: it is meant for all i and m, and a has no special case."""
+    if not isinstance(statement.right, Sum) or not any(has_binomial(product) for _, product in statement.right.terms):
+        return False
+    names = [factor for side in statement.sides for factor in factors_of(side) if isinstance(factor, ClassName)]
+    if any(condition.sign == "words" for condition in (*statement.conditions, *known.ranges)):
+        return False
+    return all(known.degree(name) == ONE and _plain(known, name) for name in names)
+
+
+def _plain(known: Known, name: ClassName) -> bool:
+    fact = known.fact(name)
+    return fact is not None and fact.order in (None, 1) and not fact.order_text
 
 
 def _stated(statement: Statement) -> bool:
