@@ -20,7 +20,7 @@ def _laws() -> dict[str, Law]:
 def _rules() -> dict[str, LintRule]:
     from opslang.lint.rule import register
 
-    return {rule.name: rule for rule in register()}
+    return {name: rule for rule in register() for name in (rule.name, *rule.also)}
 
 
 def names() -> list[str]:
@@ -34,7 +34,7 @@ def explain(name: str, width: int) -> str | None:
         code = CODES[name]
         return _page(name, code.title, _paragraphs(code.explanation, width), "Example", code.example.splitlines())
     if name in _rules():
-        return _rule_page(_rules()[name], width)
+        return _rule_page(name, _rules()[name], width)
     law = _laws().get(name)
     if law is None:
         return None
@@ -42,12 +42,12 @@ def explain(name: str, width: int) -> str | None:
     return _page(name, "a law", facts, "Examples", list(law.examples))
 
 
-def _rule_page(rule: LintRule, width: int) -> str:
+def _rule_page(name: str, rule: LintRule, width: int) -> str:
     body = [*_paragraphs(rule.why, width), "", "Said of:", ""]
     body += [f"    {line}" for text in rule.bad for line in text.splitlines()]
     body += ["", "Not said of:", ""]
     body += [f"    {line}" for text in rule.good for line in text.splitlines()]
-    return _page(rule.name, rule.title, body, "", [])
+    return _page(name, rule.title, body, "", [])
 
 
 def listing(width: int) -> str:

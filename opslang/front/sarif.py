@@ -25,11 +25,11 @@ def uri(name: str) -> str:
     return f"file://{text}" if os.path.isabs(name) else text
 
 
-def _rule(rule: LintRule) -> dict[str, object]:
+def _rule(name: str, rule: LintRule) -> dict[str, object]:
     lines = [rule.why, "", "Said of:", *(f"    {line}" for line in rule.bad)]
     lines += ["Not said of:", *(f"    {line}" for line in rule.good)]
     return {
-        "id": rule.name,
+        "id": name,
         "shortDescription": {"text": rule.title},
         "fullDescription": {"text": rule.why},
         "help": {"text": "\n".join(lines)},
@@ -41,7 +41,8 @@ class Sarif:
     """The text of one run: `head`, then `results` for each report, then `tail`."""
 
     def __init__(self) -> None:
-        self._rules = {rule.name: number for number, rule in enumerate(register())}
+        self._listed = [(name, rule) for rule in register() for name in (rule.name, *rule.also)]
+        self._rules = {name: number for number, (name, _) in enumerate(self._listed)}
         self._first = True
         self._troubles: list[dict[str, object]] = []
 
@@ -50,7 +51,7 @@ class Sarif:
         driver = {
             "name": "opslang",
             "semanticVersion": __version__,
-            "rules": [_rule(rule) for rule in register()],
+            "rules": [_rule(name, rule) for name, rule in self._listed],
         }
         start = f'{{"$schema": {json.dumps(SCHEMA)}, "version": "2.1.0", "runs": [{{"tool": '
         return start + json.dumps({"driver": driver}) + ', "columnKind": "unicodeCodePoints", "results": ['

@@ -12,7 +12,7 @@ from importlib import import_module
 from os import listdir
 from os.path import dirname, join
 
-from attrs import field, frozen
+from attrs import frozen
 
 from opslang.lint.context.stream import Paragraph
 from opslang.lint.model import Finding, Known, Severity, Statement, Verdict
@@ -45,7 +45,8 @@ class LintRule:
     """A rule: its name (reads well after "allow"), what it is in a line, why it is there, drafts it speaks in and is silent in.
 
     `severity` is that of most of its findings.  Rules are asked in the order of `rank` (then name): once one of them
-    has found an error in a statement, what later ones find in the same statement is not shown.
+    has found an error in a statement, what later ones find in the same statement is not shown.  `also` are further
+    names that its findings may bear.
     """
 
     name: str
@@ -57,7 +58,8 @@ class LintRule:
     draft: DraftCheck | None = None
     severity: Severity = "error"
     rank: int = 50
-    source: str = field(default="")
+    source: str = ""
+    also: tuple[str, ...] = ()
 
 
 @lru_cache(maxsize=1)
@@ -71,4 +73,4 @@ def register() -> tuple[LintRule, ...]:
 
 def rule_named(name: str) -> LintRule | None:
     """The rule of that name."""
-    return next((rule for rule in register() if rule.name == name), None)
+    return next((rule for rule in register() if name == rule.name or name in rule.also), None)

@@ -127,7 +127,7 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
 
 
 def _note_use(settings: Settings, plain: str) -> None:
-    settings.squares = settings.squares or "Sq" in plain
+    settings.squares = settings.squares or "Sq" in plain or "Z/2" in plain or "F_2" in plain
     settings.powers = settings.powers or "P^" in plain
 
 

@@ -22,4 +22,5 @@ RULE = LintRule(
     check=template,
     rank=20,
     source="Adem 1952; Cartan 1950; Steenrod and Epstein 1962, chapters I and VI",
+    also=("adem-relation", "cartan-formula", "range-missing"),
 )

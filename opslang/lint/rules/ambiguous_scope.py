@@ -65,4 +65,5 @@ RULE = LintRule(
     check=check,
     severity="warning",
     rank=60,
+    source="common practice",
 )

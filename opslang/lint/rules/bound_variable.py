@@ -51,4 +51,5 @@ RULE = LintRule(
     ),
     check=check,
     rank=5,
+    source="common practice",
 )

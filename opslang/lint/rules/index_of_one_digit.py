@@ -69,4 +69,5 @@ RULE = LintRule(
     check=check,
     severity="warning",
     rank=1,
+    source="common practice",
 )

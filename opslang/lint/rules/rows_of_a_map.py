@@ -68,4 +68,5 @@ RULE = LintRule(
     ),
     draft=check,
     rank=50,
+    source="common practice",
 )
