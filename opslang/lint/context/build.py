@@ -9,6 +9,7 @@ from collections.abc import Iterator, Mapping, Sequence
 
 from attrs import define, evolve, field
 
+from opslang.lint.context.bundles import Bundles
 from opslang.lint.context.directives import Allowed, allowed_in, directives_of
 from opslang.lint.context.facts import Ledger, Saying, Spot
 from opslang.lint.context.names import class_names, names_of
@@ -55,6 +56,7 @@ class _Builder:
     scripts: Scripts
     ledger: Ledger = field(factory=Ledger)
     settings: Settings = field(factory=Settings)
+    bundles: Bundles = field(factory=Bundles)
     pages: list[tuple[Paragraph, list[Spot]]] = field(factory=list)
     read: dict[int, tuple[Statement, ...]] = field(factory=dict)
     numbers: dict[int, frozenset[str]] = field(factory=dict)
@@ -87,6 +89,7 @@ class _Builder:
             spots = [spot_at(place) for place in paragraph.places]
             self.pages.append((paragraph, spots))
             learn(self.settings, paragraph, spots, number, section)
+            self.bundles.learn(paragraph, spots, number, section)
             self.numbers[number] = frozenset(name.spelling for name in numbers_said(paragraph, self.statements))
             for saying in from_words(paragraph, self.statements, spot_at):
                 self.ledger.add(saying)
@@ -210,7 +213,7 @@ class _Builder:
             if fact is not None:
                 classes[name.spelling] = self._somewhere(fact, spot)
         return evolve(
-            frame, classes=classes, families=self._families(names.values()), prime=self._prime(statement, frame)
+            frame, classes=classes, families=self._families(spot), prime=self._prime(statement, frame)
         )
 
     def _somewhere(self, fact: ClassFact, spot: Spot) -> ClassFact:
@@ -232,10 +235,14 @@ class _Builder:
             return None
         return 2 if self.settings.squares else None
 
-    def _families(self, names: Sequence[ClassName] | object) -> Mapping[str, FamilyFact]:
+    def _families(self, spot: Spot) -> Mapping[str, FamilyFact]:
         families = {"iota": FamilyFact(INDEX, None, "", "the notation of fundamental classes")}
         if self.settings.bundles:
-            families["w"] = FamilyFact(INDEX, None, "bundle", "Stiefel–Whitney classes")
+            families["w"] = FamilyFact(INDEX, None, self.bundles.at(spot, "w"), "Stiefel–Whitney classes")
+        if self.bundles.wu_classes:
+            families["v"] = FamilyFact(INDEX, None, self.bundles.at(spot, "w"), "Wu classes")
+        if self.bundles.chern:
+            families["c"] = FamilyFact(INDEX + INDEX, None, self.bundles.at(spot, "c"), "Chern classes")
         return families
 
     def _fundamental(self, name: ClassName, fact: ClassFact | None, spot: Spot) -> ClassFact | None:

@@ -21,6 +21,7 @@ from opslang.lint.context.names import names_of
 from opslang.lint.context.sayings import only_name
 from opslang.lint.formula.closed import to_surface
 from opslang.lint.model import ClassFact, ClassName, Known, Sum
+from opslang.lint.numeric.bundles import KINDS, family_of, has_space, in_space, said_space
 from opslang.lint.numeric.naming import Naming, Unnamed
 from opslang.lint.numeric.rules_given import (
     Transgression,
@@ -43,6 +44,7 @@ from opslang.tables.budget import TooLarge
 _GENERAL = re.compile(r"(?:|K\(.*|B\^.*|-|[A-Z](?:_\w)?'*)$")
 LIMIT = 20_000
 HIGHEST = 200
+HIGHEST_CLASS = 40
 LONGEST = 40
 """Derivations are looked for up to this degree, so that no draft makes the linter slow."""
 
@@ -106,10 +108,20 @@ def desk(prime: int, script: tuple[str, ...]) -> tuple[Desk, frozenset[str]]:
     kept = {
         letter + ("" if index is None else f"_{index}") + "'" * primes for letter, index, primes in session.scope.names
     }
+    if any(line.startswith("on ") for line in script):
+        kept |= _classes_here(session)
+    return session, frozenset(kept)
+
+
+def _classes_here(session: Desk) -> set[str]:
+    """The spellings of the classes of the current space, those of infinite families up to some degree."""
+    kept = {f"iota_{n}" for n in range(1, 100)}
+    for letter in ("w", "c"):
+        kept |= {f"{letter}_{n}" for n in range(HIGHEST_CLASS)}
     here = session.scope.localised()
     if here is not None:
         kept |= {of.letter + ("" if of.index is None else f"_{of.index}") + "'" * of.primes for of in here.classes}
-    return session, frozenset(kept)
+    return kept
 
 
 def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None = None, why: bool = False) -> Decision:
@@ -117,6 +129,29 @@ def decide(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None
 
     Where the draft does not say whether Q_0 or Q_1 is Sq^1, only what both conventions agree on is believed.
     """
+    letter = family_of(left, right, known)
+    if letter and not has_space(known):
+        return _of_bundles(left, right, known, values, why, letter)
+    return _with_definitions(left, right, known, values, why)
+
+
+def _of_bundles(
+    left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool, letter: str
+) -> Decision:
+    """A relation between characteristic classes: true for all bundles, or for those that the draft speaks of."""
+    said = said_space(known, letter)
+    kinds = (said,) if said else KINDS[letter]
+    answers = [_with_definitions(left, right, in_space(known, letter, space), values, why) for space in kinds]
+    if said or all(answer.answer == answers[0].answer for answer in answers):
+        return answers[0]
+    if answers[0].answer == "true":
+        return answers[0]
+    return Decision("unknown", "it depends on the bundle", "whether the bundle is oriented, or spin")
+
+
+def _with_definitions(
+    left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool
+) -> Decision:
     decision = _by_convention(left, right, known, values, why)
     whole = spelled_out(left, known), spelled_out(right, known)
     if decision.answer == "true" or whole == (left, right):
@@ -195,7 +230,7 @@ def _circumstances(left: Sum, right: Sum, known: Known) -> str:
         return "it is a hypothesis"
     for side in (left, right):
         name = only_name(side)
-        if name is not None and name.letter != "iota":
+        if name is not None and name.letter not in ("iota", "w", "c"):
             return f"it may be what {name.spelling} stands for"
     return ""
 
