@@ -159,7 +159,7 @@ class Evaluation:
         element = self._quickly(word) if len(word) > 2 else None
         if element is None:
             element = self.algebra.normal(word)
-        return element if self.prime != 2 else set(element)
+        return element
 
     def _quickly(self, word: ir.Word) -> Any:
         """A word's canonical form if little work gives it, or if a factor of it is seen to be 0; else None."""
