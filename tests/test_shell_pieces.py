@@ -273,6 +273,35 @@ def test_work_says_how_it_goes_and_clears_up() -> None:
         work.run(interrupted, lambda: "")
 
 
+def test_ctrl_c_is_not_lost_where_the_interpreter_drops_exceptions(monkeypatch: pytest.MonkeyPatch) -> None:
+    """An exception in `__del__` is dropped (Python language reference, data model), Ctrl-C among them."""
+    from signal import SIGINT, default_int_handler, raise_signal, signal
+
+    class Dropping:
+        def __del__(self) -> None:
+            raise_signal(SIGINT)
+
+    def job() -> None:
+        from time import monotonic
+
+        held = Dropping()
+        del held
+        end = monotonic() + 20
+        while monotonic() < end:
+            pass
+
+    said: list[str] = []
+    work = Work(said.append)
+    monkeypatch.setattr("sys.unraisablehook", None)  # to be put back
+    work.listen()
+    try:
+        with pytest.raises(Stopped) as stopped:
+            work.run(job, lambda: "")
+        assert stopped.value.seconds < 10
+    finally:
+        signal(SIGINT, default_int_handler)
+
+
 def interrupted() -> None:
     """What Ctrl-C does to work."""
     raise KeyboardInterrupt

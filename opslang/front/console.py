@@ -234,6 +234,7 @@ def _in_background(_: object) -> None:
     global _loading
     if _loading is None:
         gc.freeze()
+        gc.set_threshold(50_000, 20, 50)
         gc.enable()  # it is off while the program starts
         _loading = Thread(target=_load, daemon=True)
         _loading.start()

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import signal
 import sys
+from _thread import interrupt_main
 from collections.abc import Callable
 from threading import Event, Thread
 from time import monotonic
@@ -34,15 +35,17 @@ class Work:
     def __init__(self, write: Callable[[str], None]) -> None:
         self._write = write
         self._listening = False
+        self._asked = False
         self._told = False
 
     def listen(self) -> None:
         """From here on Ctrl-C stops the work, and nothing else."""
         signal.signal(signal.SIGINT, self._interrupt)
+        sys.unraisablehook = _dropped
 
     def _interrupt(self, number: int, frame: FrameType | None) -> None:
         if self._listening:
-            self._listening = False
+            self._asked = True
             raise KeyboardInterrupt
 
     def run(self, job: Callable[[], Result], progress: Callable[[], str]) -> Result:
@@ -53,6 +56,7 @@ class Work:
         teller.start()
         try:
             try:
+                self._asked = False
                 self._listening = True
                 return job()
             finally:
@@ -71,8 +75,17 @@ class Work:
         wait = DELAY
         while not finished.wait(wait):
             wait = PACE
+            if self._asked:
+                # The interpreter drops an exception that arises while it clears up objects: ask once more.
+                interrupt_main()
             self._told = True
             self._write(f"\r\x1b[K{monotonic() - started:.1f} s {progress()}")
+
+
+def _dropped(found: sys.UnraisableHookArgs) -> None:
+    """An exception that the interpreter had to drop; of a dropped Ctrl-C nothing need be said."""
+    if not issubclass(found.exc_type, KeyboardInterrupt):
+        sys.__unraisablehook__(found)
 
 
 def to_terminal(text: str) -> None:
