@@ -14,12 +14,13 @@ from opslang.lint.context.directives import Allowed, allowed_in, directives_of
 from opslang.lint.context.facts import Ledger, Saying, Spot
 from opslang.lint.context.names import class_names, names_of
 from opslang.lint.context.sayings import degree_written, from_formula, from_words, in_its_ring, numbers_said
-from opslang.lint.context.script import Scripts
+from opslang.lint.context.script import Scripts, rule_of
 from opslang.lint.context.setting import ODD, Settings, is_hypothesis, learn, no_operations, particular_space
-from opslang.lint.context.spaces import SpaceSaid
+from opslang.lint.context.spaces import SpaceSaid, mentioned
 from opslang.lint.context.stream import Paragraph, paragraphs
 from opslang.lint.formula import statements_of
 from opslang.lint.model import (
+    NOWHERE,
     ClassFact,
     ClassName,
     Condition,
@@ -32,7 +33,7 @@ from opslang.lint.model import (
     Statement,
     Sum,
 )
-from opslang.lint.numeric.rules_given import defined, transgresses
+from opslang.lint.numeric.rules_given import OF_THE_SPACE, defined, transgresses
 from opslang.lint.reading import Document, Formula
 from opslang.lint.rule import Unit
 from opslang.lint.symbolic.polynomial import Polynomial
@@ -99,6 +100,35 @@ class _Builder:
                     said = evolve(saying, spot=spot, source="the formula", local=local)
                     self.ledger.add(in_its_ring(said, paragraph))
                 self._note_rules(formula, spot, is_hypothesis(paragraph, spot.offset))
+            self._note_lens(paragraph, spots)
+
+    def _note_lens(self, paragraph: Paragraph, spots: list[Spot]) -> None:
+        """The classes of degree 1 and 2 of a K(Z/p^k, 1): the second is the Bockstein of the first."""
+        if not spots:
+            return
+        number = spots[0].paragraph
+        spaces = [at for at in self.settings.spaces if at.spot.paragraph == number and at.space.degree == "1"]
+        said = [one for found in self.ledger.sayings.values() for one in found if one.spot.paragraph == number]
+        first = {one.name for one in said if one.degree == Polynomial.of(1)}
+        second = {one.name for one in said if one.degree == Polynomial.of(2)}
+        if len(first) != 1 or len(second) > 1 or first & second:
+            return
+        place = next(one.spot.offset for one in said if one.name in first)
+        before = [at.space for at in spaces if at.spot.offset <= place and at.space.group is not None]
+        group = before[-1].group if before else None
+        if group is None or not group.order:
+            return
+        name = first.pop()
+        for one in self.ledger.sayings[name]:
+            if one.spot.paragraph == number and one.degree is not None:
+                self.ledger.sayings[name].remove(one)
+                self.ledger.add(evolve(one, order=group.order, order_text=group.text, space=before[-1].text, local=False))
+                break
+        if not second:
+            return
+        rule = rule_of(f"{second.pop()} = beta_{group.order} {name}", NOWHERE)
+        if rule is not None:
+            self.rules.append((spots[0], evolve(rule, source=OF_THE_SPACE), paragraph.formulas[0]))
 
     def _note_rules(self, formula: Formula, spot: Spot, hypothesis: bool) -> None:
         """Take note of what a formula lays down: d iota_4 = …, Sq^1 x = 0 behind an if, Q_0 = Sq^1."""
@@ -126,7 +156,7 @@ class _Builder:
             if at.section != spot.section or (at.paragraph, at.offset) > (spot.paragraph, spot.offset):
                 continue
             lasting = transgresses(rule) or defined(rule) is not None
-            if where is formula or (not lasting and at.paragraph != spot.paragraph):
+            if (where is formula and rule.source != OF_THE_SPACE) or (not lasting and at.paragraph != spot.paragraph):
                 continue
             found.append(rule)
         return found
@@ -212,8 +242,10 @@ class _Builder:
                 fact = self._fundamental(name, fact, spot)
             if fact is not None:
                 classes[name.spelling] = self._somewhere(fact, spot)
+        prime = self._prime(statement, frame, spot.section)
+        classes = {spelling: _at_prime(fact, prime) for spelling, fact in classes.items()}
         return evolve(
-            frame, classes=classes, families=self._families(spot), prime=self._prime(statement, frame)
+            frame, classes=classes, families=self._families(spot), prime=self._prime(statement, frame, spot.section)
         )
 
     def _somewhere(self, fact: ClassFact, spot: Spot) -> ClassFact:
@@ -221,23 +253,29 @@ class _Builder:
         if fact.source == "the author's comment" or not self.settings.manifolds:
             return fact
         letter = fact.space[:1]
-        if letter in ("M", "N", "W") or (not fact.space and spot.section in self.settings.manifolds):
+        if letter not in ("M", "N", "W") and (fact.space or spot.section not in self.settings.manifolds):
+            return fact
+        sized = bool(self.settings.sized) or any(sign.isdigit() for sign in fact.space)
+        symbols = fact.degree.symbols if fact.degree is not None else frozenset()
+        if sized or symbols & self.settings.dimensions:
             return evolve(fact, space="a manifold")
         return fact
 
-    def _prime(self, statement: Statement, frame: Known) -> int | None:
+    def _prime(self, statement: Statement, frame: Known, section: int) -> int | None:
         heads = {operation.head for operation in operations_in(statement)}
         if "Sq" in heads:
             return 2
         if frame.prime is not None or frame.conventions.get("prime") == "odd":
             return frame.prime
+        if "P" not in heads and section in self.settings.squares_in - self.settings.powers_in:
+            return 2
         if "P" in heads or self.settings.powers or self.settings.odd:
             return None
         return 2 if self.settings.squares else None
 
     def _families(self, spot: Spot) -> Mapping[str, FamilyFact]:
         families = {"iota": FamilyFact(INDEX, None, "", "the notation of fundamental classes")}
-        if self.settings.bundles:
+        if self.settings.bundles or self.bundles.found:
             families["w"] = FamilyFact(INDEX, None, self.bundles.at(spot, "w"), "Stiefel–Whitney classes")
         if self.bundles.wu_classes:
             families["v"] = FamilyFact(INDEX, None, self.bundles.at(spot, "w"), "Wu classes")
@@ -267,6 +305,13 @@ class _Builder:
         if len({space.group for space in general}) == 1:
             return _of_space(degree, general[0])
         return fact or ClassFact(degree, None, "", "", "the notation of fundamental classes")
+
+
+def _at_prime(fact: ClassFact, prime: int | None) -> ClassFact:
+    """The fact, unless its space belongs to another prime."""
+    spaces = mentioned(fact.space)
+    own = spaces[0].group.prime if len(spaces) == 1 and spaces[0].group is not None else None
+    return fact if own is None or prime is None or own == prime else evolve(fact, space="a space at another prime")
 
 
 def _of_space(degree: Polynomial, space: SpaceSaid) -> ClassFact:

@@ -62,6 +62,8 @@ class Ledger:
         order = _chosen([saying for saying in found if _tells_order(saying)], spot, "order")
         if degree is None and order is None:
             return None
+        if degree is not None and order is not None and degree.spot.section != order.spot.section:
+            order = degree if _tells_order(degree) else None
         basis = degree or order
         assert basis is not None
         fact = ClassFact(basis.degree, None, "", basis.space, basis.source, basis.at)

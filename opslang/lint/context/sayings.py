@@ -29,7 +29,9 @@ NUMBERS = rf"{NUMBER}(?:{_AND}{NUMBER})*"
 _WORDS = "zero one two three four five six seven eight nine ten".split()
 _KIND = r"(?:cohomology |integral |mod[- ]?\S+ |fixed |arbitrary |characteristic |homogeneous |nonzero |non-zero )*"
 _NOUN = rf"(?:(?:an?|the|any|some|every|two|three|both|our|its) )?{_KIND}(?:class|classes|element|elements|generator|generators|background|backgrounds)"
-_CONDITIONAL = re.compile(r"\b(?:if|when|whenever|for|on|suppose|case|where|with|unless)\b[^.]{0,40}$", re.IGNORECASE)
+_CONDITIONAL = re.compile(
+    r"\b(?:if|when|whenever|suppose|case|unless|would|needs?)\b[^.]{0,40}$|\b(?:for|on|where|with)\s+(?:all\s+)?$", re.IGNORECASE
+)
 
 _OF_DEGREE = re.compile(
     rf"(?P<names>{LIST}),?\s+(?:(?:has|have|is|are|be|being|denotes?|stands? for)\s+)?(?:both\s+)?(?:{_NOUN}\s+)?(?:integral\s+)?(?:is\s+)?"
@@ -178,6 +180,7 @@ def _found_in_words(text: str, names: Names) -> Iterator[tuple[Saying, int]]:
 def _degrees(
     found: list[tuple[ClassName, Formula]], degrees: list[Index | None], offset: int
 ) -> Iterator[tuple[Saying, int]]:
+    degrees = degrees[: max(1, len(found))]  # what follows behind a comma is another formula
     if len(degrees) != 1 and len(degrees) != len(found):
         return
     for at, (name, formula) in enumerate(found):

@@ -36,6 +36,12 @@ _NO_BETA = re.compile(
 )
 _NO_POWER = re.compile(r"\b(?:projective|Postnikov|field|stage|polynomial ring|series|lines)\b", re.IGNORECASE)
 _BUNDLES = re.compile(r"Stiefel|Whitney|vector bundle|tangent bundle|bundle\b|characteristic class", re.IGNORECASE)
+_POWER = re.compile(r"(?<![A-Z{])P\^")
+_SIZE = re.compile(
+    r"\b(?:two|three|four|five|six|seven|eight|\d+)-(?:dimensional )?(?:manifold|complex)|([\ue000-\uf7ff])-(?:dimensional )?manifold"
+    r"|\bdimensions? ([\ue000-\uf7ff]|(?:\d+|two|three|four|five|six|seven|eight)\b)",
+    re.IGNORECASE,
+)
 _MANIFOLD = re.compile(r"\bmanifolds?\b", re.IGNORECASE)
 
 
@@ -68,6 +74,12 @@ class Settings:
     bundles: bool = False
     manifolds: set[int] = field(factory=set)
     """The sections that speak of manifolds."""
+    sized: set[int] = field(factory=set)
+    """The sections that say their dimension in numbers."""
+    squares_in: set[int] = field(factory=set)
+    powers_in: set[int] = field(factory=set)
+    dimensions: set[str] = field(factory=set)
+    """Letters that stand for dimensions."""
 
     def prime_at(self, spot: Spot) -> int | None:
         """The prime at a place: a number, ODD, or None where none was said."""
@@ -104,10 +116,11 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
     settings.bundles = settings.bundles or bool(_BUNDLES.search(text))
     if _MANIFOLD.search(text):
         settings.manifolds.add(section)
+        _note_sizes(settings, paragraph, section)
     found: list[PrimeSaid] = []
     for formula, spot, place in zip(paragraph.formulas, spots, paragraph.places):
         plain = written(formula.tokens)
-        _note_use(settings, plain)
+        _note_use(settings, plain, section)
         prime = _PRIME_IS.match(plain)
         if prime:
             start, _ = paragraph.sentences[paragraph.sentence_at(place)]
@@ -126,9 +139,23 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
     settings.primes += sorted(found, key=lambda said: said.spot.offset)
 
 
-def _note_use(settings: Settings, plain: str) -> None:
+def _note_sizes(settings: Settings, paragraph: Paragraph, section: int) -> None:
+    for one in _SIZE.finditer(paragraph.text):
+        word = one[1] or one[2]
+        plain = written(paragraph.formula(word).tokens) if word and len(word) == 1 and ord(word) >= 0xE000 else word
+        if plain and plain.isalpha() and len(plain) == 1:
+            settings.dimensions.add(plain)
+        else:
+            settings.sized.add(section)
+
+
+def _note_use(settings: Settings, plain: str, section: int) -> None:
+    if "Sq" in plain:
+        settings.squares_in.add(section)
+    if _POWER.search(plain):
+        settings.powers_in.add(section)
     settings.squares = settings.squares or "Sq" in plain or "Z/2" in plain or "F_2" in plain
-    settings.powers = settings.powers or "P^" in plain
+    settings.powers = settings.powers or bool(_POWER.search(plain))
 
 
 def _primes_in_words(settings: Settings, paragraph: Paragraph, at: int, section: int) -> list[PrimeSaid]:
@@ -144,6 +171,9 @@ def _primes_in_words(settings: Settings, paragraph: Paragraph, at: int, section:
             spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
             found.append(PrimeSaid(spot, number, not _FOR_GOOD.search(text, max(0, one.start() - 60), one.start())))
     for one in _ODD.finditer(text):
+        sign = re.search(r"[\ue000-\uf7ff]", one.group())
+        if sign and written(paragraph.formula(sign.group()).tokens) not in ("p", "\\ell", "l", "q", "p>2"):
+            continue
         settings.odd = True
         spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
         found.append(PrimeSaid(spot, ODD, False))

@@ -21,13 +21,15 @@ from opslang.lint.context.names import names_of
 from opslang.lint.context.sayings import only_name
 from opslang.lint.formula.closed import to_surface
 from opslang.lint.model import ClassFact, ClassName, Known, Sum
-from opslang.lint.numeric.bundles import KINDS, family_of, has_space, in_space, said_space
+from opslang.lint.numeric.bundles import KINDS, family_of, has_space, in_space, said_space, undualised
 from opslang.lint.numeric.naming import Naming, Unnamed
 from opslang.lint.numeric.rules_given import (
+    OF_THE_SPACE,
     Transgression,
     Unfit,
     WrongPage,
     conventional,
+    defined,
     has_primitive,
     killed,
     other_rules,
@@ -139,6 +141,7 @@ def _of_bundles(
     left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool, letter: str
 ) -> Decision:
     """A relation between characteristic classes: true for all bundles, or for those that the draft speaks of."""
+    left, right = undualised(left), undualised(right)
     said = said_space(known, letter)
     kinds = (said,) if said else KINDS[letter]
     answers = [_with_definitions(left, right, in_space(known, letter, space), values, why) for space in kinds]
@@ -161,6 +164,8 @@ def _with_definitions(
         return again
     if again.name == "degrees-differ" and decision.name != again.name:
         return decision  # the name stands for something else here
+    if all(rule.source == OF_THE_SPACE for rule in known.rules if defined(rule) is not None):
+        return again
     return evolve(again, special=again.special or decision.special)
 
 

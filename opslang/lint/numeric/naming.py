@@ -86,6 +86,11 @@ class Naming:
         known = self.known.classes.get(self.spelling(name)) or self.known.fact(name)
         if known is not None and known.degree is not None:
             return known
+        value = value_of(name.index[0], self.values) if len(name.index) == 1 else None
+        for spelling, fact in self.known.classes.items():
+            same = spelling.startswith(name.letter + "_") and fact.degree is not None
+            if same and name.letter == "iota" and fact.degree is not None and fact.degree.at(self.values) == value:
+                return fact
         family = self.known.families.get(name.letter)
         if family is not None and len(name.index) == 1:
             index = value_of(name.index[0], self.values)
@@ -93,5 +98,6 @@ class Naming:
                 from opslang.lint.symbolic.polynomial import Polynomial
 
                 degree = family.degree.substitute({"index": Polynomial.of(index)})
-                return ClassFact(degree, family.order, "", family.space, family.source)
+                space = "a fibration" if name.letter == "iota" and self.known.rules else family.space
+                return ClassFact(degree, family.order, "", space, family.source)
         raise Unnamed(f"the degree of {self.spelling(name)}")

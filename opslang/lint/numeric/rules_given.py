@@ -31,6 +31,9 @@ from opslang.lint.model import (
 from opslang.lint.symbolic.polynomial import Polynomial
 from opslang.lint.symbolic.values import polynomial_of, value_of
 
+OF_THE_SPACE = "the space"
+"""The source of a rule that the space gives and not the author."""
+
 Change = Callable[[Factor], "Factor | None"]
 
 
