@@ -9,8 +9,8 @@ from pygments.token import Comment, Keyword, Name, Number, Operator, Punctuation
 
 from opslang.front.vocabulary import SHELL_WORDS
 from opslang.syntax.spellings import (
+    COMMANDS,
     GREEK_NAMES,
-    LATER_INSIDE,
     PRIMES,
     STATEMENT_WORDS,
     SUBSCRIPTS,
@@ -18,12 +18,10 @@ from opslang.syntax.spellings import (
     SYMBOLS,
 )
 
-_KINDS = {"SQ": Name.Function, "PP": Name.Function, "BETA": Name.Function, "CHI": Name.Function, "IOTA": Name.Builtin}
-_OPERATORS = "".join(
-    s
-    for s, (kind, _) in SYMBOLS.items()
-    if kind in ("PLUS", "MINUS", "STAR", "CUP", "CROSS", "TIMES", "COMPOSE", "OPLUS", "EQUALS", "IN", "SLASH")
-)
+_OPERATING = ("PLUS", "MINUS", "STAR", "CUP", "CROSS", "TIMES", "COMPOSE", "OPLUS", "EQUALS", "IN", "SLASH", "ARROW")
+_OPERATORS = "".join(sign for sign, (kind, _) in SYMBOLS.items() if kind in _OPERATING) + "<>→"
+_COMMANDS = "|".join(name for name, (kind, _) in COMMANDS.items() if kind in _OPERATING)
+_INSIDE = ("in", "to", "x", "with", "where", "over", "of", "rank", "for", "diagonal", "projection", "standard")
 _GREEK = "".join(s for s, (kind, _) in SYMBOLS.items() if kind == "NAME")
 _NO_LETTER = r"(?![A-Za-z])"
 
@@ -55,7 +53,7 @@ class OpslangLexer(RegexLexer):  # type: ignore[misc]
                 words(sorted(SHELL_WORDS, key=len, reverse=True), prefix=r"(?m:^[ \t]*)", suffix=r"(?![A-Za-z_^(])"),
                 Keyword.Pseudo,
             ),
-            (words((*LATER_INSIDE, "in", "to", "x"), prefix=r"(?<=\s)", suffix=r"(?=\s)"), Keyword),
+            (words(_INSIDE, prefix=r"(?<=\s)", suffix=r"(?=\s)"), Keyword),
             (r"(?:Sq|beta|chi)(?![A-Za-z]{2})|[PQ]" + _NO_LETTER, Name.Function),
             (r"\\(?:mathrm|operatorname\*?|text|mathcal|mathfrak|mathscr)\s*\{\s*(?:Sq|P|Q)\s*\}", Name.Function),
             (r"\\(?:Sq|P|beta|chi)" + _NO_LETTER, Name.Function),
@@ -64,7 +62,7 @@ class OpslangLexer(RegexLexer):  # type: ignore[misc]
             (r"that(?:_\{?\d+\}?)?" + _NO_LETTER, Name.Builtin),
             (r"(?:\\mathbb\s*\{?\s*[ZF]\s*\}?|[KHZFℤ𝔽])" + _NO_LETTER, Name.Class),
             (words(sorted(GREEK_NAMES, key=len, reverse=True), suffix=_NO_LETTER), Name.Variable),
-            (r"\\(?:cup|smile|otimes|times|cdot|circ|oplus|in|ast)" + _NO_LETTER, Operator),
+            (rf"\\(?:{_COMMANDS})" + _NO_LETTER, Operator),
             (rf"\\(?:{'|'.join(sorted(GREEK_NAMES, key=len, reverse=True))})" + _NO_LETTER, Name.Variable),
             (r"\\[A-Za-z]+|\\.|\\(?=\n|\Z)|[$&~]", Comment.Preproc),
             (rf"[{_escaped(_OPERATORS)}]", Operator),
