@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from spaces_by_name import PAIR, SIGNED, classes, space
 from terms import Z4, A, S, T, U, V, W, X, Y, of, product
 
 from opslang.ir.term import IDENTITY, UNIT, Apply, Monomial
+from opslang.ir.tree import Class
 from opslang.laws.law import Bindings
 
 x, y, a, w, z, u, v, s = (of(name) for name in (X, Y, A, W, Z4, U, V, S))
@@ -32,6 +34,72 @@ def _both(*rows: Bindings) -> list[Bindings]:
 
 def _conjugates() -> list[Bindings]:
     return [{"p": p, "n": n, "x": on} for p, most in ((2, 6), (3, 2)) for n in range(1, most + 1) for on in (y, w)]
+
+
+def named(text: str, p: int, letter: str, index: int | None = None) -> Class:
+    """A class of a named space."""
+    return next(of for of in classes(text, p, 40) if (of.letter, of.index) == (letter, index))
+
+
+def _wu_grid() -> list[Bindings]:
+    found: list[Bindings] = []
+    for text, letter, most in (
+        ("BO", "w", 6),
+        ("BO(4)", "w", 4),
+        ("BU(3)", "c", 3),
+        ("BU", "c", 4),
+        ("BSp(3)", "q", 3),
+        ("BSO(4)", "w", 4),
+    ):
+        for m in range(2 + (text == "BSO(4)"), most + 1):
+            found += [{"p": 2, "k": k, "m": m, "of": named(text, 2, letter, m)} for k in range(1, m)]
+    return found
+
+
+def _thom_grid() -> list[Bindings]:
+    spaces = (("BO(4)", 4), ("BU(3)", 6), ("BSp(2)", 8))
+    return [{"p": 2, "k": k, "of": named(f"thom({t})", 2, "U")} for t, n in spaces for k in range(1 + (n > 4), n)]
+
+
+def _splitting_grid() -> list[Bindings]:
+    found: list[Bindings] = []
+    for p in (3, 5):
+        for text in (
+            "BU(3)",
+            "BU",
+            "BO(6)",
+            "BSO(4)",
+            "BSO(6)",
+            "BSp(2)",
+            "BSp",
+            "thom(BU(3))",
+            "thom(BSO(4))",
+            "thom(BSp(2))",
+        ):
+            for of_space in classes(text, p, 12):
+                if text.startswith("thom") and of_space.letter != "U":
+                    continue
+                found += [
+                    {"p": p, "k": k, "of": of_space} for k in range(1, {3: 4, 5: 3}[p]) if 2 * k < of_space.degree
+                ]
+    return found
+
+
+def _binomial_grid() -> list[Bindings]:
+    rows = ((2, "RP", "x"), (2, "CP^9", "y"), (2, "HP", "u"), (2, "lens(4)", "y"), (2, "lens(2)", "x"))
+    found: list[Bindings] = []
+    for p, text, letter in (
+        *rows,
+        (3, "CP", "y"),
+        (3, "HP^20", "u"),
+        (5, "HP", "u"),
+        (3, "lens(9)", "y"),
+        (5, "CP", "y"),
+    ):
+        of_space = named(text, p, letter)
+        step = of_space.degree if p == 2 else 1
+        found += [{"p": p, "i": i * step, "m": m, "x": of_space} for m in range(1, 8) for i in range(1, 6)]
+    return found
 
 
 ODD = [{"p": p, "x": m} for p in (3, 5) for m in (y, XY, of(Apply("P", 1, w)))]
@@ -115,6 +183,35 @@ GRID: dict[str, list[Bindings]] = {
     "conjugate-of-a-full-square": [{"p": 2, "n": n, "x": m} for n in (3, 7) for m in (y, w)],
     "conjugate-of-a-letter": _conjugates(),
     "total": _both({"x": x}, {"x": XY}, {"x": of(Apply("Q", 0, x))}),
+    "wu": _wu_grid(),
+    "thom": _thom_grid(),
+    "splitting-principle": _splitting_grid(),
+    "projective-power": _binomial_grid(),
+    "empty-degree": [
+        {"p": p, "i": i, "x": Monomial(((named(text, p, letter, index), n),))}
+        for p, text, letter, index, i in (
+            (2, "BU", "c", 2, 3),
+            (2, "BSp(2)", "q", 1, 2),
+            (2, "CP^3", "y", None, 1),
+            (2, "HP", "u", None, 6),
+            (3, "RP^5", "x", None, 1),
+        )
+        for n in (1, 2)
+    ],
+    "operation-of-the-space": [{"p": p, "token": 0, "of": named(f"lens({p})", p, "x")} for p in (3, 5)],
+    "bockstein-of-the-space": [
+        {"p": p, "k": k, "of": named(f"lens({p**k})", p, letter)} for p in (2, 3) for k in (2, 3) for letter in "xy"
+    ],
+    "truncated": [
+        {"p": p, "h": h, "x": named(text, p, letter)}
+        for p, text, letter, h in ((2, "RP^3", "x", 4), (3, "CP^2", "y", 3), (5, "HP^1", "u", 2))
+    ],
+    "relation-of-the-ring": [
+        {"p": 2, "number": 1, "space": space(f"thom({t})", 2)} for t in ("BO(3)", "BU(2)", "BSp(1)")
+    ]
+    + [{"p": 3, "number": 1, "space": space(f"thom({t})", 3)} for t in ("BSO(4)", "BU(2)")]
+    + [{"p": 2, "number": 1, "space": PAIR}]
+    + [{"p": 3, "number": n, "space": SIGNED} for n in (1, 2)],
 }
 
 OUTSIDE: dict[str, list[Bindings]] = {
@@ -189,6 +286,57 @@ OUTSIDE: dict[str, list[Bindings]] = {
     "conjugate-of-a-full-square": [{"p": 2, "n": n, "x": x} for n in (1, 2, 5)] + [{"p": 3, "n": 3, "x": x}],
     "conjugate-of-a-letter": [{"p": 2, "n": 0, "x": x}],
     "total": [{"p": 2, "x": IDENTITY}, {"p": 2, "x": of(Apply("total", 0, x))}],
+    "wu": [
+        {"p": 2, "k": 3, "m": 3, "of": named("BO", 2, "w", 3)},
+        {"p": 2, "k": 0, "m": 3, "of": named("BO", 2, "w", 3)},
+        {"p": 2, "k": 1, "m": 4, "of": named("BO", 2, "w", 3)},
+        {"p": 3, "k": 1, "m": 3, "of": named("BU", 3, "c", 3)},
+        {"p": 2, "k": 1, "m": 3, "of": Class("w", 3, 0, 3)},
+    ],
+    "thom": [
+        {"p": 2, "k": 3, "of": named("thom(BO(3))", 2, "U")},
+        {"p": 2, "k": 1, "of": named("BO", 2, "w", 3)},
+        {"p": 3, "k": 1, "of": named("thom(BSO(3))", 3, "U")},
+    ],
+    "splitting-principle": [
+        {"p": 2, "k": 1, "of": named("BU", 2, "c", 3)},
+        {"p": 3, "k": 3, "of": named("BU", 3, "c", 3)},
+        {"p": 3, "k": 0, "of": named("BU", 3, "c", 3)},
+        {"p": 3, "k": 1, "of": named("CP", 3, "y")},
+    ],
+    "projective-power": [
+        {"p": 2, "i": 1, "m": 2, "x": named("CP", 2, "y")},
+        {"p": 2, "i": 0, "m": 2, "x": named("RP", 2, "x")},
+        {"p": 3, "i": 1, "m": 1, "x": named("RP^5", 3, "x")},
+        {"p": 2, "i": 1, "m": 2, "x": A},
+    ],
+    "empty-degree": [
+        {"p": 2, "i": 2, "x": of(named("CP", 2, "y"))},
+        {"p": 2, "i": 1, "x": of(named("BO", 2, "w", 3))},
+        {"p": 2, "i": 1, "x": x},
+        {"p": 2, "i": 1, "x": product((X, 1), (named("CP", 2, "y"), 1))},
+    ],
+    "operation-of-the-space": [
+        {"p": 2, "token": 1, "of": named("BO", 2, "w", 3)},
+        {"p": 2, "token": 1, "of": named("lens(4)", 2, "x")},
+        {"p": 3, "token": 0, "of": A},
+    ],
+    "bockstein-of-the-space": [
+        {"p": 2, "k": 3, "of": named("lens(4)", 2, "x")},
+        {"p": 2, "k": 1, "of": named("lens(4)", 2, "x")},
+        {"p": 2, "k": 2, "of": named("BO", 2, "w", 3)},
+        {"p": 2, "k": 2, "of": U},
+    ],
+    "truncated": [
+        {"p": 2, "h": 3, "x": named("RP^3", 2, "x")},
+        {"p": 2, "h": 4, "x": named("RP", 2, "x")},
+        {"p": 2, "h": 4, "x": A},
+    ],
+    "relation-of-the-ring": [
+        {"p": 2, "number": 0, "space": PAIR},
+        {"p": 2, "number": 2, "space": PAIR},
+        {"p": 2, "number": 1, "space": space("BO(3)", 2)},
+    ],
 }
 
 

@@ -44,7 +44,8 @@ def greater(a: Factor, b: Factor) -> bool:
     if below(b, a.argument):
         return True
     if isinstance(b, Class):
-        return False
+        # classes are constants below every letter
+        return True
     rank_a, rank_b = _rank(a.key, a.index), _rank(b.key, b.index)
     if rank_a != rank_b:
         return rank_a > rank_b and above(a, b.argument)

@@ -85,6 +85,18 @@ EXPRESSIONS = [
     (5, "let x in H^4", "P^2(x^3) + P x"),
     (2, "", "Sq^13 Sq^12 Sq^11"),
     (2, "let x in H^2", "Sq^5 x + Sq^6 x"),
+    (2, "on BO(5)", "Sq^3 w_5"),
+    (2, "on BO(5)", "Sq^2 Sq^3 w_5"),
+    (2, "on BSpin", "Sq^1 w_16 w_4 + Sq^4 w_13 w_4"),
+    (2, "on thom(BO(3))", "Sq^2(w_2 U)"),
+    (2, "on thom(BO(3))", "U^2"),
+    (2, "on RP^5 x CP^2", "Sq^2(x^3 y)"),
+    (2, "on RP^3", "Sq^1(x^3)"),
+    (2, "on BU", "Sq^3 c_2"),
+    (3, "on BU(4)", "P^1 c_2"),
+    (3, "on BSO(6)", "P^1 p_2"),
+    (3, "on thom(BSp(2))", "P^2 U"),
+    (3, "on lens(9)", "beta_2(x y^2)"),
 ]
 
 

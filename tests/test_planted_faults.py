@@ -13,7 +13,7 @@ from attrs import evolve, frozen
 
 from opslang.ir import tree as ir
 from opslang.ir.convert import from_tree, to_canonical
-from opslang.ir.term import Element, Path
+from opslang.ir.term import Element, Monomial, Path
 from opslang.ir.term import replace as replaced
 from opslang.kernel import check as kernel
 from opslang.laws import composition
@@ -80,9 +80,9 @@ def test_a_wrong_binomial_in_the_law(monkeypatch: pytest.MonkeyPatch) -> None:
     assert found.kernel == 0 and found.witness > 40
 
 
-def dropping(element: Element, path: Path, lhs_power: int, rhs: Element) -> Element:
+def dropping(element: Element, path: Path, lhs_power: int, rhs: Element, part: Monomial | None = None) -> Element:
     """`replace`, which loses the last term of a sum."""
-    result = replaced(element, path, lhs_power, rhs)
+    result = replaced(element, path, lhs_power, rhs, part)
     return Element(result.prime, result.terms[:-1]) if len(result.terms) > 1 else result
 
 

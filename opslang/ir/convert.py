@@ -145,6 +145,9 @@ def from_tree(node: tree.Tree, prime: int) -> Element:
 
 def is_generator(word: tree.Word, of: tree.Class, p: int) -> bool:
     """Whether a word on a class is a generator of its cohomology.  Source: Serre 1953; Cartan 1954."""
+    if of.ring is not None:
+        # the space says what every operation on a class of its own is
+        return not word
     if not is_admissible(word, p):
         return False
     if word:
@@ -158,6 +161,13 @@ def is_generator(word: tree.Word, of: tree.Class, p: int) -> bool:
         # beta_k of a class of degree 1 has excess 1 but is no square: that class squares to 0.
         return e < of.degree or (word == (-of.order,) and of.degree == 1) or not word
     return e < of.degree or not word or (e == of.degree and word[0] <= 0)
+
+
+def _rewritten(monomial: tree.Monomial, p: int) -> bool:
+    """Whether the leading monomial of a relation of a named space divides a product of generators."""
+    exponents = {generator.of: exponent for generator, exponent in monomial if not generator.word}
+    rings = {of.ring for of in exponents if of.ring is not None}
+    return any(all(exponents.get(of, 0) >= n for of, n in lead) for ring in rings for lead, _ in ring.rules(p))
 
 
 def to_canonical(element: Element, operation: bool) -> tree.OperationElement | tree.ClassElement:
@@ -185,11 +195,15 @@ def to_canonical(element: Element, operation: bool) -> tree.OperationElement | t
             exterior = (p > 2 and dimension % 2) or (p == 2 and of.order != 1 and dimension == 1)
             if exterior and exponent > 1:
                 raise ValueError(f"{factor} squares to 0")
+            if of.ring is not None and (of.ring.height(p, of) or exponent + 1) <= exponent:
+                raise ValueError(f"{factor}^{exponent} is 0")
             total += dimension * exponent
             generators.append((tree.Generator(word, of), exponent))
         ordered = tuple(sorted(generators, key=lambda g: generator_key(g[0], p)))
         if ordered != tuple(generators):
             raise ValueError("the factors are not in the order of generators")
+        if _rewritten(ordered, p):
+            raise ValueError("a relation of the ring rewrites it")
         terms.append((total, ordered, c))
     terms.sort(key=lambda term: (term[0], monomial_key(term[1], p)))
     return tree.ClassElement(p, tuple((monomial, c) for _, monomial, c in terms))

@@ -302,12 +302,45 @@ def factor_at(element: Element, path: Path) -> Block:
     return factor, exponent
 
 
+def monomial_at(element: Element, path: Path) -> Monomial:
+    """The product that holds the block at a path.  IndexError where the path leads nowhere."""
+    if len(path) == 2:
+        return element.terms[path[0]][0]
+    factor, _ = factor_at(element, path[:-1])
+    if not isinstance(factor, Apply):
+        raise IndexError("the path goes on inside a class")
+    return factor.argument
+
+
+def quotient(monomial: Monomial, divisor: Monomial) -> Monomial | None:
+    """What is left of a product without a part of it; None where that is no part of it."""
+    exponents = dict(monomial.blocks)
+    for factor, exponent in divisor.blocks:
+        left = exponents.get(factor, 0) - exponent
+        if left < 0:
+            return None
+        exponents[factor] = left
+    return Monomial(tuple([(factor, exponents[factor]) for factor, _ in monomial.blocks if exponents[factor]]))
+
+
 Pairs = list[tuple[Monomial, int]]
 
 
-def _replace_inside(monomial: Monomial, path: Path, lhs_power: int, rhs: Element) -> Pairs:
+def _replace_part(monomial: Monomial, part: Monomial, rhs: Element) -> Pairs:
+    """A product with a part of it, canonical and once, replaced."""
+    p = rhs.prime
+    left = quotient(monomial, part)
+    if left is None:
+        raise ValueError("the product does not hold that part")
+    _, sign = _cup_monomials(part, left, p)
+    return list(cup(scale(sign, rhs), of_monomial(p, left)).terms)
+
+
+def _replace_inside(monomial: Monomial, path: Path, lhs_power: int, rhs: Element, part: Monomial | None) -> Pairs:
     p, at = rhs.prime, path[0]
     factor, exponent = monomial.blocks[at]
+    if len(path) == 1 and part is not None:
+        return _replace_part(monomial, part, rhs)
     if len(path) == 1:
         whole, rest = divmod(exponent, lhs_power)
         middle = list(power(rhs, whole).terms)
@@ -315,7 +348,7 @@ def _replace_inside(monomial: Monomial, path: Path, lhs_power: int, rhs: Element
             middle = list(cup(collect(p, middle), of_factor(p, factor, rest)).terms)
     else:
         assert isinstance(factor, Apply)
-        inner = _replace_inside(factor.argument, path[1:], lhs_power, rhs)
+        inner = _replace_inside(factor.argument, path[1:], lhs_power, rhs, part)
         middle = [(Monomial(((Apply(factor.key, factor.index, m), 1),)), c) for m, c in inner]
         if exponent > 1:
             middle = list(power(collect(p, middle), exponent).terms)
@@ -325,9 +358,12 @@ def _replace_inside(monomial: Monomial, path: Path, lhs_power: int, rhs: Element
     return list(cup(of_monomial(p, left), collect(p, middle), of_monomial(p, right)).terms)
 
 
-def replace(element: Element, path: Path, lhs_power: int, rhs: Element) -> Element:
-    """The element with factor^lhs_power replaced by rhs in the block at the path, as often as the exponent allows."""
+def replace(element: Element, path: Path, lhs_power: int, rhs: Element, part: Monomial | None = None) -> Element:
+    """The element with factor^lhs_power replaced by rhs in the block at the path, as often as the exponent allows.
+
+    Where `part` is given it is replaced instead, once, in the product that the block belongs to.
+    """
     monomial, coefficient = element.terms[path[0]]
-    fresh = _replace_inside(monomial, path[1:], lhs_power, rhs)
+    fresh = _replace_inside(monomial, path[1:], lhs_power, rhs, part)
     others = element.terms[: path[0]] + element.terms[path[0] + 1 :]
     return collect(element.prime, [*others, *((m, coefficient * c) for m, c in fresh)])

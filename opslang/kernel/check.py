@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
-from opslang.ir.term import TooMany, factor_at, replace
+from opslang.ir.term import TooMany, factor_at, monomial_at, quotient, replace
 from opslang.laws.derivation import Derivation
 from opslang.laws.law import Law
 
@@ -28,10 +28,11 @@ def check(derivation: Derivation, laws: Mapping[str, Law]) -> None:
         try:
             equation = laws[step.law].instance(**step.bindings)
             factor, exponent = factor_at(current, step.path)
+            room = monomial_at(current, step.path)
         except (ValueError, TypeError, AttributeError, IndexError, KeyError, AssertionError, TooMany) as reason:
             raise Rejected(f"step {number}: {step.law} has no such instance or place: {reason}") from reason
-        if factor != equation.factor or exponent < equation.power:
+        if factor != equation.factor or exponent < equation.power or quotient(room, equation.lhs) is None:
             raise Rejected(f"step {number}: {step.law} does not apply there")
-        current = replace(current, step.path, equation.power, equation.rhs)
+        current = replace(current, step.path, equation.power, equation.rhs, equation.part)
         if current != step.after:
             raise Rejected(f"step {number}: {step.law} gives another result")

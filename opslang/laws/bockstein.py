@@ -43,6 +43,11 @@ def lifts_to_integers(factor: Factor, p: int) -> bool:
 def _root_exponent(factor: Factor, exponent: int, k: int, p: int) -> int | None:
     """The least power q of p with beta_k defined on factor^q and q dividing the exponent; None where there is none."""
     order = factor.order if isinstance(factor, Class) else 1
+    if isinstance(factor, Class) and factor.ring is not None:
+        first, _ = factor.ring.bockstein(p, factor)
+        if first is None:
+            return 1
+        order = first
     if lifts_to_integers(factor, p) or order >= k:
         return 1
     if word_on_class(factor, p) is None or (p > 2 and parity_of(factor)):

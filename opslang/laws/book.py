@@ -11,10 +11,14 @@ from opslang.laws.bockstein import BELOW_ORDER, HIGHER_LEIBNIZ, INTEGRAL, ODD_CL
 from opslang.laws.cartan import BETA_POWER, CARTAN, FROBENIUS, LEIBNIZ
 from opslang.laws.composition import ADEM, ADEM_BOCKSTEIN, ADEM_POWERS, BETA_SQUARED
 from opslang.laws.conjugation import CHI_LETTER, CHI_PRIMITIVE, CHI_STRAFFIN, CHI_TWICE, CHI_WORD
+from opslang.laws.given import HIGHER, OPERATION, RELATION, TRUNCATED
 from opslang.laws.instability import EXCESS, EXTERIOR, ODD_SQUARE, ON_UNIT, TOP_POWER, VANISH
 from opslang.laws.law import Law
 from opslang.laws.milnor import Q_COMMUTATOR, Q_DEGREE_ONE, Q_PRODUCT, Q_SQUARED, Q_ZERO
+from opslang.laws.projective import BINOMIAL, EMPTY
+from opslang.laws.splitting import SPLITTING
 from opslang.laws.total import TOTAL
+from opslang.laws.wu import THOM, WU
 
 BOOK: tuple[Law, ...] = (
     VANISH,
@@ -27,9 +31,18 @@ BOOK: tuple[Law, ...] = (
     ODD_CLASS_SQUARED,
     EXTERIOR,
     ODD_SQUARE,
+    TRUNCATED,
+    EMPTY,
+    RELATION,
     Q_SQUARED,
     BETA_POWER,
     TOP_POWER,
+    BINOMIAL,
+    WU,
+    THOM,
+    SPLITTING,
+    OPERATION,
+    HIGHER,
     FROBENIUS,
     CARTAN,
     LEIBNIZ,

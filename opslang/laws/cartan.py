@@ -28,6 +28,7 @@ from opslang.ir.term import (
     zero,
 )
 from opslang.laws.law import Bindings, Equation, Law, head, require, single, word
+from opslang.laws.ring import single_generator
 
 Parts = tuple[tuple[Monomial, int], ...]
 
@@ -105,9 +106,12 @@ def _cartan(p: int, k: int, parts: Parts) -> Equation:
 
 
 def _split(x: Monomial, p: int) -> Parts:
-    """The parts of a product: each exponent written in base p."""
-    parts = []
+    """The parts of a product: each exponent written in base p; powers for which there is a binomial stay whole."""
+    parts: list[tuple[Monomial, int]] = []
     for factor, exponent in x.blocks:
+        if single_generator(factor, p):
+            parts.append((Monomial(((factor, exponent),)), 1))
+            continue
         for place, digit in enumerate(digits(exponent, p)):
             parts += [(single(factor), p**place)] * digit
     return tuple(parts)

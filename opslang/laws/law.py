@@ -11,7 +11,7 @@ from typing import Any
 
 from attrs import field, frozen
 
-from opslang.ir.term import Apply, Element, Factor, Monomial, degree_of, degree_of_monomial
+from opslang.ir.term import UNIT, Apply, Element, Factor, Monomial, degree_of_monomial
 
 Bindings = dict[str, Any]
 """Values for a law's letters: ints, monomials, letters; always with the prime `p`."""
@@ -22,22 +22,45 @@ Binomial = tuple[int, int, int]
 
 @frozen
 class Equation:
-    """factor^power = rhs, of one degree on both sides (where the degrees are known)."""
+    """factor^power = rhs, of one degree on both sides (where the degrees are known).
+
+    A relation of a ring may have a product on its left side: `rest` is what stands behind factor^power there, in
+    canonical order.
+    """
 
     factor: Factor
     power: int
     rhs: Element
+    rest: Monomial = UNIT
+
+    @property
+    def lhs(self) -> Monomial:
+        """The left side."""
+        return Monomial(((self.factor, self.power), *self.rest.blocks))
+
+    @property
+    def part(self) -> Monomial | None:
+        """The left side where it is a product, for `term.replace`; None where it is a power of one factor."""
+        return self.lhs if self.rest.blocks else None
 
     def __attrs_post_init__(self) -> None:
         p = self.rhs.prime
-        degree = degree_of(self.factor, p)
+        degree = degree_of_monomial(self.lhs, p)
         for monomial, _ in self.rhs.terms:
             other = degree_of_monomial(monomial, p)
-            if degree is not None and other is not None and degree * self.power != other:
-                raise ValueError(f"a side of degree {degree * self.power} against one of degree {other}")
+            if degree is not None and other is not None and degree != other:
+                raise ValueError(f"a side of degree {degree} against one of degree {other}")
+
+
+Remark = tuple["str | Equation | Monomial", ...]
+"""Something to be said beside an instance: words, equations and monomials in a row."""
 
 
 def _no_binomials(**_: Any) -> tuple[Binomial, ...]:
+    return ()
+
+
+def _no_remarks(**_: Any) -> tuple[Remark, ...]:
     return ()
 
 
@@ -47,7 +70,9 @@ class Law:
 
     `examples` are lines of the language that hold (after the lines of `setting`).  `kills` says that the right side is
     always 0; `vanishes` says of bindings whether it is 0 for them.  `unseen` names the test that stands in where the
-    polynomial witness cannot see the law.
+    polynomial witness cannot see the law.  `match_product` looks for instances whose left side is a product, in a
+    monomial at the block of a number.  `words` gives the title of one instance where that says more than `title`;
+    `remarks` what else there is to say of it.
     """
 
     name: str
@@ -64,6 +89,9 @@ class Law:
     unseen: str | None = None
     coefficients: Callable[..., Any] | None = None
     binomials: Callable[..., tuple[Binomial, ...]] = field(default=_no_binomials)
+    match_product: Callable[[Monomial, int, int], Bindings | None] | None = None
+    words: Callable[..., str] | None = None
+    remarks: Callable[..., tuple[Remark, ...]] = field(default=_no_remarks)
 
 
 def require(condition: bool, message: str) -> None:

@@ -7,6 +7,7 @@ instances of laws.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator
 from typing import Any
 
@@ -15,9 +16,10 @@ from attrs import frozen
 from opslang.ir.term import IDENTITY, Class, Element, Monomial
 from opslang.laws.book import LAWS
 from opslang.laws.derivation import Derivation, Step
-from opslang.laws.law import Binomial, Equation, Law, single
+from opslang.laws.law import Binomial, Equation, Law, Remark, single
 from opslang.render.term_text import element_text, factor_text, letters_text, monomial_text, term_texts
 from opslang.render.text import Notation, superscript
+from opslang.spaces.family import Family
 
 
 @frozen
@@ -41,8 +43,10 @@ def _is_blank(derivation: Derivation) -> bool:
 
 
 def _is_short(step: Step) -> bool:
-    """Whether a step may share its line: its instance has one term at most and no binomials to show."""
+    """Whether a step may share its line: its instance has one term at most and nothing more to show."""
     law = LAWS[step.law]
+    if law.remarks(**step.bindings) or law.words:
+        return False
     return law.kills or (not law.binomials(**step.bindings) and len(law.instance(**step.bindings).rhs.terms) <= 1)
 
 
@@ -74,6 +78,8 @@ def _equation(step: Step) -> Equation:
 
 def equation_text(equation: Equation, notation: Notation) -> str:
     """An equation as it is written."""
+    if equation.part is not None:
+        return f"{monomial_text(equation.part, equation.rhs.prime, notation)} = {element_text(equation.rhs, notation)}"
     lhs = factor_text(equation.factor, equation.rhs.prime, notation)
     if equation.power > 1:
         lhs = (lhs if isinstance(equation.factor, Class) else f"({lhs})") + superscript(equation.power, notation)
@@ -82,7 +88,44 @@ def equation_text(equation: Equation, notation: Notation) -> str:
 
 def _numbers(step: Step) -> list[str]:
     """The integers that the law was used with: `a = 2`."""
-    return [f"{name} = {value}" for name, value in step.bindings.items() if isinstance(value, int) and name != "p"]
+    return [
+        f"{name} = {value}"
+        for name, value in step.bindings.items()
+        if isinstance(value, int) and name not in ("p", "token", "number")
+    ]
+
+
+def _title(step: Step) -> str:
+    """The name of the law, in the words of this instance where it has some."""
+    law = LAWS[step.law]
+    return law.words(**step.bindings) if law.words else law.title
+
+
+_POWER = re.compile(r"([A-Z]+)\^(\d+)")
+
+
+def _words_in_tex(words: str) -> str:
+    return r"\text{" + _POWER.sub(r"$\1^{\2}$", words).replace("…", r"$\dots$") + "}" if words else ""
+
+
+def _remark_text(remark: Remark, p: int, notation: Notation) -> str:
+    """A remark; in TeX the words are in \\text."""
+    text = ""
+    for piece in remark:
+        if isinstance(piece, Equation):
+            text += equation_text(piece, notation)
+        elif isinstance(piece, Monomial):
+            text += monomial_text(piece, p, notation)
+        elif notation == "latex":
+            text += _words_in_tex(piece)
+        else:
+            text += piece if notation == "unicode" else piece.replace("…", "...")
+    return text
+
+
+def remark_texts(step: Step, notation: Notation) -> list[str]:
+    """What else there is to say of an instance."""
+    return [_remark_text(remark, step.after.prime, notation) for remark in LAWS[step.law].remarks(**step.bindings)]
 
 
 def _binomials(step: Step) -> tuple[Binomial, ...]:
@@ -120,7 +163,7 @@ def _sum_rows(element: Element, notation: Notation, first: str, width: int) -> l
 def _group_rows(group: Group, p: int, notation: Notation, width: int, margin: int) -> list[str]:
     space = " " * margin
     step = group.steps[0]
-    about = group.law.title
+    about = _title(step)
     if len(group.steps) == 1 and _numbers(step):
         about += ", " + ", ".join(_numbers(step))
     label = f"{group.number}.".ljust(margin)
@@ -138,6 +181,8 @@ def _group_rows(group: Group, p: int, notation: Notation, width: int, margin: in
     binomials = [_binomial_text(b, p, notation) for b in _binomials(step)] if len(group.steps) == 1 else []
     if binomials:
         rows += _wrap(binomials, space + f"mod {p}: ", space + "       ", width, ", ")
+    for remark in dict.fromkeys(text for each in group.steps for text in remark_texts(each, notation)):
+        rows += _wrap(remark.split(" "), space, space + "  ", width, "")
     return rows + _sum_rows(group.steps[-1].after, notation, space + "= ", width)
 
 
@@ -179,18 +224,44 @@ def _tex_rows(element: Element) -> list[tuple[str, int]]:
     return rows or [("0", 1)]
 
 
-def _reason(group: Group, p: int, notation: Notation) -> list[str]:
-    """The law, the numbers it was used with, and its binomials: pieces for one row or more."""
-    about = [rf"\text{{by {group.law.title}}}" if notation == "latex" else f"by {group.law.title}"]
+def _reason(group: Group, p: int, notation: Notation, remarks: bool = True) -> list[str]:
+    """The law, the numbers it was used with, its binomials and remarks: pieces for one row or more."""
+    title = _title(group.steps[0])
+    about = [rf"\text{{by {title}}}" if notation == "latex" else f"by {title}"]
     if len(group.steps) == 1:
         about += _numbers(group.steps[0])
         about += [_binomial_text(b, p, notation) for b in _binomials(group.steps[0])]
+        about += remark_texts(group.steps[0], notation) if remarks else []
     return about
+
+
+def _remark_rows(step: Step) -> list[str]:
+    """The remarks in TeX rows, broken between words."""
+    p = step.after.prime
+    rows = []
+    for remark in LAWS[step.law].remarks(**step.bindings):
+        row: list[Any] = []
+        length = 0
+        pieces = [
+            part for piece in remark for part in (re.findall(r"\S+ ?| ", piece) if isinstance(piece, str) else [piece])
+        ]
+        for piece in pieces:
+            size = len(_remark_text((piece,), p, "text"))
+            if row and length + size > _ROW:
+                rows.append(row)
+                row, length = [], 0
+            if row and isinstance(piece, str) and isinstance(row[-1], str):
+                row[-1] += piece
+            else:
+                row.append(piece)
+            length += size
+        rows.append(row)
+    return [r"& \qquad " + _remark_text(tuple(row), p, "latex") for row in rows]
 
 
 def _reason_rows(group: Group, p: int) -> list[str]:
     """The reason on rows of its own, with the instances that fit in one."""
-    pieces = list(zip(_reason(group, p, "text"), _reason(group, p, "latex")))
+    pieces = list(zip(_reason(group, p, "text", False), _reason(group, p, "latex", False)))
     for each in dict.fromkeys(map(_equation, group.steps)):
         if len(equation_text(each, "text")) <= _ROW:
             pieces.append((equation_text(each, "text"), equation_text(each, "latex")))
@@ -202,7 +273,8 @@ def _reason_rows(group: Group, p: int) -> list[str]:
             length = 0
         rows[-1].append(tex)
         length += len(plain) + 2
-    return [r"& \qquad " + r",\ ".join(row) for row in rows]
+    remarks = _remark_rows(group.steps[0]) if len(group.steps) == 1 else []
+    return [r"& \qquad " + r",\ ".join(row) for row in rows] + remarks
 
 
 def align(derivation: Derivation) -> str:
@@ -235,6 +307,8 @@ def _plain(name: str, value: Any, p: int) -> Any:
     """A binding as JSON: numbers, texts, and pairs of a text and an exponent."""
     if isinstance(value, int | str):
         return value
+    if isinstance(value, Family):
+        return value.text
     if isinstance(value, Class):
         value = single(value)
     if isinstance(value, Monomial):
@@ -255,7 +329,8 @@ def items(derivation: Derivation) -> list[dict[str, Any]]:
             {
                 "step": number,
                 "law": step.law,
-                "title": LAWS[step.law].title,
+                "title": _title(step),
+                "remarks": remark_texts(step, "text"),
                 "bindings": {name: _plain(name, value, p) for name, value in step.bindings.items()},
                 "binomials": [list(binomial) for binomial in _binomials(step)],
                 "path": list(step.path),

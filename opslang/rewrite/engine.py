@@ -16,7 +16,9 @@ from opslang.ir.tree import OPS, Tree
 from opslang.laws.book import BOOK
 from opslang.laws.derivation import Derivation, Step
 from opslang.laws.law import Bindings, Law
+from opslang.laws.ring import letter_on_class
 from opslang.report.diagnostic import Diagnostic, warning
+from opslang.spaces.family import NotKnown
 
 FUEL = 500
 """Steps of a derivation, unless asked for more."""
@@ -68,10 +70,28 @@ class Search:
                     return (at, *below[0]), below[1], below[2]
             for law in self.laws:
                 bindings = law.match(factor, exponent, self.prime)
+                if bindings is None and law.match_product is not None:
+                    bindings = law.match_product(monomial, at, self.prime)
                 if bindings is not None:
                     return (at,), law, bindings
         self.settled.add(monomial)
         return None
+
+
+def _not_known(element: Element) -> str:
+    """Why no law opens an operation on a class of a named space, where one is left; empty where none is."""
+    waiting = [factor for monomial, _ in element.terms for factor, _ in monomial.blocks]
+    while waiting:
+        factor = waiting.pop()
+        acts = letter_on_class(factor, element.prime)
+        if acts is not None:
+            try:
+                acts[1].ring.operation(element.prime, *acts)
+            except NotKnown as reason:
+                return f"this is not known: {reason}"
+        if isinstance(factor, Apply):
+            waiting += [inner for inner, _ in factor.argument.blocks]
+    return ""
 
 
 def run(start: Element, laws: Sequence[Law] = BOOK, fuel: int = FUEL, operation: bool = False) -> Derivation:
@@ -83,6 +103,7 @@ def run(start: Element, laws: Sequence[Law] = BOOK, fuel: int = FUEL, operation:
     while not stopped:
         redex = search.first(current)
         if redex is None:
+            stopped = _not_known(current)
             break
         if len(steps) >= fuel:
             stopped = f"it has more than {fuel:,} steps"
@@ -92,7 +113,7 @@ def run(start: Element, laws: Sequence[Law] = BOOK, fuel: int = FUEL, operation:
             path, law, bindings = redex
             try:
                 equation = law.instance(**bindings)
-                current = replace(current, path, equation.power, equation.rhs)
+                current = replace(current, path, equation.power, equation.rhs, equation.part)
             except TooMany as reason:
                 stopped = f"the next step has {reason}"
             except ValueError as reason:

@@ -96,7 +96,7 @@ class Classifying(Family):
 
     def law(self, prime: int, token: int, of: Class) -> str:
         if prime == 2:
-            return "Wu's formula" if self.step == 1 else "Wu's formula, degrees times " + str(self.step)
+            return "Wu's formula" + {1: "", 2: ", degrees doubled", 4: ", degrees times 4"}[self.step]
         return "the splitting principle"
 
 

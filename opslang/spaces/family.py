@@ -77,6 +77,10 @@ class Family:
         """The name of the law behind `operation`, as the derivations give it."""
         return "the operations on the classes of the space"
 
+    def relation(self, prime: int, number: int) -> str:
+        """The name of a relation of `rules` (numbered from 1), as the derivations give it."""
+        return "a relation of the ring"
+
     def dimensions(self, prime: int, to: int) -> list[int] | None:
         """The Poincaré series up to a degree, where it is not that of the (truncated) polynomial ring on `classes`."""
         return None

@@ -73,7 +73,7 @@ class Projective(Family):
         return ((2, ((of, (prime + 1) // 2),)),) if token == 1 else ZERO
 
     def law(self, prime: int, token: int, of: Class) -> str:
-        return f"operations on {self.field}P^n"
+        return "the operations of a projective space"
 
 
 @frozen

@@ -99,8 +99,12 @@ def _reduced(terms: Sums, known: list[tuple[int, Sums]], rank: int | None) -> Su
 class Spin(Orthogonal):
     """BSpin, and BSpin(n) for n = 3 … 9, at 2."""
 
+    def relations(self) -> tuple[tuple[int, Sums], ...]:
+        """The pairs (i, sum) with w_i = sum."""
+        return relations(self.rank)
+
     def _killed(self) -> dict[int, Sums]:
-        return dict(relations(self.rank))
+        return dict(self.relations())
 
     @property
     def spinor(self) -> Class | None:
@@ -174,6 +178,8 @@ class Spin(Orthogonal):
         return not reached >> degree & 1
 
     def law(self, prime: int, token: int, of: Class) -> str:
+        if of.letter == "Delta":
+            return "a space without classes in that degree"
         return "Wu's formula, modulo the relations of BSpin"
 
 

@@ -99,7 +99,7 @@ class Thom(Family):
         return not powers or any(of == self.thom_class for of, _ in powers)
 
     def law(self, prime: int, token: int, of: Class) -> str:
-        return "operations on the Thom class"
+        return "Thom's formula" if prime == 2 else "the splitting principle"
 
 
 def thom(base: Family, prime: int, factor: int) -> Thom:
