@@ -92,6 +92,7 @@ class Session:
             outcome = self._answer(statement, Outcome(source, span, kind, "ok", self.scope.prime), lowering)
             return changed(outcome, diagnostics=(*lowering.diagnostics, *outcome.diagnostics))
         except Refusal as refusal:
+            lowering.diagnostics += refusal.others
             found = refusal.diagnostic
         except TooLarge as refusal:
             found = error(
@@ -134,7 +135,7 @@ class Session:
                 lowering.diagnostics += statements.on(statement, scope)
                 return changed(blank, space=scope.space.text if scope.space else None)
             case sf.SpaceStatement():
-                lowering.diagnostics += statements.space(statement, scope)
+                lowering.diagnostics += statements.space(statement, scope, self.limit)
                 return changed(blank, space=scope.spaces[statement.name].text)
             case sf.PrimeStatement():
                 lowering.diagnostics += statements.prime(statement, scope)

@@ -14,6 +14,7 @@ from opslang.report.diagnostic import Diagnostic, Refusal, error, note, warning
 from opslang.syntax import surface as sf
 
 LARGEST_PRIME = 1 << 62
+DEFAULT_LIMIT = 1_000_000
 
 
 def prime(statement: sf.PrimeStatement, scope: Scope) -> list[Diagnostic]:
@@ -34,14 +35,21 @@ def prime(statement: sf.PrimeStatement, scope: Scope) -> list[Diagnostic]:
     return []
 
 
-def space(statement: sf.SpaceStatement, scope: Scope) -> list[Diagnostic]:
-    """`space X = …`."""
-    value = space_value(statement.space, scope)
+def space(statement: sf.SpaceStatement, scope: Scope, limit: int = DEFAULT_LIMIT) -> list[Diagnostic]:
+    """`space X = …`; `limit` bounds the terms that working out a presentation may take."""
+    found: list[Diagnostic] = []
+    if isinstance(statement.space, sf.Presentation):
+        from opslang.meaning.presentations import presented
+
+        value, found = presented(statement.name, statement.space, scope.prime, limit)
+    else:
+        value = space_value(statement.space, scope)
     known = scope.spaces.get(statement.name)
     scope.spaces[statement.name] = value
     if known is not None and known != value:
-        return [warning("redeclared", f"{statement.name} was {known.text} and is now {value.text}", statement.span)]
-    return []
+        before = f"was {known.text} and is now {value.text}" if known.text != value.text else "was presented before"
+        found.append(warning("redeclared", f"{statement.name} {before}", statement.span))
+    return found
 
 
 def on(statement: sf.OnStatement, scope: Scope) -> list[Diagnostic]:

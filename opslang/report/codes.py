@@ -8,8 +8,9 @@ from __future__ import annotations
 from opslang.report.code import Code
 from opslang.report.codes_front import FRONT_CODES
 from opslang.report.codes_meaning import MEANING_CODES
+from opslang.report.codes_presentation import PRESENTATION_CODES
 from opslang.report.codes_syntax import SYNTAX_CODES
 
-CODES: dict[str, Code] = {**MEANING_CODES, **SYNTAX_CODES, **FRONT_CODES}
+CODES: dict[str, Code] = {**MEANING_CODES, **PRESENTATION_CODES, **SYNTAX_CODES, **FRONT_CODES}
 
 __all__ = ["CODES", "Code"]

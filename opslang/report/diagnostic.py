@@ -52,8 +52,10 @@ def note(name: str, message: str, span: Span, help: str = "") -> Diagnostic:
 
 
 class Refusal(Exception):
-    """Carries one diagnostic out of a stage that cannot give a value; caught where the statement is handled."""
+    """Carries a diagnostic out of a stage that cannot give a value, with `others` found before it; caught where the
+    statement is handled."""
 
-    def __init__(self, diagnostic: Diagnostic) -> None:
+    def __init__(self, diagnostic: Diagnostic, others: tuple[Diagnostic, ...] = ()) -> None:
         super().__init__(diagnostic.message)
         self.diagnostic = diagnostic
+        self.others = others

@@ -3,7 +3,7 @@ at a prime."""
 
 from __future__ import annotations
 
-from typing import Union
+from typing import TYPE_CHECKING, Union
 
 from attrs import frozen
 
@@ -12,6 +12,9 @@ from opslang.ir.tree import Class
 from opslang.spaces import characteristic, projective, spin
 from opslang.spaces.family import Family, NotKnown, Polynomial
 from opslang.spaces.thom import thom
+
+if TYPE_CHECKING:
+    from opslang.spaces.presented import PresentedFactor
 
 
 @frozen
@@ -58,7 +61,7 @@ _CLASSIFYING = {
 WORDS = (*_CLASSIFYING, *_PROJECTIVE, "lens", "thom")
 """The words that named spaces begin with."""
 
-AnyFactor = Union[Factor, NamedFactor]
+AnyFactor = Union[Factor, NamedFactor, "PresentedFactor"]
 
 
 @frozen
@@ -99,7 +102,7 @@ def localise(space: SpaceValue, prime: int) -> Localised:
     seen: dict[int, int] = {}
     for number, factor in enumerate(space.factors):
         at = number if len(space.factors) > 1 else 0
-        if isinstance(factor, NamedFactor):
+        if not isinstance(factor, Factor):
             families.append(factor.family(prime, at))
             continue
         primes = seen.get(factor.degree, 0)

@@ -13,6 +13,7 @@ from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
 from opslang.syntax.indices import power_of
 from opslang.syntax.parts import Arguments, Copies, Part, Word, nodes_of, single, span_of
+from opslang.syntax.scripts import bare
 from opslang.syntax.spellings import GREEK_NAMES
 
 
@@ -68,6 +69,36 @@ class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
 
     def space_number(self, children: list[Any]) -> s.Number:
         return s.Number(int(children[0].value), span_of(children))
+
+    def field(self, children: list[Any]) -> Word:
+        return Word(
+            "Z",
+            children[2].value[0] if isinstance(children[2].value, tuple) else children[2].value,
+            0,
+            span_of(children),
+        )
+
+    def presented_class(self, children: list[Any]) -> s.PresentedClass:
+        return s.PresentedClass(bare(children[0]), children[2].value, span_of(children))
+
+    def ideal(self, children: list[Any]) -> Part:
+        return Part(tuple([child for child in children if isinstance(child, s.Sum)]), span_of(children))
+
+    def presentation(self, children: list[Any]) -> s.Presentation:
+        word = children[0]
+        if word.letter not in ("F", "Z") or word.index is None or word.primes:
+            help = "a presented ring begins with its coefficients: F_2[u:2, v:3], F_3[…]"
+            raise Refusal(error("expected", f"expected F_p, not {word.value}", word.span, help))
+        relations: tuple[s.Sum, ...] = ()
+        to: s.Index | None = None
+        for before, child in zip(children, children[1:]):
+            if isinstance(child, Part) and getattr(before, "type", "") == "TO":
+                to = child.value
+            elif isinstance(child, Part):
+                relations = child.value
+        generators = tuple([child for child in children if isinstance(child, s.PresentedClass)])
+        given = tuple([child for child in children if isinstance(child, s.Assignment)])
+        return s.Presentation(word.index, generators, relations, given, to, span_of(children))
 
     def coefficients(self, children: list[Any]) -> s.Coefficients:
         summands: list[s.Summand] = []

@@ -13,7 +13,7 @@ from opslang.syntax.spelling import Reading, Token, shown
 
 USAGE: dict[str, str] = {
     "PRIME_WORD": "prime 3",
-    "SPACE_WORD": "space X = K(Z/4, 3) x K(Z, 5)",
+    "SPACE_WORD": "space X = K(Z/4, 3) x K(Z, 5), or space R = F_2[u:2, v:3] / (u^2, v^2) where Sq^1 u = v",
     "ON": "on K(Z/2, 3)",
     "LET": "let x, y in H^2, let z in H^3(X; Z/4) or let u = Sq^2 x",
     "WHY": "why Sq^2 Sq^2",
@@ -28,6 +28,7 @@ USAGE: dict[str, str] = {
 _SINGLES = (
     ("IN", "`in`"),
     ("TO", "`to`"),
+    ("WHERE", "`where`"),
     ("WITH", "`with`"),
     ("OVER", "`over`"),
     ("OF", "`of rank`"),

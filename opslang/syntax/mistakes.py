@@ -51,6 +51,8 @@ def _spaces_among(tokens: list[Token]) -> range:
     end = len(tokens)
     if tokens[0].kind in ("MAP", "BUNDLE"):
         return range(next((at for at, token in enumerate(tokens) if token.kind in ("WITH", "EQUALS")), end))
+    if tokens[0].kind == "SPACE_WORD":
+        return range(next((at for at, token in enumerate(tokens) if token.kind == "LSQUARE"), end))
     if tokens[0].kind in _SPATIAL:
         return range(end)
     if tokens[0].kind == "LET":

@@ -297,8 +297,12 @@ class Reading:
             self.stop = True
             return
         if kind == "LSQUARE" and self._spatial:
-            self._later("a presentation of an algebra", start, end)
-            return
+            if self._keyword != "SPACE_WORD":
+                message = "a presented ring is named before it is used"
+                self._fault("expected", message, start, end, "name it first: space R = F_2[u:2] / (u^3) where …")
+                self.stop = True
+                return
+            self._spatial = False
         role = ""
         if kind == "LBRACE":
             previous = self._previous()

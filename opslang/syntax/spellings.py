@@ -47,6 +47,7 @@ LATER_INSIDE: dict[str, str] = {
 STATEMENT_WORDS = frozenset(KEYWORDS) | frozenset(LATER)
 
 INSIDE: dict[str, dict[str, str]] = {
+    "SPACE_WORD": {"where": "WHERE", "to": "TO"},
     "SERIES": {"to": "TO"},
     "COMPARE": {"to": "TO"},
     "MAP": {"with": "WITH", "diagonal": "DIAGONAL", "projection": "PROJECTION", "standard": "STANDARD"},

@@ -207,6 +207,28 @@ class SpaceProduct:
 Space = Union[EilenbergMacLane, NamedSpace, SpaceProduct]
 
 
+@frozen
+class PresentedClass:
+    """`u:2`: a generator of a presented ring, with its degree."""
+
+    name: Name
+    degree: Index
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
+@frozen
+class Presentation:
+    """`F_2[u:2, v:3] / (u^2, v^2) where Sq^1 u = v to 40`: the p of F_p, generators, relations, operations on
+    generators (each the left side and its value), and the degree up to which to check it (None: not said)."""
+
+    prime: int
+    generators: tuple[PresentedClass, ...]
+    relations: tuple[Sum, ...] = ()
+    given: tuple["Assignment", ...] = ()
+    to: Index | None = None
+    span: Span = attrs.field(default=HERE, eq=False, repr=False)
+
+
 # --- statements ---------------------------------------------------------------------------------
 
 
@@ -223,7 +245,7 @@ class SpaceStatement:
     """`space X = …`."""
 
     name: str
-    space: Space
+    space: Union[Space, Presentation]
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
