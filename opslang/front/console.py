@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING, Any
 
 from prompt_toolkit.application.current import get_app
 from prompt_toolkit.enums import DEFAULT_BUFFER, EditingMode
-from prompt_toolkit.filters import has_focus
+from prompt_toolkit.filters import emacs_mode, has_focus
 from prompt_toolkit.formatted_text import StyleAndTextTuples
 from prompt_toolkit.key_binding import KeyBindings, KeyPressEvent
 from prompt_toolkit.lexers import DynamicLexer, Lexer
@@ -100,6 +100,7 @@ class Console:
             include_default_pygments_style=False,
             color_depth=None if self._coloured else ColorDepth.DEPTH_1_BIT,
         )
+        editor.app.ttimeoutlen = 0.1  # seconds that an Escape waits for the rest of a sequence
         # Where the terminal does not answer, there is no line at the bottom; that is no news for the user.
         editor.app.renderer.cpr_not_supported_callback = None
         editor.default_buffer.on_text_changed += self._changed
@@ -138,7 +139,7 @@ class Console:
         def _tab(event: KeyPressEvent) -> None:
             self._complete_at(event.current_buffer)
 
-        @bindings.add("escape", "enter", filter=focused)
+        @bindings.add("escape", "enter", filter=focused & emacs_mode)  # in vi, Escape must not wait for more
         def _line(event: KeyPressEvent) -> None:
             event.current_buffer.insert_text("\n")
 

@@ -19,6 +19,9 @@ from opslang.syntax.parser import parse
 
 Tone = Literal["quiet", "warning", "error"]
 
+LOW = 16
+"""Up to this degree Tab knows the classes of a named space."""
+
 LONGEST = 6_000
 """A text of more characters is not looked at while it is typed: reading it takes longer than a keystroke may."""
 
@@ -32,22 +35,22 @@ class Glance:
     span: Span | None = None
 
 
-def _tables(scope: Scope) -> list[str]:
-    """The tables that declarations fill."""
+def tables(scope: Scope) -> list[str]:
+    """The tables that declarations fill, by the names of their fields."""
     return [each.name for each in fields(Scope) if isinstance(getattr(scope, each.name), dict)]
 
 
 def copy_of(scope: Scope) -> Scope:
     """A scope that later declarations do not change."""
     copied = copy(scope)
-    for name in _tables(scope):
+    for name in tables(scope):
         setattr(copied, name, dict(getattr(scope, name)))
     return copied
 
 
 def same_scope(scope: Scope, other: Scope) -> bool:
     """Whether two scopes say the same."""
-    return all(getattr(scope, name) == getattr(other, name) for name in ("prime", "space", *_tables(scope)))
+    return all(getattr(scope, name) == getattr(other, name) for name in ("prime", "space", *tables(scope)))
 
 
 def glance(source: Source, scope: Scope) -> Glance:
@@ -134,7 +137,8 @@ def _words(statement: sf.Statement, scope: Scope, lowering: Lowering) -> str:
             return "a space"
         case sf.OnStatement():
             lowering.diagnostics += on(statement, scope)
-            return _classes_here(scope)
+            names = classes_here(scope)
+            return f"space with {names}" if names else "a point at this prime"
         case sf.BasisStatement():
             return "basis of one degree"
         case sf.SeriesStatement():
@@ -142,12 +146,26 @@ def _words(statement: sf.Statement, scope: Scope, lowering: Lowering) -> str:
     return ""
 
 
-def _classes_here(scope: Scope) -> str:
+def classes_here(scope: Scope) -> str:
+    """The names of the classes of the current space; empty where there are none, or no space is chosen."""
     from opslang.render.text import class_text
 
     here = scope.localised()
-    names = ", ".join(class_text(of) for of in here.classes) if here else ""
-    return f"space with {names}" if names else "a point at this prime"
+    if here is None:
+        return ""
+    named = [family.names(scope.prime) for family in here.families]
+    return ", ".join([*(class_text(of) for of in here.classes), *named])
+
+
+def generators_here(scope: Scope) -> dict[str, int]:
+    """The names of generators of the current space in low degrees, with their degrees."""
+    from opslang.render.text import class_text
+
+    here = scope.localised()
+    if here is None:
+        return {}
+    found = [*here.classes, *(of for family in here.families for of in family.classes(scope.prime, LOW))]
+    return {class_text(of): of.degree for of in found}
 
 
 def of_value(value: Value) -> str:

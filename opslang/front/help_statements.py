@@ -57,21 +57,27 @@ STATEMENTS: dict[str, Topic] = {
         ("dimension", "poincare series"),
     ),
     "map": Topic(
-        "Names a map of spaces by the classes that those of its target are taken to; f^* pulls classes back. The map is checked: "
-        "degrees, coefficients, relations and operations of the target. `standard`, `diagonal` and `projection 1` name maps that need no "
-        "further word; `map h = g f` composes.",
-        ("map f : K(Z/2, 3) -> K(Z/2, 5) with iota_5 -> Sq^2 iota_3", "f^*(Sq^1 iota_5)", "map r : BU(3) -> BO(6) standard", "r^* w_4"),
+        "Names a map of spaces by the classes that those of its target are taken to; f^* pulls classes back. The "
+        "map is checked: degrees, coefficients, relations and operations of the target. `standard`, `diagonal` "
+        "and `projection 1` name maps that need no further word; `map h = g f` composes.",
+        (
+            "map f : K(Z/2, 3) -> K(Z/2, 5) with iota_5 -> Sq^2 iota_3",
+            "f^*(Sq^1 iota_5)",
+            "map r : BU(3) -> BO(6) standard",
+            "r^* w_4",
+        ),
         ("pull-back",),
     ),
     "bundle": Topic(
-        "Names a vector bundle by its total class w, c or p; w_i(E), c_i(E), W_i(E) are classes of its base, sums, inverses and tensor "
-        "products with line bundles are bundles, and thom(E) is a space. The declared class is checked.",
+        "Names a vector bundle by its total class w, c or p; w_i(E), c_i(E), W_i(E) are classes of its base, "
+        "sums, inverses and tensor products with line bundles are bundles, and thom(E) is a space. The declared "
+        "class is checked.",
         ("bundle E of rank 3 over RP^4(a) with w = 1 + a", "w_2(E + E)", "on thom(E)", "Sq^1 U"),
         ("vector bundle", "whitney sum"),
     ),
     "compare": Topic(
-        "Compares two spaces up to a degree: dimensions, ranks of operations, of their composites, of cup products. What it prints shows "
-        "that the two are not isomorphic; that it finds nothing shows nothing.",
+        "Compares two spaces up to a degree: dimensions, ranks of operations, of their composites, of cup "
+        "products. What it prints shows that the two are not isomorphic; that it finds nothing shows nothing.",
         ("compare RP^4, CP^2 to 8",),
     ),
     "comment": Topic(
@@ -131,8 +137,9 @@ SHELL: dict[str, Topic] = {
     "leave": Topic("Ends the session, as Ctrl-D on an empty line does.", ()),
     "editing": Topic(
         "Enter runs the input, or goes on to a next line while a bracket is open or an operator stands at the "
-        "end; Alt-Enter always begins a next line. Tab completes: \\iota becomes its sign. Ctrl-R searches earlier"
-        " lines; Up finds those that begin alike. Ctrl-C drops the input, or stops a computation.",
+        "end; Alt-Enter (with the keys of Emacs) always begins a next line. Tab completes: \\iota becomes its "
+        "sign. Ctrl-R searches earlier lines; Up finds those that begin alike. Ctrl-C drops the input, or stops a"
+        " computation.",
         (),
         ("tab", "enter", "history", "search", "keyboard"),
     ),

@@ -10,6 +10,7 @@ import re
 from collections.abc import Callable, Iterable
 from typing import TYPE_CHECKING, cast
 
+from opslang.front.glance import classes_here, copy_of, tables
 from opslang.front.logbook import Entry
 from opslang.front.sitting import Sitting
 from opslang.front.status import fitted
@@ -19,7 +20,7 @@ from opslang.meaning.scope import Key, Scope, spelled
 from opslang.meaning.value import Value
 from opslang.pipeline import DEFAULT_LIMIT
 from opslang.render.show import show
-from opslang.render.text import Notation, class_text, element_text
+from opslang.render.text import Notation, element_text
 from opslang.report.diagnostic import Refusal
 
 if TYPE_CHECKING:
@@ -73,11 +74,8 @@ class Requests:
     def _declared(self, _: str) -> None:
         scope = self._sitting.session.scope
         lines = [f"prime {scope.prime}", *(f"space {name} = {value.text}" for name, value in scope.spaces.items())]
-        here = scope.localised()
-        if here is not None and scope.space is not None:
-            lines.append(
-                f"on {scope.space.text}: {', '.join(class_text(of) for of in here.classes) or 'a point at this prime'}"
-            )
+        if scope.space is not None:
+            lines.append(f"on {scope.space.text}: {classes_here(scope) or 'a point at this prime'}")
         lines += _names(scope, self._sitting.logbook.entries)
         self._paged("\n".join(lines))
 
@@ -95,8 +93,6 @@ class Requests:
     # --- changing the sitting -------------------------------------------------------------------
 
     def _undo(self, _: str) -> bool:
-        from opslang.front.glance import copy_of
-
         sitting = self._sitting
         taken = sitting.logbook.undo()
         if taken is None:
@@ -229,7 +225,18 @@ def _head(sitting: Sitting) -> list[str]:
 
 
 def _names(scope: Scope, entries: list[Entry]) -> list[str]:
-    return [f"let {_meaning(key, value, scope.prime, entries)}" for key, value in scope.names.items()]
+    found = [f"let {_meaning(key, value, scope.prime, entries)}" for key, value in scope.names.items()]
+    for table in sorted(set(tables(scope)) - {"spaces", "names"}):
+        found += [_declaration(table.removesuffix("s"), name, entries) for name in getattr(scope, table)]
+    return found
+
+
+def _declaration(word: str, name: str, entries: list[Entry]) -> str:
+    """The line that declared something of a kind that has a table of its own, as maps have."""
+    for entry in reversed(entries):
+        if re.match(rf"\s*{word}\s+{re.escape(name)}(?![\w'])", entry.typed):
+            return " ".join(entry.typed.split("#")[0].split())
+    return f"{word} {name}"
 
 
 def _meaning(key: Key, value: Value, prime: int, entries: list[Entry]) -> str:

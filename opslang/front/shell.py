@@ -114,17 +114,16 @@ class Shell:
 
     def _world(self) -> World:
         from opslang.front.completion import World
-        from opslang.front.glance import of_value
+        from opslang.front.glance import generators_here, of_value
         from opslang.meaning.scope import spelled
-        from opslang.render.text import class_text
 
         sitting = self._rooms()[0]
         scope = sitting.session.scope
-        here = scope.localised()
         classes = {spelled(key): of_value(value) for key, value in scope.names.items()}
-        classes |= {class_text(of): f"class, degree {of.degree}" for of in (here.classes if here else ())} or {
-            "iota_": "fundamental class"
-        }
+        classes |= {name: f"class, degree {degree}" for name, degree in generators_here(scope).items()}
+        if scope.space is None:
+            classes["iota_"] = "fundamental class"
+        classes |= {f"{name}^*": "map" for name in getattr(scope, "maps", ())}
         results = tuple(entry.number for entry in sitting.logbook.results() if entry.number is not None)
         return World(scope.prime, tuple(scope.spaces), classes, results)
 
