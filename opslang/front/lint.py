@@ -129,14 +129,16 @@ def in_order(reports: Iterable[Report], names: list[str]) -> Iterator[Report]:
     listed = {os.path.realpath(name) for name in names}
     waiting: dict[str, list[Report]] = {}
     drawn: set[str] = set()
+    done: set[str] = set()
     for found in reports:
         own = os.path.realpath(found.name)
         root = os.path.realpath(found.part_of) if found.part_of else ""
-        if root in listed and root != own and root not in drawn:
-            waiting.setdefault(root, []).append(found)
-            continue
         if own in drawn:
             continue
+        if root in listed - done and root != own:
+            waiting.setdefault(root, []).append(found)
+            continue
+        done.add(own)
         yield found
         parts = {os.path.realpath(path) for path, _ in found.files}
         drawn |= parts - {own} if not found.part_of else set()

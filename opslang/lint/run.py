@@ -18,6 +18,7 @@ from opslang.lint.result import Report, Row
 from opslang.lint.rule import Draft, Unit, register
 
 _WORTH = ("finding", "true", "agrees", "consistent", "not-checked", "not-about-operations")
+FAULT = "opslang itself failed here"
 _SAID = {
     "finding": "something was found in it",
     "true": "true",
@@ -91,18 +92,28 @@ def judged(unit: Unit) -> Verdict | None:
     best: Verdict | None = None
     findings: list[Finding] = []
     settled = False
+    open_end: Verdict | None = None
     for rule in register():
         if rule.check is None or (settled and rule.severity == "error"):
             continue
-        verdict = rule.check(unit.statement, unit.known)
+        try:
+            verdict = rule.check(unit.statement, unit.known)
+        except (MemoryError, RecursionError):
+            verdict = Verdict("not-checked", reason="too large to be tried")
+        except Exception as fault:  # one formula is lost, not the draft
+            verdict = Verdict("not-checked", reason=f"{FAULT} in {rule.name}: {type(fault).__name__}: {fault}")
         if verdict is None:
             continue
         findings += verdict.findings
+        if verdict.standing == "not-checked" and open_end is None:
+            open_end = verdict
         settled = settled or any(finding.severity == "error" for finding in verdict.findings)
         if best is None or _WORTH.index(verdict.standing) < _WORTH.index(best.standing):
             best = verdict
     if best is None:
         return None
+    if best.standing == "consistent" and open_end is not None:
+        best = Verdict("consistent", (), f"{best.reason}; no more was decided: {open_end.reason}", open_end.needed)
     return Verdict(best.standing, tuple(findings), best.reason, best.needed, best.derivation)
 
 

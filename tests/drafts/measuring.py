@@ -17,7 +17,7 @@ from drafts.corpus import Draft, Mark, drafts
 from drafts.slips import Slip
 
 from opslang.lint.result import Report, Row
-from opslang.lint.run import lint
+from opslang.lint.run import FAULT, lint
 
 
 @dataclass
@@ -77,6 +77,8 @@ def measured(draft: Draft) -> Table:
     """The table of one draft."""
     report = report_of(draft.name)
     assert report.failure is None, report.failure
+    faults = [row.message for row in report.formulas if FAULT in row.message]
+    assert not faults, faults
     table = Table()
     for mark in draft.marks:
         _measure(table, mark, report)

@@ -210,7 +210,7 @@ class _Builder:
             sentences=paragraph.shown(start, end),
             lead=paragraph.shown(paragraph.sentences[paragraph.sentence_at(spot.offset)][0], spot.offset),
             script=context.lines,
-            space=particular_space(paragraph, spot.offset),
+            space=particular_space(paragraph, spot.offset, bool(self.settings.sized)),
         )
 
     def _manner(self, paragraph: Paragraph, spot: Spot, prime: int | None) -> dict[str, str]:

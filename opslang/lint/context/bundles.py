@@ -64,7 +64,10 @@ class Bundles:
         self.found += sorted(found, key=lambda bundle: bundle.spot.offset)
 
     def at(self, spot: Spot, letter: str) -> str:
-        """The space of the bundle meant at a place: that of the sentence, of the paragraph, of the section before."""
+        """The space of the bundle meant at a place: that of the sentence, of the paragraph, of the section before.
+
+        Failing these it is the only kind that the draft speaks of.
+        """
         wanted = ("BU", "BSU") if letter == "c" else ("BO", "BSO", "BSpin")
         fitting = [one for one in self.found if one.space.partition("(")[0] in wanted]
         here = [one for one in fitting if one.spot.paragraph == spot.paragraph]
@@ -76,4 +79,7 @@ class Bundles:
             if group is same and same:
                 return same[0].space
         earlier = [one for one in fitting if one.spot.section == spot.section and one.spot.paragraph < spot.paragraph]
-        return earlier[-1].space if earlier else ""
+        if earlier:
+            return earlier[-1].space
+        kinds = {one.space for one in fitting}
+        return kinds.pop() if len(kinds) == 1 else ""

@@ -193,16 +193,21 @@ _HYPOTHESIS = re.compile(
 _SUPPOSED = re.compile(r"^\s*(?:is|are|was|were) (?:supposed|assumed|given)\b", re.IGNORECASE)
 
 
-def particular_space(paragraph: Paragraph, place: int) -> str:
-    """What the sentence around a formula says of its space that makes more hold there than in general."""
+def particular_space(paragraph: Paragraph, place: int, sized: bool) -> str:
+    """What the sentence around a formula says of its space that makes more hold there than in general.
+
+    A manifold of any dimension (`sized` false) satisfies in low degrees no more than any space does.
+    """
     start, end = paragraph.sentences[paragraph.sentence_at(place)]
     for formula, at in zip(paragraph.formulas, paragraph.places):
         if at < end:
             found = particular(written(formula.tokens))
             if found and (start <= at or found == NO_GROUP):
                 return found
-    words = _PARTICULAR.search(paragraph.text, start, end)
-    return words.group() if words else ""
+    for words in _PARTICULAR.finditer(paragraph.text, start, end):
+        if sized or not words.group().lower().startswith("manifold"):
+            return words.group()
+    return ""
 
 
 def is_hypothesis(paragraph: Paragraph, place: int) -> bool:
