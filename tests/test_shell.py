@@ -373,3 +373,14 @@ def test_the_session_in_the_readme_goes_as_it_stands_there(tmp_path: Path) -> No
         shown = terminal.text()
     assert session in shown + "\n"
     assert "Sq^2 r_1" in (tmp_path / "morning.ops").read_text()
+
+
+def test_a_terminal_of_another_encoding(tmp_path: Path) -> None:
+    with Terminal(tmp_path, "shell", "--output", "unicode", PYTHONIOENCODING="latin-1") as terminal:
+        terminal.at_prompt(1)
+        terminal.enter("Sq^2 x + Sq^2 iota_4", 1)
+        terminal.enter("Sq^2 iota_4", 2)
+        terminal.sees("u03b9")
+        terminal.press("Sq^1 \\iot\t_4")
+        terminal.sees("Sq^1 \\iota_4")  # the sign cannot be shown
+        assert "Traceback" not in terminal.text()

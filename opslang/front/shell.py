@@ -9,6 +9,7 @@ import os
 import signal
 import sys
 from collections.abc import Iterable
+from io import TextIOWrapper
 from typing import TYPE_CHECKING, Any
 
 from opslang import __version__
@@ -39,6 +40,8 @@ class Shell:
     def run(self) -> int:
         """Prompts until the end of input, and gives the exit status."""
         self._work.listen()
+        if isinstance(sys.stdout, TextIOWrapper):
+            sys.stdout.reconfigure(errors="backslashreplace")  # for terminals that are not UTF-8
         signal.signal(signal.SIGTERM, _end)
         to_terminal(GREETING[: max(20, columns() - 1)] + "\n")
         while True:

@@ -102,7 +102,7 @@ class Sitting:
         lines += [
             line
             for row in rows[len(marked) :]
-            for line in wrap(row, width, initial_indent="    ", subsequent_indent="    ")
+            for line in wrap(row.strip(), width, initial_indent="    ", subsequent_indent="    ")
         ]
         self.say("\n".join(lines))
 
