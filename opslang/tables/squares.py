@@ -15,7 +15,7 @@ from collections.abc import Callable, Collection, Iterable
 from itertools import compress
 
 from opslang.laws.adem import iter_squares
-from opslang.tables.budget import Budget
+from opslang.tables.budget import Budget, TooLarge
 
 Packed = int
 EMPTY: frozenset[int] = frozenset()
@@ -78,45 +78,53 @@ class Products(dict[int, Collection[int]]):
         b = word & mask
         rest = word >> width
         if not rest:
-            return self._keep(key, self._pair(a, b))
+            pair = self._pair(a, b)
+            self[key] = pair
+            return pair
         bound = 2 * (rest & mask)
         shifted = rest << width
         result: set[int] = set()
-        toggle = result.symmetric_difference_update
         for x in self[b << width | a]:
             k = x & mask
             j = x >> width
             if j >= bound:
-                toggle(((shifted | j) << width | k,))
+                word = (shifted | j) << width | k
             elif j:
                 inner = self[shifted | j]
                 if inner:
                     half = k >> 1
-                    part = []
                     for y in inner:
-                        if y & mask <= half:
-                            part.append(y << width | k)
-                        else:
-                            other = self[y << width | k]
+                        word = y << width | k
+                        if y & mask > half:
+                            other = self[word]
                             if other:
-                                toggle(other)
-                    if part:
-                        toggle(part)
+                                result.symmetric_difference_update(other)
+                        elif word in result:
+                            result.remove(word)
+                        else:
+                            result.add(word)
+                continue
             elif k >= bound:
-                toggle((shifted | k,))
+                word = shifted | k
             else:
-                toggle(self[shifted | k])
-        return self._keep(key, result or EMPTY)
-
-    def _keep(self, key: int, value: Collection[int]) -> Collection[int]:
-        held = len(value)
-        self._budget.spend(held + 1)
+                other = self[shifted | k]
+                if other:
+                    result.symmetric_difference_update(other)
+                continue
+            if word in result:
+                result.remove(word)
+            else:
+                result.add(word)
+        held = len(result)
+        self._budget.left -= held + 1
+        if self._budget.left < 0:
+            raise TooLarge(self._budget.limit)
+        self._held += held
         if len(self) >= self._entries or self._held > self._stored:
             self.clear()
-            self._held = 0
-        self._held += held
-        self[key] = value
-        return value
+            self._held = held
+        self[key] = result
+        return result
 
 
 class Squares:
