@@ -406,6 +406,7 @@ def offered(before: str, world: World = WORLD) -> list[str]:
         ("help exc", ["excess"]),
         ("copy that_", ["that_1", "that_2"]),
         ("undo ", []),
+        ("space Y = K(Z/4, 2) x K(", []),
     ],
 )
 def test_tab_offers(before: str, expected: list[str]) -> None:

@@ -20,6 +20,8 @@ _WORD = re.compile(r"[A-Za-z][A-Za-z]*(?:_\d*)?'*\Z|(?<![A-Za-z0-9_^{])\Z")
 _LINE_START = re.compile(r"(?:\A|\n)[ \t]*[A-Za-z]*\Z")
 _WANTS_SPACE = re.compile(r"(?:\A|\n)[ \t]*(?:on|series|space\s+\S+\s*=|basis\s+H\^\S+?\()\s*(?:.*\sx\s+)?(\w*)\Z")
 
+_NAMES_SPACE = re.compile(r"[ \t]*(?:on|series|space\s+\S+\s*=|basis\s+H\^\S+?\()(?![A-Za-z])")
+
 SPACES = ("K(Z/2, ", "K(Z, ", "K(Z/4, ")
 """What a space that has no name yet begins with; the first group follows the prime."""
 
@@ -85,6 +87,8 @@ def offers(before: str, world: World, topics: Callable[[], Iterable[str]], signs
     if space:
         first = f"K(Z/{world.prime}, "
         return _matching(space.group(1), [(name, "") for name in dict.fromkeys([*world.spaces, first, *SPACES])])
+    if _NAMES_SPACE.match(line):
+        return []
     found = _WORD.search(before)
     if not found:
         return []

@@ -25,6 +25,8 @@ if TYPE_CHECKING:
 
 GREETING = f"opslang {__version__}   help lists what can be said, Ctrl-D leaves"
 
+SHORT_GREETING = f"opslang {__version__}   help, Ctrl-D leaves"
+
 
 class Shell:
     """The loop; the sitting is made when it is first needed."""
@@ -43,7 +45,7 @@ class Shell:
         if isinstance(sys.stdout, TextIOWrapper):
             sys.stdout.reconfigure(errors="backslashreplace")  # for terminals that are not UTF-8
         signal.signal(signal.SIGTERM, _end)
-        to_terminal(GREETING[: max(20, columns() - 1)] + "\n")
+        to_terminal((GREETING if len(GREETING) < columns() else SHORT_GREETING) + "\n")
         while True:
             try:
                 text = self._console.ask(self._prompt())
