@@ -325,6 +325,10 @@ def interrupted() -> None:
         ("why Sq^2 Sq^2", "derivation, operation, degree 4", "quiet"),
         ("prime 3", "the prime from here on", "quiet"),
         ("basis H^3(K(Z, 3))", "basis of one degree", "quiet"),
+        ("space R = K(Z/2, 3) x K(Z, 2)", "a space", "quiet"),
+        ("compare RP^4, CP^2 to 8", "a comparison of two spaces", "quiet"),
+        ("map f : K(Z/2, 3) -> K(Z/2, 5) with iota_5 -> Sq^2 iota_3", "a map", "quiet"),
+        ("bundle E of rank 3", "a vector bundle", "quiet"),
         ("Sq^2 omega", "omega is not declared", "error"),
     ],
 )
@@ -505,6 +509,18 @@ def test_history_has_the_platform_s_own_place(monkeypatch: pytest.MonkeyPatch) -
     monkeypatch.setattr("sys.platform", "win32")
     monkeypatch.setenv("LOCALAPPDATA", "/appdata")
     assert state_folder() == os.path.join("/appdata", "opslang")
+
+
+def test_others_find_the_lexer_by_its_entry_point() -> None:
+    import tomllib
+
+    from pygments import highlight
+    from pygments.formatters import HtmlFormatter
+
+    project = tomllib.loads((ROOT / "pyproject.toml").read_text())["project"]
+    module, name = project["entry-points"]["pygments.lexers"]["opslang"].split(":")
+    assert (module, name) == (OpslangLexer.__module__, OpslangLexer.__name__)
+    assert '<span class="nf">Sq</span>' in highlight("Sq^2 iota_3", OpslangLexer(), HtmlFormatter())
 
 
 # --- colours --------------------------------------------------------------------------------------

@@ -11,13 +11,22 @@ from opslang.ground.source import Source, Span
 from opslang.meaning.lower import Lowering
 from opslang.meaning.scope import Scope
 from opslang.meaning.spaces import space_value
-from opslang.meaning.statements import abbreviate, declare, on, prime, space
+from opslang.meaning.statements import abbreviate, declare, on, prime
 from opslang.meaning.value import Sort, Value
 from opslang.report.diagnostic import Diagnostic, Refusal
 from opslang.syntax import surface as sf
 from opslang.syntax.parser import parse
 
 Tone = Literal["quiet", "warning", "error"]
+
+OTHERS: dict[type, str] = {
+    sf.MapStatement: "a map",
+    sf.ComposeStatement: "a map",
+    sf.BundleStatement: "a vector bundle",
+    sf.BundleSumStatement: "a vector bundle",
+    sf.CompareStatement: "a comparison of two spaces",
+}
+"""Statements that cannot be checked without computing."""
 
 LOW = 16
 """Up to this degree Tab knows the classes of a named space."""
@@ -104,9 +113,11 @@ def means_alike(text: str, scope: Scope, other: Scope) -> bool:
     if statement is None:
         return False
     try:
-        if isinstance(statement, (sf.BasisStatement, sf.SeriesStatement)):
-            named = statement.space
-            return named is None or space_value(named, scope) == space_value(named, other)
+        if isinstance(statement, (sf.BasisStatement, sf.SeriesStatement, sf.CompareStatement)):
+            named = (
+                (statement.left, statement.right) if isinstance(statement, sf.CompareStatement) else (statement.space,)
+            )
+            return all(each is None or space_value(each, scope) == space_value(each, other) for each in named)
         values = lowered(statement, scope, text)
         return values is not None and values == lowered(statement, other, text)
     except Refusal:
@@ -133,7 +144,8 @@ def _words(statement: sf.Statement, scope: Scope, lowering: Lowering) -> str:
             lowering.diagnostics += prime(statement, scope)
             return "the prime from here on"
         case sf.SpaceStatement():
-            lowering.diagnostics += space(statement, scope)
+            if not isinstance(statement.space, sf.Presentation):  # whether that is well defined takes computing
+                space_value(statement.space, scope)
             return "a space"
         case sf.OnStatement():
             lowering.diagnostics += on(statement, scope)
@@ -143,7 +155,7 @@ def _words(statement: sf.Statement, scope: Scope, lowering: Lowering) -> str:
             return "basis of one degree"
         case sf.SeriesStatement():
             return "dimensions, degree by degree"
-    return ""
+    return OTHERS.get(type(statement), "")
 
 
 def classes_here(scope: Scope) -> str:
