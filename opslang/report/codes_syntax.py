@@ -24,7 +24,7 @@ SYNTAX_CODES: dict[str, Code] = {
     "not-yet-supported": Code(
         title="The language has this, this version does not read it",
         explanation=(
-            "Maps, bundles, manifolds, presentations, families `for all`, sums over a variable, and the statements "
+            "Maps, bundles, manifolds, families `for all`, sums over a variable, and the statements "
             "kernel, image, rank, solve, relations and compare belong to the language, and so do Pontryagin squares.  "
             "They are recognised, so that they are never read as something else."
         ),

@@ -155,6 +155,10 @@ class Action:
 
     # --- on generators --------------------------------------------------------------------------
 
+    def normal(self, at: int) -> Poly:
+        """The normal form of a generator: another one than itself where the relations make it of others."""
+        return self.ideal.reduce(self.ring.variable(at))
+
     def value(self, at: int, token: int) -> Poly:
         """A letter on a generator.  Raises Unknown."""
         ring, p = self.ring, self.prime
@@ -174,6 +178,9 @@ class Action:
 
     def _derived(self, at: int, token: int) -> Poly:
         if at < len(self.of.generators):
+            normal = self.normal(at)
+            if normal != self.ring.variable(at):
+                return self.operate(token, normal)
             if self.empty(self.ring.degrees[at] + self.shift(token)):
                 return {}
             parts = self._decomposed(token)
@@ -209,7 +216,7 @@ class Action:
     def word(self, word: Word, at: int) -> Poly:
         """A word on a generator.  Raises Unknown."""
         if not word:
-            return self.ideal.reduce(self.ring.variable(at))
+            return self.normal(at)
         return self._run(word[:-1], self.value(at, word[-1]))
 
     def _run(self, word: Word, f: Poly) -> Poly:
@@ -293,7 +300,12 @@ class Action:
 
     def adem_relations(self, at: int, to: int) -> Iterator[tuple[Word, Combination]]:
         """The relations that instability does not make true by itself on a generator, and whose degree is at most `to`
-        and one in which the algebra is not 0: a word and what it equals."""
+        and one in which the algebra is not 0: a word and what it equals.
+
+        On a generator that is made of others there are none that closed relations do not give.
+        """
+        if self.normal(at) != self.ring.variable(at):
+            return
         for word in self._words(at, to):
             self.work.spend(1)
             if not self.empty(self.ring.degrees[at] + sum(map(self.shift, word))):
@@ -316,6 +328,8 @@ class Action:
 
     def highest_relation(self, at: int) -> int:
         """The highest degree of those relations."""
+        if self.normal(at) != self.ring.variable(at):
+            return 0
         degree, p = self.ring.degrees[at], self.prime
         if p == 2:
             return 4 * degree - 4 if degree > 1 else 0

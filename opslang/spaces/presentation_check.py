@@ -72,7 +72,9 @@ def _given(presentation: Presentation) -> list[Fault]:
         degrees = sorted({ring.degree(m) for m in value})
         if degrees and degrees != [of.degree + shift]:
             listed = ", ".join(map(str, degrees))
-            message = f"{what} has degree {of.degree + shift}, and {presentation.show(value)}, given for it, degree {listed}"
+            message = (
+                f"{what} has degree {of.degree + shift}, and {presentation.show(value)}, given for it, degree {listed}"
+            )
             faults.append(Fault("given-degree", message, ("value", number)))
             continue
         twice = token if p == 2 else 2 * token

@@ -8,7 +8,7 @@ from __future__ import annotations
 from attrs import field, frozen
 
 from opslang.ir.tree import Class
-from opslang.spaces.family import Family, NotKnown, Polynomial, Powers, Rule, generator
+from opslang.spaces.family import Family, NotKnown, Polynomial, Powers, Rule
 from opslang.spaces.groebner import Exponents, Poly, TooMany
 from opslang.spaces.presentation import Action, Presentation, Unknown
 
@@ -44,8 +44,12 @@ class Presented(Family):
     def named(self, prime: int, letter: str, index: int | None, primes: int) -> Polynomial | None:
         for at, of in enumerate(self.presentation.generators):
             if (of.letter, of.index, of.primes) == (letter, index, primes):
-                return generator(self._of(at))
+                return self._polynomial(self.action.normal(at))
         return None
+
+    def name_degree(self, prime: int, letter: str, index: int | None) -> int:
+        degrees = [of.degree for of in self.presentation.generators if (of.letter, of.index) == (letter, index)]
+        return degrees[0] if degrees else 0
 
     def names(self, prime: int) -> str:
         return ", ".join(of.text for of in self.presentation.generators)
@@ -75,6 +79,9 @@ class Presented(Family):
             if not tail and sum(lead) == lead[at]:
                 return lead[at]
         return None
+
+    def relation(self, prime: int, number: int) -> str:
+        return f"a relation of {self.text}"
 
     def law(self, prime: int, token: int, of: Class) -> str:
         return f"the operations given for {self.text}"

@@ -99,8 +99,21 @@ class Slots:
         while self._unruled:
             family = self._unruled.pop()
             for lead, tail in family.rules(self.prime):
-                packed = sum([place(of) * exponent for of, exponent in lead])
+                places = [(place(of), exponent) for of, exponent in lead]
+                slots = [(place.bit_length() - 1) // self.width for place, _ in places]
+                if sum([self.degree[slot] * exponent for slot, (_, exponent) in zip(slots, places)]) >> self.width:
+                    continue  # of too high a degree to occur here
+                if self._crossed(slots):
+                    tail = tuple([(-c, powers) for c, powers in tail])
+                packed = sum([place * exponent for place, exponent in places])
                 self.rules.append(Rule(tuple(exponents(packed, self.width)), packed, pack(tail)))
+
+    def _crossed(self, slots: list[int]) -> bool:
+        """Whether putting the generators of these slots in the order of the slots changes the sign of their product."""
+        if self.prime == 2:
+            return False
+        odd = [slot for slot in slots if self.degree[slot] % 2]
+        return sum([a > b for i, a in enumerate(odd) for b in odd[i + 1 :]]) % 2 == 1
 
     def _meet(self, of: Class) -> None:
         """Note the relations that a class brings with it."""
@@ -111,7 +124,7 @@ class Slots:
             self.families.add(family)
             self._unruled.append(family)
         height = family.height(self.prime, of)
-        if height is not None:
+        if height is not None and not height * of.degree >> self.width:
             place = 1 << self.width * (len(self.word) - 1)
             self.rules.append(Rule(tuple(exponents(place * height, self.width)), place * height, None))
 
