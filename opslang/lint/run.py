@@ -11,7 +11,8 @@ from hashlib import sha256
 
 from opslang.lint.context.build import units_of
 from opslang.lint.context.stream import paragraphs
-from opslang.lint.model import Finding, Origin, Verdict
+from opslang.lint.context.names import nodes_in
+from opslang.lint.model import Finding, Operation, Origin, Verdict
 from opslang.lint.reading import Document, Notice, read_file, read_text
 from opslang.lint.reading.project import Project, load
 from opslang.lint.result import Report, Row
@@ -89,6 +90,9 @@ def report_on(document: Document, name: str) -> Report:
 
 def judged(unit: Unit) -> Verdict | None:
     """What the rules together say of one statement; None where none of them has anything to say."""
+    heads = {node.head for node in nodes_in(unit.statement) if isinstance(node, Operation)}
+    if heads and heads <= unit.known.integers:
+        return None  # the words around it say that these letters are no operations
     best: Verdict | None = None
     findings: list[Finding] = []
     settled = False

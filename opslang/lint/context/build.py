@@ -76,9 +76,7 @@ class _Builder:
     def gather(self) -> None:
         """Take note of all that is said."""
         for number, paragraph in enumerate(paragraphs(self.document.pieces)):
-            if not paragraph.formulas:
-                continue
-            first = paragraph.formulas[0].where
+            first = paragraph.where
             environment = first.environments[-1].number if first.environments else 0
             section = first.section_number
 
@@ -88,9 +86,11 @@ class _Builder:
                 return Spot(s, n, p.sentence_at(offset), offset, e)
 
             spots = [spot_at(place) for place in paragraph.places]
+            self.bundles.learn(paragraph, spots, number, section)
+            if not spots:
+                continue
             self.pages.append((paragraph, spots))
             learn(self.settings, paragraph, spots, number, section)
-            self.bundles.learn(paragraph, spots, number, section)
             self.numbers[number] = frozenset(name.spelling for name in numbers_said(paragraph, self.statements))
             for saying in from_words(paragraph, self.statements, spot_at):
                 self.ledger.add(saying)

@@ -180,9 +180,10 @@ def _found_in_words(text: str, names: Names) -> Iterator[tuple[Saying, int]]:
 def _degrees(
     found: list[tuple[ClassName, Formula]], degrees: list[Index | None], offset: int
 ) -> Iterator[tuple[Saying, int]]:
-    degrees = degrees[: max(1, len(found))]  # what follows behind a comma is another formula
+    degrees = degrees[: next((at for at, index in enumerate(degrees) if index is None), len(found))][: len(found)]
     if len(degrees) != 1 and len(degrees) != len(found):
         return
+    # what follows behind a comma may be another formula: it is no degree, and nor is what comes after it
     for at, (name, formula) in enumerate(found):
         index = degrees[0] if len(degrees) == 1 else degrees[at]
         degree = polynomial_of(index) if index is not None else None

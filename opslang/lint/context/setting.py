@@ -52,6 +52,7 @@ class PrimeSaid:
     spot: Spot
     prime: int
     local: bool
+    in_section: bool = False
 
 
 @frozen
@@ -98,7 +99,11 @@ class Settings:
                 best = said
         if best is not None:
             return best.prime
-        lasting = {said.prime for said in self.primes if not said.local and said.spot.section < spot.section}
+        lasting = {
+            said.prime
+            for said in self.primes
+            if not said.local and not said.in_section and said.spot.section < spot.section
+        }
         return lasting.pop() if len(lasting) == 1 else ODD if lasting == {ODD} else None
 
     def spaces_near(self, spot: Spot) -> tuple[list[SpaceSaid], ...]:
@@ -125,7 +130,8 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
         if prime:
             start, _ = paragraph.sentences[paragraph.sentence_at(place)]
             lasting = _FOR_GOOD.search(text, start, place + 1)
-            found.append(PrimeSaid(spot, int(prime[1]), not lasting))
+            only = lasting is not None and lasting.group().lower() in ("rest", "section", "here", "now")
+            found.append(PrimeSaid(spot, int(prime[1]), not lasting, only))
         if "K(" in plain or "B^" in plain:
             settings.spaces += [SpaceAt(spot, space) for space in mentioned(plain)]
     for group in _GROUP.finditer(text):

@@ -11,7 +11,7 @@ from collections.abc import Iterator, Sequence
 from attrs import field, frozen
 
 from opslang.lint.context.spaces import written
-from opslang.lint.reading import Formula, Piece, Text
+from opslang.lint.reading import Formula, Piece, Text, Where
 
 FIRST = 0xE000
 MOST = 0x1800
@@ -31,6 +31,7 @@ class Paragraph:
     formulas: tuple[Formula, ...] = field(repr=False)
     places: tuple[int, ...] = field(repr=False)
     sentences: tuple[tuple[int, int], ...] = field(repr=False)
+    where: Where = field(factory=Where, repr=False)
 
     def formula(self, sign: str) -> Formula:
         """The formula that a sign stands for."""
@@ -87,7 +88,7 @@ def _paragraph(pieces: list[Piece]) -> Paragraph:
         parts.append(text)
         length += len(text)
     whole = "".join(parts)
-    return Paragraph(whole, tuple(formulas), tuple(places), tuple(_sentences(whole)))
+    return Paragraph(whole, tuple(formulas), tuple(places), tuple(_sentences(whole)), pieces[0].where)
 
 
 def _ends(formula: Formula) -> bool:

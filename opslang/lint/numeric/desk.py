@@ -29,7 +29,6 @@ from opslang.lint.numeric.rules_given import (
     Unfit,
     WrongPage,
     conventional,
-    defined,
     has_primitive,
     killed,
     other_rules,
@@ -155,6 +154,8 @@ def _of_bundles(
 def _with_definitions(
     left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool
 ) -> Decision:
+    own = evolve(known, rules=tuple([rule for rule in known.rules if rule.source == OF_THE_SPACE]))
+    left, right = spelled_out(left, own), spelled_out(right, own)
     decision = _by_convention(left, right, known, values, why)
     whole = spelled_out(left, known), spelled_out(right, known)
     if decision.answer == "true" or whole == (left, right):
@@ -164,8 +165,6 @@ def _with_definitions(
         return again
     if again.name == "degrees-differ" and decision.name != again.name:
         return decision  # the name stands for something else here
-    if all(rule.source == OF_THE_SPACE for rule in known.rules if defined(rule) is not None):
-        return again
     return evolve(again, special=again.special or decision.special)
 
 
@@ -235,7 +234,7 @@ def _circumstances(left: Sum, right: Sum, known: Known) -> str:
         return "it is a hypothesis"
     for side in (left, right):
         name = only_name(side)
-        if name is not None and name.letter not in ("iota", "w", "c"):
+        if name is not None and name.letter not in ("iota", "w", "c", "v", "omega"):
             return f"it may be what {name.spelling} stands for"
     return ""
 

@@ -290,11 +290,15 @@ def _is_zero(side: Sum) -> bool:
     return len(factors) == 1 and isinstance(factors[0], Number) and factors[0].value == 0
 
 
+def _is_characteristic(name: ClassName) -> bool:
+    return name.letter == "iota" or (name.letter in ("w", "v", "c", "bar w") and bool(name.index))
+
+
 def defined(rule: Rule) -> tuple[ClassName, Sum] | None:
     """The name and what it stands for, where a rule is a definition: `v = beta u`, `beta_2 x = y`."""
     for name_side, side in ((rule.left, rule.right), (rule.right, rule.left)):
         factors = name_side.terms[0][1].factors if len(name_side.terms) == 1 else ()
-        if len(factors) != 1 or not isinstance(factors[0], ClassName) or factors[0].letter == "iota":
+        if len(factors) != 1 or not isinstance(factors[0], ClassName) or _is_characteristic(factors[0]):
             continue
         name = factors[0]
         used = names_of(side)

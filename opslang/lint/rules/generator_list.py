@@ -119,7 +119,8 @@ def _missing(
 ) -> list[Finding]:
     dots = any(is_dots(side) for side in statement.sides)
     top = max(degree_of(word, prime) for word in listed) + n
-    through = _THROUGH.search(known.sentences)
+    said = [*_THROUGH.finditer(known.lead)] or [*_THROUGH.finditer(known.sentences)][:1]
+    through = said[-1] if said else None
     if through is not None and not dots:
         limit = int(through[1])
         if top > limit:
