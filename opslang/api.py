@@ -253,7 +253,7 @@ class Script:
         assert statement is not None
         if not isinstance(statement, surface.ExpressionStatement):
             return Parsed(statement, None, None, None, tuple(found))
-        lowering = Lowering(self._session.scope, source.text, list(found))
+        lowering = Lowering(self._session.scope, source.text, list(found), self._session.normal)
         try:
             value = as_sort_or_class(lowering.sum(statement.body), "class", statement.span)
         except Refusal as refusal:

@@ -49,6 +49,7 @@ _KINDS: dict[str, Kind] = {
     "why": "derivation",
     "basis": "listing",
     "series": "listing",
+    "compare": "listing",
 }
 
 
@@ -84,12 +85,16 @@ class Session:
         statement, diagnostics = parse(source)
         if statement is None or any(d.severity == "error" for d in diagnostics):
             return self._failed(source, (0, len(source.text)), kind_of(source.text), diagnostics)
-        lowering = Lowering(self.scope, source.text, list(diagnostics))
+        lowering = Lowering(self.scope, source.text, list(diagnostics), self.normal)
         span = statement.span
         kind: Kind = "element"
+        for engine in self._engines.values():
+            engine.budget.refill()
         try:
             kind = _kind(statement)
             outcome = self._answer(statement, Outcome(source, span, kind, "ok", self.scope.prime), lowering)
+            if lowering.home is not None and outcome.sort == "class":
+                outcome = changed(outcome, space=lowering.home.text)
             return changed(outcome, diagnostics=(*lowering.diagnostics, *outcome.diagnostics))
         except Refusal as refusal:
             lowering.diagnostics += refusal.others
@@ -146,6 +151,10 @@ class Session:
                 return self._basis(statement, blank)
             case sf.SeriesStatement():
                 return self._series(statement, blank)
+            case _:
+                from opslang.inquiry.statements import answer
+
+                return answer(statement, blank, lowering, self.engine())
         return blank
 
     def _expression(self, statement: sf.ExpressionStatement, blank: Outcome, lowering: Lowering) -> Outcome:
@@ -287,7 +296,7 @@ class Session:
         from opslang.render.derivation import items
 
         body = statement.body
-        again = Lowering(self.scope, lowering.text)
+        again = Lowering(self.scope, lowering.text, [], self.normal)
         if isinstance(body, sf.RelationStatement):
             outcome = self._relation(body, blank, lowering)
             values = self._sides(body, again)
@@ -384,7 +393,7 @@ def _kind(statement: sf.Statement) -> Kind:
             return "relation"
         case sf.WhyStatement():
             return "derivation"
-        case sf.BasisStatement() | sf.SeriesStatement():
+        case sf.BasisStatement() | sf.SeriesStatement() | sf.CompareStatement():
             return "listing"
     return "declaration"
 

@@ -30,6 +30,7 @@ class Outcome:
     `element`: the canonical form of an expression, or the difference (left - right) of a relation; `sides`: the
     canonical forms of the sides of a relation; `links`: for a chain of two equations or more.
     `items`: the monomials of a basis, the dimensions of a series, or the steps of a derivation (as records).
+    `lines`: what a comparison says, in words.
     `derivations`: for `why`, what `opslang.render.derivation` prints.
     """
 
@@ -48,6 +49,7 @@ class Outcome:
     items: tuple[Any, ...] | None = None
     basis: tuple[Monomial, ...] = ()
     derivations: tuple[Any, ...] = ()
+    lines: tuple[str, ...] = ()
     name: str | None = None
     message: str | None = None
     diagnostics: tuple[Diagnostic, ...] = field(default=())

@@ -12,6 +12,7 @@ from attrs import define, field
 
 from opslang.ground.source import Span
 from opslang.ir import tree as ir
+from opslang.meaning.characteristic import Characteristic
 from opslang.meaning.indices import bounded, number
 from opslang.meaning.letters import Marker, letter
 from opslang.meaning.scope import Key, Scope, spelled
@@ -30,7 +31,7 @@ from opslang.meaning.value import (
 )
 from opslang.report.diagnostic import Diagnostic, Refusal, error, note, warning
 from opslang.spaces.family import NotKnown
-from opslang.spaces.space import Localised
+from opslang.spaces.space import Localised, SpaceValue
 from opslang.syntax import surface as sf
 
 Pending = list[tuple["Value | Marker", Span]]
@@ -44,11 +45,19 @@ def refuse(name: str, message: str, span: Span, help: str = "", mend: str | None
 
 @define
 class Lowering:
-    """The lowering of one statement in a scope; warnings gather in `diagnostics`."""
+    """The lowering of one statement in a scope; warnings gather in `diagnostics`.
+
+    `evaluate` gives canonical forms, which bundles, transgression and suspension need; `home` is the space that
+    pulled-back
+    classes and classes of bundles live in, where some occur; `chosen` says whether classes of the current space occur.
+    """
 
     scope: Scope
     text: str
     diagnostics: list[Diagnostic] = field(factory=list)
+    evaluate: Callable[[Value], Any] | None = None
+    home: SpaceValue | None = None
+    chosen: bool = False
 
     # --- sums -----------------------------------------------------------------------------------
 
@@ -76,19 +85,24 @@ class Lowering:
     def _mixed(self, body: sf.Sum, sorts: list[Sort], first: Sort, span: Span) -> NoReturn:
         message = "a class is added to an operation" if first == "operation" else "an operation is added to a class"
         described = "; ".join(
-            f"`{self._quote(product.span)}` is {'an operation' if sort == 'operation' else 'a class'}"
+            f"`{self.quote(product.span)}` is {'an operation' if sort == 'operation' else 'a class'}"
             for (_, product), sort in zip(body.terms, sorts)
             if sort != "scalar"
         )
         refuse("sorts-differ", message, span, described if len(described) < 300 else "")
 
-    def _quote(self, span: Span) -> str:
+    def quote(self, span: Span) -> str:
+        """What is written at a place."""
         return self.text[span[0] : span[1]]
 
     # --- products -------------------------------------------------------------------------------
 
     def product(self, body: sf.Product) -> Value:
         """A flat product: scalars are drawn to the front, operations gather until the class they act on."""
+        if self.scope.bundles:
+            from opslang.meaning.bundle_classes import merged
+
+            body = merged(self, body)
         if len(body.factors) == 1:
             value = self.factor(body.factors[0])
             if isinstance(value, Marker):
@@ -161,11 +175,11 @@ class Lowering:
             )
 
     def _ambiguous(self, acted: sf.Factor, factor: sf.Factor) -> None:
-        inner = f"{self._quote(acted.span)} {self._quote(factor.span)}"
+        inner = f"{self.quote(acted.span)} {self.quote(factor.span)}"
         self.diagnostics.append(
             warning(
                 "ambiguous-scope",
-                f"the operation acts on `{self._quote(acted.span)}` alone",
+                f"the operation acts on `{self.quote(acted.span)}` alone",
                 (acted.span[0], factor.span[1]),
                 f"to apply it to the product write ({inner}) in brackets behind it",
                 f"({inner})",
@@ -178,7 +192,7 @@ class Lowering:
         self.diagnostics.append(
             warning(
                 "ambiguous-power",
-                f"the operation acts on the power `{self._quote(factor.span)}`",
+                f"the operation acts on the power `{self.quote(factor.span)}`",
                 (start, factor.span[1]),
                 f"for the power of the value write {whole}",
                 whole,
@@ -186,7 +200,7 @@ class Lowering:
         )
 
     def _exponent_text(self, factor: sf.Power) -> str:
-        return str(factor.exponent) if isinstance(factor.exponent, int) else self._quote(factor.exponent.span)
+        return str(factor.exponent) if isinstance(factor.exponent, int) else self.quote(factor.exponent.span)
 
     def _needs_class(self, marker: Marker) -> NoReturn:
         refuse(
@@ -273,8 +287,18 @@ class Lowering:
     def _number(self, factor: sf.Number) -> Value:
         return scalar(bounded(factor.value, factor.span))
 
-    def _pull_back(self, factor: sf.PullBack) -> NoReturn:
-        refuse("not-yet-supported", "pull-backs along maps are not yet supported", factor.span)
+    def _made(self, factor: sf.PullBack | sf.Construction | Characteristic) -> Value:
+        from opslang.meaning.pulling import made
+
+        return made(self, factor)
+
+    def _choose(self, span: Span) -> None:
+        """Note that a class of the current space occurs."""
+        self.chosen = True
+        if self.home is not None and self.scope.space is not None:
+            from opslang.meaning.pulling import live_in
+
+            live_in(self, self.scope.space, span)
 
     def _group(self, group: sf.Group) -> Value | Marker:
         terms = group.body.terms
@@ -304,6 +328,7 @@ class Lowering:
     def _class_of_space(self, name: sf.Name, key: Key, here: Localised) -> Value:
         """A name that a named factor of the current space has."""
         prime = self.scope.prime
+        self._choose(name.span)
         try:
             found = here.named(prime, *key)
         except NotKnown as reason:
@@ -325,11 +350,12 @@ class Lowering:
             )
         if found[0]:
             return polynomial_value(found[0], prime, name.span)
-        degree = next(f.name_degree(prime, key[0], key[1]) for f in here.families if f.named(prime, *key) is not None)
+        degree = here.name_degree(prime, *key)
         return cls(ir.ClassSum((), degree, degree, name.span), NONE)
 
     def _fundamental(self, factor: sf.Fundamental) -> Value:
         degree = number(factor.degree, factor.span)
+        self._choose(factor.span)
         try:
             of = self.scope.fundamental(degree, factor.primes)
         except KeyError:
@@ -414,5 +440,5 @@ _READERS: dict[type, Callable[[Lowering, Any], Value | Marker]] = {
     sf.Number: Lowering._number,
     sf.Group: Lowering._group,
     sf.Conjugate: Lowering._conjugate,
-    sf.PullBack: Lowering._pull_back,
+    **dict.fromkeys((sf.PullBack, sf.Construction, Characteristic), Lowering._made),
 }

@@ -3,12 +3,17 @@
 from __future__ import annotations
 
 from functools import lru_cache
+from typing import TYPE_CHECKING
 
 from attrs import define, field
 
 from opslang.ir.tree import Class
 from opslang.meaning.value import Value
 from opslang.spaces.space import Localised, SpaceValue, localise
+
+if TYPE_CHECKING:
+    from opslang.meaning.bundles import Bundle
+    from opslang.meaning.maps import MapValue
 
 Key = tuple[str, int | None, int]
 """Letter, index and number of primes of a name."""
@@ -28,13 +33,17 @@ def universal(degree: int) -> Class:
 
 @define
 class Scope:
-    """The prime, the current space and the names declared so far.  `names` holds a class, or an abbreviation's
-    value."""
+    """The prime, the current space and the names declared so far.
+
+    `names` holds a class, or an abbreviation's value; `maps` and `bundles` have names of their own.
+    """
 
     prime: int = 2
     space: SpaceValue | None = None
     spaces: dict[str, SpaceValue] = field(factory=dict)
     names: dict[Key, Value] = field(factory=dict)
+    maps: dict[str, "MapValue"] = field(factory=dict)
+    bundles: dict[str, "Bundle"] = field(factory=dict)
     _localised: tuple[SpaceValue, int, Localised] | None = None
 
     def localised(self) -> Localised | None:
@@ -63,12 +72,14 @@ class Scope:
         raise KeyError((degree, primes))
 
     def set_prime(self, prime: int) -> bool:
-        """Change the prime; classes and abbreviations go.  Returns whether any were dropped."""
+        """Change the prime; classes, abbreviations, maps and bundles go.  Returns whether any were dropped."""
         if prime == self.prime:
             return False
         self.prime = prime
-        dropped = bool(self.names)
+        dropped = bool(self.names or self.maps or self.bundles)
         self.names.clear()
+        self.maps.clear()
+        self.bundles.clear()
         return dropped
 
     def like(self, key: Key) -> str | None:

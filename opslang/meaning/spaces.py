@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from itertools import groupby
+
 from opslang.meaning.indices import number
-from opslang.meaning.scope import Scope
+from opslang.meaning.scope import Scope, spelled
 from opslang.report.diagnostic import Refusal, error
+from opslang.spaces.bundle_thom import ThomFactor
 from opslang.spaces.family import NotKnown
 from opslang.spaces.space import WORDS, AnyFactor, Factor, NamedFactor, SpaceValue, class_order
 from opslang.syntax import surface as sf
@@ -36,6 +39,12 @@ def _eilenberg_maclane(space: sf.EilenbergMacLane) -> tuple[list[AnyFactor], str
     return factors, f"K({' + '.join(names)}, {degree})"
 
 
+def eilenberg_maclane_value(orders: tuple[int, ...], degree: int) -> SpaceValue:
+    """K(G, n), G the sum of the cyclic groups of these orders (0: Z)."""
+    names = [summand_text(order, len(list(copies))) for order, copies in groupby(orders)]
+    return SpaceValue(tuple([Factor(order, degree) for order in orders]), f"K({' + '.join(names)}, {degree})")
+
+
 def space_value(space: sf.Space, scope: Scope) -> SpaceValue:
     """A space as a value; a Refusal where it is not known."""
     factors: list[AnyFactor] = []
@@ -46,6 +55,9 @@ def space_value(space: sf.Space, scope: Scope) -> SpaceValue:
             found, name = _eilenberg_maclane(part)
         else:
             found, name = _named(part, scope)
+        if factors and any(isinstance(factor, ThomFactor) for factor in found):
+            message = "the Thom space of a declared bundle stands first in a product"
+            raise Refusal(error("space-arguments", message, part.span))
         factors += found
         names.append(name)
         if len(factors) > MOST_FACTORS:
@@ -58,6 +70,10 @@ def _named(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str]:
     if part.power is None and not part.arguments and part.name in scope.spaces:
         value = scope.spaces[part.name]
         return list(value.factors), value.text
+    if part.name == "thom" and len(part.arguments) == 1:
+        over = _thom_of_bundle(part, scope)
+        if over is not None:
+            return over
     if part.name in WORDS:
         factor = _named_factor(part, scope)
         try:
@@ -73,6 +89,22 @@ def _named(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str]:
             f"spaces named in this script: {known}; others are K(G, n), {', '.join(WORDS)}",
         )
     )
+
+
+def _thom_of_bundle(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str] | None:
+    """thom(E) for a declared bundle E; None where no bundle of that name is declared."""
+    inner = part.arguments[0]
+    if isinstance(inner, sf.Name) and isinstance(inner.index, (int, type(None))):
+        found = scope.bundles.get(spelled((inner.letter, inner.index, inner.primes)))
+        if found is not None:
+            from opslang.meaning.bundles import NoBundle
+            from opslang.meaning.thom import thom_space
+
+            try:
+                return thom_space(found, part.span)
+            except NoBundle as reason:
+                raise Refusal(error("bundle", str(reason), part.span)) from reason
+    return None
 
 
 def _named_factor(part: sf.NamedSpace, scope: Scope) -> NamedFactor:

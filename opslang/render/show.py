@@ -117,6 +117,8 @@ def _labelled(label: str, lines: list[str]) -> list[str]:
 
 def _listing(outcome: Outcome, notation: Notation, width: int) -> list[str]:
     items = outcome.items or ()
+    if outcome.lines:
+        return list(outcome.lines)
     if outcome.degree is None:
         return columns([f"{n}: {dimension}" for n, dimension in enumerate(items)], width)
     head = f"dimension {len(items)} in degree {outcome.degree}"

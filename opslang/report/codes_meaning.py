@@ -157,6 +157,53 @@ MEANING_CODES: dict[str, Code] = {
         "In a product of spaces two factors have a class of this name. Name the classes: RP^5(a) x RP^2(b).",
         "on RP^5 x RP^2\nx",
     ),
+    "bundle": Code(
+        "a bundle that cannot be, or a class that it does not have",
+        "The declared total class is not that of a bundle (Wu's formula, degrees, rank, coefficients), or what is "
+        "asked of a bundle is not known here.",
+        "on RP^4\nbundle E of rank 3 over RP^4 with w = 1 + x^3",
+    ),
+    "map": Code(
+        "a map that cannot be read",
+        "A map says where each generator of its target goes, or is the diagonal, a projection or a standard map; "
+        "maps are composed where they meet.",
+        "map f : K(Z/2, 2) -> K(Z/2, 2) with iota_2^2 -> iota_2",
+    ),
+    "map-coefficients": Code(
+        "the image of a class with larger coefficients",
+        "An integral class, or one with coefficients Z/p^k, goes to a class that is seen to be the reduction of "
+        "one: its Bocksteins vanish.",
+        "map f : K(Z/2, 2) -> K(Z, 2) with iota_2 -> iota_2",
+    ),
+    "map-incomplete": Code(
+        "a generator without an image",
+        "Every generator of the target of a map has an image. It is 0 of itself only where the source has no class "
+        "of that degree.",
+        "map f : CP^3 -> K(Z, 2) x K(Z, 4) with iota_2 -> y",
+    ),
+    "map-operations": Code(
+        "images that no map gives",
+        "A pull-back is a map of rings and commutes with operations. Here an operation on a generator of the "
+        "target, or a relation, does not hold for the images.",
+        "map f : RP^4(a) -> BO(3) with w -> 1 + a^3",
+    ),
+    "map-unchecked": Code(
+        "images that were not checked throughout",
+        "An operation on a class of the target is not known here, or has an indeterminacy, so that the images were "
+        "not compared there.",
+        "map f : HP^3 -> BSpin(5) with w_4 -> u, Delta_8 -> u^2",
+    ),
+    "not-transgressive": Code(
+        "a class without transgression or suspension",
+        "In K(G, n) -> * -> K(G, n+1) the transgressive classes are the P^I iota_n and their p^j-th powers, and "
+        "sums of these. Both belong to one K(G, n).",
+        "on K(Z/2, 2)\ntransgression(iota_2 Sq^1 iota_2)",
+    ),
+    "unknown-map": Code(
+        "a map that is not named",
+        "Maps are named with `map f : X -> Y with …`.",
+        "g^*(Sq^2 iota_3)",
+    ),
     "not-yet-supported": Code(
         title="Not yet supported",
         explanation=("The notation is known, but what it means is not built yet."),

@@ -10,7 +10,9 @@ from attrs import frozen
 from opslang.ground.arith import p_part
 from opslang.ir.tree import Class
 from opslang.spaces import characteristic, projective, spin
+from opslang.spaces.bundle_thom import BundleThom, ThomFactor
 from opslang.spaces.family import Family, NotKnown, Polynomial
+from opslang.spaces.reductions import further, further_degree
 from opslang.spaces.thom import thom
 
 if TYPE_CHECKING:
@@ -61,7 +63,7 @@ _CLASSIFYING = {
 WORDS = (*_CLASSIFYING, *_PROJECTIVE, "lens", "thom")
 """The words that named spaces begin with."""
 
-AnyFactor = Union[Factor, NamedFactor, "PresentedFactor"]
+AnyFactor = Union[Factor, NamedFactor, ThomFactor, "PresentedFactor"]
 
 
 @frozen
@@ -81,10 +83,39 @@ class Localised:
     vanishing: frozenset[tuple[int, int]]
     families: tuple[Family, ...] = ()
 
+    @property
+    def thom(self) -> BundleThom | None:
+        """The Thom class over the base, where the space is the Thom space of a declared bundle."""
+        return next((family for family in self.families if isinstance(family, BundleThom)), None)
+
+    def around(self, family: BundleThom) -> tuple["Localised", "Localised"]:
+        """The factors before and behind one: the base of a Thom space, and what that is multiplied by."""
+        at = family.factor
+
+        def part(before: bool) -> "Localised":
+            classes = tuple([of for of in self.classes if (of.factor < at) == before])
+            others = [f for f in self.families if f != family and (getattr(f, "factor", 0) < at) == before]
+            return Localised(classes, frozenset(), tuple(others))
+
+        return part(True), part(False)
+
     def named(self, prime: int, letter: str, index: int | None, primes: int) -> list[Polynomial]:
         """What a name stands for in each named factor that has it."""
-        found = [family.named(prime, letter, index, primes) for family in self.families]
+        found = [
+            further(family, prime, letter, index, primes) if value is None else value
+            for family in self.families
+            for value in [family.named(prime, letter, index, primes)]
+        ]
         return [value for value in found if value is not None]
+
+    def name_degree(self, prime: int, letter: str, index: int | None, primes: int) -> int:
+        """The degree of a name of a named factor that stands for 0."""
+        for family in self.families:
+            if family.named(prime, letter, index, primes) is not None:
+                return family.name_degree(prime, letter, index)
+            if further(family, prime, letter, index, primes) is not None:
+                return further_degree(family, letter, index)
+        return 0
 
 
 def class_order(order: int, prime: int) -> int | None:

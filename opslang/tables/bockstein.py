@@ -120,6 +120,11 @@ def higher(ring: Any, k: int, f: Any) -> tuple[Any, bool]:
     return result, modulo
 
 
+def lifts(ring: Any, monomial: int, order: int) -> bool:
+    """Whether a monomial is seen to be the reduction of an integral class (order 0), or of a Z/p^order class."""
+    return all(piece.order is None or 0 < order <= piece.order for piece in _pieces(ring, monomial))
+
+
 def _derive(ring: Any, monomial: int, piece: Piece) -> Any:
     """The summand of beta(monomial) in which one unit of the piece is replaced by its image, with its sign."""
     place = piece.slot * ring.width

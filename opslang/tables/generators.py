@@ -9,8 +9,9 @@ from collections.abc import Callable, Iterable, Iterator
 from operator import mul
 
 from opslang.ground.grading import Word
-from opslang.ir.order import generator_key
+from opslang.ir.order import generator_key, monomial_key
 from opslang.ir.tree import Class, Generator, Monomial
+from opslang.spaces.bundle_thom import BundleThom
 from opslang.spaces.family import Family
 from opslang.spaces.space import Localised
 from opslang.tables.budget import Budget
@@ -145,6 +146,9 @@ def counts(p: int, of: Class, to: int) -> tuple[list[int], list[int]]:
 def series(p: int, space: Localised, to: int) -> list[int]:
     """The dimensions of H^0 … H^to of a space, by the Euler transform of the numbers of generators.  Quadratic in
     `to`."""
+    thom = space.thom
+    if thom is not None:
+        return _over_thom_class(p, space, thom, to)
     weight = [0] * (to + 1)
     others = []
     for of in space.classes:
@@ -169,6 +173,34 @@ def series(p: int, space: Localised, to: int) -> list[int]:
     return dimensions
 
 
+def _over_thom_class(p: int, space: Localised, thom: BundleThom, to: int) -> list[int]:
+    """The dimensions of (1 + U · base) ⊗ the rest."""
+    base, rest = space.around(thom)
+    own = [1] + [0] * to
+    if thom.rank <= to:
+        for d, count in enumerate(series(p, base, to - thom.rank)):
+            own[thom.rank + d] += count
+    other = series(p, rest, to)
+    return [sum(map(mul, other[: n + 1], reversed(own[: n + 1]))) for n in range(to + 1)]
+
+
+def _basis_over_thom_class(p: int, space: Localised, thom: BundleThom, degree: int, budget: Budget) -> list[Monomial]:
+    """The same for the monomials of one degree."""
+    base, rest = space.around(thom)
+    found = basis(p, rest, degree, budget)
+    last: tuple[tuple[Generator, int], ...] = ((Generator((), thom.thom_class), 1),)
+    for d in range(thom.rank, degree + 1):
+        above = basis(p, rest, degree - d, budget)
+        if above:
+            below = basis(p, base, d - thom.rank, budget)
+            found += [_merged((*one, *last, *other), p) for one in below for other in above]
+    return sorted(found, key=lambda monomial: monomial_key(monomial, p))
+
+
+def _merged(monomial: Monomial, p: int) -> Monomial:
+    return tuple(sorted(monomial, key=lambda pair: generator_key(pair[0], p)))
+
+
 def _euler_transform(weight: list[int], to: int) -> list[int]:
     """The coefficients of the product of 1 / (1 - t^d)^weight[d]."""
     sums = [0] * (to + 1)
@@ -186,6 +218,9 @@ def _euler_transform(weight: list[int], to: int) -> list[int]:
 
 def basis(p: int, space: Localised, degree: int, budget: Budget) -> list[Monomial]:
     """The monomials of one degree, in canonical order; TooLarge when they are more than the budget allows."""
+    thom = space.thom
+    if thom is not None:
+        return _basis_over_thom_class(p, space, thom, degree, budget)
     available = items(p, space, degree, budget)
     budget.spend(len(available) * (1 + (degree >> 10)))
     reach = _reachable(available, degree)

@@ -15,7 +15,7 @@ from collections.abc import Callable, Mapping
 from math import gcd
 
 from opslang.ground.arith import digits, p_part
-from opslang.ir.tree import Class, Monomial
+from opslang.ir.tree import Class, Generator, Monomial
 from opslang.spaces.family import Polynomial
 from opslang.tables.budget import Budget
 from opslang.tables.powers import Powers
@@ -55,10 +55,16 @@ class RingOdd:
         root = self.slots.root_of(of, bockstein)
         return {1 << self.width * self.slots.slot(root, 0, self.slots.roots[root].degree): 1}
 
-    def place(self, of: Class) -> int:
-        """A class as a packed monomial."""
+    def place(self, of: Class | Generator) -> int:
+        """A class, or a word on one, as a packed monomial."""
+        if isinstance(of, Generator):
+            return self.slots.place(of, self.algebra.pack)
         (monomial,) = self.generator(of)
         return monomial
+
+    def single(self, monomial: int) -> Poly:
+        """A packed monomial as an element."""
+        return {monomial: 1}
 
     def polynomial(self, terms: Polynomial) -> Poly:
         """A polynomial in the classes of a named space."""

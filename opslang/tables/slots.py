@@ -13,6 +13,7 @@ from typing import Any
 from attrs import frozen
 
 from opslang.ground.grading import Word
+from opslang.ground.grading import degree as word_degree
 from opslang.ir.order import generator_key
 from opslang.ir.tree import Class, Generator, Monomial
 from opslang.tables.budget import Budget
@@ -90,6 +91,15 @@ class Slots:
             if degree % 2 if self.prime != 2 else degree == 1 and at.killed:
                 self.nilpotent |= 1 << self.width * found
         return found
+
+    def place(self, generator: Generator, pack: Callable[[Word], int]) -> int:
+        """A polynomial generator as a packed monomial; `pack` packs the tokens of a word."""
+        word, order = generator.word, 0
+        if word and word[-1] < 0:
+            word, order = word[:-1], -word[-1]
+        root = self.root_of(generator.of, order)
+        degree = self.roots[root].degree + word_degree(word, self.prime)
+        return 1 << self.width * self.slot(root, pack(word), degree)
 
     def load_rules(self, place: Callable[[Class], int], pack: Callable[[Any], Any]) -> None:
         """Take over the relations of the named spaces whose classes were met since the last call.
