@@ -46,8 +46,14 @@ class Restriction(dict[Class, Polynomial]):
         """The roots x_i, or their squares where the classes are elementary symmetric in those."""
         ring = self.ring
         real = ring.prime == 2 and base.letter == "w"
-        slots = self._slots(1 if real else 0)[:rank]
+        special = real and base.group == "SO"
+        slots = self._slots(1 if real else 0)[: rank - 1 if special and rank else rank]
         roots = [ring.class_in(slot, 1 if real else 2) for slot in slots]
+        if special:  # roots whose sum is 0
+            total: Polynomial = {}
+            for root in roots:
+                total = add(total, root, 2)
+            roots.append(total)
         return [ring.power(root, 2) for root in roots] if base.letter in "pq" else roots
 
     def _value(self, of: Class, space: Any) -> Polynomial:
@@ -69,13 +75,6 @@ class Restriction(dict[Class, Polynomial]):
             return self._elementary([ring.class_in(slot, 2) for slot in self._slots(0)[:count]], count)
         if isinstance(space, Classifying) and space.group in ("O", "U", "Sp", "SO"):
             rank = space.rank
-            if space.group == "SO" and ring.prime == 2:
-                # roots whose sum is 0
-                roots = self._roots(space, None if rank is None else rank - 1)
-                total: Polynomial = {}
-                for root in roots:
-                    total = add(total, root, 2)
-                return self._elementary([*roots, total], of.index or 0)
             if isinstance(space, Pontryagin) and space.euler:
                 rank = space.euler // 2
             return self._elementary(self._roots(space, rank), of.index or 0)

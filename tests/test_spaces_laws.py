@@ -34,8 +34,8 @@ SEED = int(os.environ.get("OPSLANG_SEED") or SystemRandom().randrange(10**9))
 SPACES = {
     2: (
         "BO", "BO(3)", "BSO(4)", "BSpin", "BSpin(7)", "BU(3)", "BSU", "BSp(2)", "RP^5", "RP^4 x CP^2", "HP^3",
-        "lens(4)", "lens(2) x RP", "thom(BO(3))", "thom(BSO(4))", "thom(BU(2))", "thom(BSpin(7))", "BO(2) x K(Z/2, 2)",
-        "lens(4) x K(Z/4, 2)",
+        "lens(4)", "lens(2) x RP(a)", "thom(BO(3))", "thom(BSO(4))", "thom(BU(2))", "thom(BSpin(7))",
+        "BO(2) x K(Z/2, 2)", "lens(4) x K(Z/4, 2)",
     ),
     3: (
         "BO(4)", "BSO(5)", "BSO(4)", "BU(3)", "BSU(3)", "BSp(2)", "CP^4", "HP^5", "lens(3)", "lens(9)", "RP^5",
