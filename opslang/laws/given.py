@@ -177,7 +177,8 @@ def _relation_words(p: int, number: int, space: Family) -> str:
 
 
 def _relation_remarks(p: int, number: int, space: Family) -> tuple[Remark, ...]:
-    return ((f"on {space.text}",),)
+    # other spaces are named by `Family.relation`
+    return ((f"on {space.text}",),) if isinstance(space, Thom) else ()
 
 
 RELATION = Law(
