@@ -37,8 +37,17 @@ STATEMENTS: dict[str, Topic] = {
         ("prime 3", "P^1 P^1 = 2 P^2"),
     ),
     "space": Topic(
-        "Names a space: an Eilenberg-MacLane space or a product of them.",
-        ("space X = K(Z/4, 3) x K(Z, 5)", "on X", "beta_2 iota_3"),
+        "Names a space: an Eilenberg-MacLane space, a named one such as BO(3) or RP^5, a product of spaces, or a ring "
+        "by generators, relations and operations. A presentation is checked: what is wrong with it is said at its place.",
+        (
+            "space X = K(Z/4, 3) x K(Z, 5)",
+            "on X",
+            "beta_2 iota_3",
+            "space W = F_2[u:2, v:3] / (u^2, v^2) where Sq^1 u = v, Sq^2 v = u v",
+            "on W",
+            "Sq^2 Sq^1 u",
+        ),
+        ("presentation",),
     ),
     "on": Topic("Chooses the space that iota_n belongs to from here on.", ("on K(Z, 3)", "Sq^1 iota_3 = 0")),
     "why": Topic(

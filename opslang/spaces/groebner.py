@@ -172,7 +172,7 @@ class Ideal:
         while waiting:
             m, c = waiting.popitem()
             lead = next((lead for lead in rules if divides(lead, m)), None)
-            ring.work.spend(1)
+            ring.work.spend(1 + (len(rules) >> 1))
             if lead is None:
                 ring.add(done, {m: c})
             elif rules[lead]:

@@ -211,6 +211,22 @@ class Action:
                     return a, b, c
         return None
 
+    def origin(self, at: int, token: int) -> str:
+        """Why an operation on a generator is what it is, in words."""
+        name = self.of.name
+        if ((at, token)) in dict(self.of.given):
+            return f"the operations given for {name}"
+        if (at, token) in self.values:
+            return f"an Adem relation and the operations given for {name}"
+        if self.normal(at) != self.ring.variable(at):
+            return f"the relations of {name}"
+        degree = self.ring.degrees[at] + self.shift(token)
+        if self.empty(degree):
+            return f"H^{degree}({name}) = 0"
+        parts = self._decomposed(token)
+        word = " ".join(map(self.of.operation, parts[:2])) if parts else ""
+        return f"the Adem relation of {word} and the operations given for {name}"
+
     # --- on polynomials -------------------------------------------------------------------------
 
     def word(self, word: Word, at: int) -> Poly:

@@ -13,13 +13,13 @@ from itertools import count
 
 from attrs import define, field, frozen
 
-from opslang.spaces.groebner import Exponents, Poly, Work
+from opslang.spaces.groebner import Exponents, Poly, TooMany, Work
 from opslang.spaces.presentation import MOST_DEGREE, Action, Combination, Key, Presentation, Unknown, Word
 
 CHECKED_TO = 64
 """Presentations are checked up to this degree, where nothing else is said."""
 
-MOST_MISSING = 40
+MOST_MISSING = 12
 """So many missing relations are listed, and no more."""
 
 
@@ -43,8 +43,6 @@ class Verdict:
 
     action: Action
     faults: list[Fault] = field(factory=list)
-    unknown: set[Key] = field(factory=set)
-    """Operations that the checks needed, and that are not determined."""
     needed: int = 0
     """The degree to which everything would be checked, where that is above the bound; else 0."""
 
@@ -111,7 +109,8 @@ class Check:
         self.closed()
         if not self.verdict.faults:
             self.relations()
-        self.verdict.needed = self._needed()
+        if not self.verdict.faults:
+            self.verdict.needed = self._needed()
 
     def _beyond(self, degree: int) -> bool:
         """Whether a check in a degree is left out; where the algebra is 0 nothing is to be checked."""
@@ -191,24 +190,27 @@ class Check:
             _, _, number, token, relation = heappop(waiting)
             try:
                 value = action.operate(token, relation)
-            except Unknown as unknown:
-                self.verdict.unknown.add(unknown.key)
-                continue
-            if value:
+                if not value:
+                    continue
                 said = f"{self.of.operation(token)}({self.of.show(relation)}) = {self.of.show(value)}"
                 first = first or (number, said)
                 missing.append(value)
-                action = self.action.modulo(tuple(missing))
                 self._wait(waiting, number, value)
+                action = self.action.modulo(tuple(missing))
+            except Unknown:
+                continue  # what was not given is told in a note
+            except TooMany:
+                if first is None:
+                    raise
+                break
         if first is not None:
             listed = ", ".join(map(self.of.show, missing))
             written = self.of.show(dict(self.of.relations[first[0]]))
-            more = " and more" if len(missing) >= MOST_MISSING else ""
+            more = " and more" if waiting else ""
             message = f"the relations are not closed under the operations: {first[1]} is not 0 by them"
             help = f"the relations that are missing: {listed}{more}"
-            self.verdict.faults.append(
-                Fault("ideal-not-closed", message, ("relation", first[0]), help, f"{written}, {listed}")
-            )
+            mend = None if more else f"{written}, {listed}"
+            self.verdict.faults.append(Fault("ideal-not-closed", message, ("relation", first[0]), help, mend))
 
     # --- Adem -----------------------------------------------------------------------------------
 
@@ -218,8 +220,7 @@ class Check:
             for word, equals in self.action.adem_relations(at, self.to):
                 try:
                     left, right = self.action.sides(at, word, equals)
-                except Unknown as unknown:
-                    self.verdict.unknown.add(unknown.key)
+                except Unknown:
                     continue
                 if left != right:
                     self.verdict.faults.append(self._adem_fault(at, word, equals, left, right))

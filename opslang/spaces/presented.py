@@ -84,7 +84,7 @@ class Presented(Family):
         return f"a relation of {self.text}"
 
     def law(self, prime: int, token: int, of: Class) -> str:
-        return f"the operations given for {self.text}"
+        return self.action.origin(self._number(of), token)
 
     def dimensions(self, prime: int, to: int) -> list[int] | None:
         self.action.work.refill()
