@@ -38,7 +38,7 @@ STATEMENTS: dict[str, Topic] = {
     ),
     "space": Topic(
         "Names a space: an Eilenberg-MacLane space, a named one such as BO(3) or RP^5, a product of spaces, or a ring "
-        "by generators, relations and operations. A presentation is checked: what is wrong with it is said at its place.",
+        "by generators, relations and operations. A presentation is checked: faults are told at their place.",
         (
             "space X = K(Z/4, 3) x K(Z, 5)",
             "on X",
