@@ -194,8 +194,8 @@ class Known:
     keys.
     `ranges`: what the neighbouring sentences say of symbols.  `counted_by`: what the index of P^i counts.
     `integers`: symbols said to be numbers, so that they are no classes (`beta`, `P` among them: no operations).
-    `script`: lines of the author's own declarations, in the notation of scripts.  `lead`: the words of its
-    sentence before the formula.
+    `script`: lines of the author's own declarations, in the notation of scripts.  `lead` and `tail`: the
+    words of its sentence before and behind the formula.
     """
 
     prime: int | None = None
@@ -211,6 +211,7 @@ class Known:
     sentences: str = ""
     script: tuple[str, ...] = ()
     lead: str = ""
+    tail: str = ""
 
     def fact(self, name: ClassName) -> ClassFact | None:
         """What is known of a class by its spelling."""

@@ -10,8 +10,8 @@ from collections.abc import Iterable, Sequence
 from hashlib import sha256
 
 from opslang.lint.context.build import units_of
-from opslang.lint.context.stream import paragraphs
 from opslang.lint.context.names import nodes_in
+from opslang.lint.context.stream import paragraphs
 from opslang.lint.model import Finding, Operation, Origin, Verdict
 from opslang.lint.reading import Document, Notice, read_file, read_text
 from opslang.lint.reading.project import Project, load

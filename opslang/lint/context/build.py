@@ -5,7 +5,7 @@ The first gathers what is said, the second looks it up.  Nothing is invented: wh
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping
 
 from attrs import define, evolve, field
 
@@ -122,7 +122,9 @@ class _Builder:
         for one in self.ledger.sayings[name]:
             if one.spot.paragraph == number and one.degree is not None:
                 self.ledger.sayings[name].remove(one)
-                self.ledger.add(evolve(one, order=group.order, order_text=group.text, space=before[-1].text, local=False))
+                self.ledger.add(
+                    evolve(one, order=group.order, order_text=group.text, space=before[-1].text, local=False)
+                )
                 break
         if not second:
             return
@@ -208,6 +210,7 @@ class _Builder:
             rules=rules,
             integers=self.numbers.get(spot.paragraph, frozenset()) | no_operations(paragraph, formula, spot.offset),
             sentences=paragraph.shown(start, end),
+            tail=paragraph.shown(spot.offset + 1, paragraph.sentences[paragraph.sentence_at(spot.offset)][1]),
             lead=paragraph.shown(paragraph.sentences[paragraph.sentence_at(spot.offset)][0], spot.offset),
             script=context.lines,
             space=particular_space(paragraph, spot.offset, bool(self.settings.sized)),
@@ -240,6 +243,8 @@ class _Builder:
             fact = context.facts.get(name.spelling) or self.ledger.fact(spelling, spot)
             if name.letter == "iota":
                 fact = self._fundamental(name, fact, spot)
+            if fact is None:
+                fact = self._by_definition(name, frame, spot)
             if fact is not None:
                 classes[name.spelling] = self._somewhere(fact, spot)
         prime = self._prime(statement, frame, spot.section)
@@ -247,6 +252,20 @@ class _Builder:
         return evolve(
             frame, classes=classes, families=self._families(spot), prime=self._prime(statement, frame, spot.section)
         )
+
+    def _by_definition(self, name: ClassName, frame: Known, spot: Spot) -> ClassFact | None:
+        """The degree of a name that stands for a Bockstein of another class."""
+        for rule in frame.rules:
+            found = defined(rule)
+            if found is None or found[0] != name or len(found[1].terms) != 1:
+                continue
+            factors = found[1].terms[0][1].factors
+            if len(factors) != 2 or not isinstance(factors[0], Operation) or not isinstance(factors[1], ClassName):
+                continue
+            base = self.ledger.fact(factors[1].spelling, spot)
+            if factors[0].head == "beta" and base is not None and base.degree is not None:
+                return ClassFact(base.degree + Polynomial.of(1), None, "", base.space, "its definition")
+        return None
 
     def _somewhere(self, fact: ClassFact, spot: Spot) -> ClassFact:
         """The fact with its space: a class with no space, where manifolds are spoken of, may be one of a manifold."""

@@ -17,9 +17,20 @@ from opslang.lint.context.stream import Paragraph
 _CLASSIFYING = re.compile(r"\bB(O|SO|Spin|U|SU|Sp)(?:\((\d+)\))?(?![A-Za-z(])")
 _GROUP = re.compile(r"^\\?(O|SO|Spin|U|SU)\((\d+)\)$")
 _WORDS = (
-    (re.compile(r"\b(?:not|non-?)\s*(?:necessarily\s+)?orient(?:ed|able)\b|\bwithout orientation\b|\bunorient", re.IGNORECASE), "BO"),
+    (
+        re.compile(
+            r"\b(?:not|non-?)\s*(?:necessarily\s+)?orient(?:ed|able)\b|\bwithout orientation\b|\bunorient",
+            re.IGNORECASE,
+        ),
+        "BO",
+    ),
     (re.compile(r"\bspin (?:bundles?|structures?|manifolds?)\b", re.IGNORECASE), "BSpin"),
-    (re.compile(r"\borient(?:ed|able) (?:\S+ )?(?:bundles?|manifolds?|case)\b|\bM[^.]{0,20} being oriented\b", re.IGNORECASE), "BSO"),
+    (
+        re.compile(
+            r"\borient(?:ed|able) (?:\S+ )?(?:bundles?|manifolds?|case)\b|\bM[^.]{0,20} being oriented\b", re.IGNORECASE
+        ),
+        "BSO",
+    ),
     (re.compile(r"\b(?:real )?vector bundles?\b|\bcharacteristic classes of bundles\b", re.IGNORECASE), "BO"),
     (re.compile(r"\bChern class(?:es)?\b|\bcomplex (?:vector )?bundles?\b", re.IGNORECASE), "BU"),
 )

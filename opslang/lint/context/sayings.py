@@ -30,7 +30,8 @@ _WORDS = "zero one two three four five six seven eight nine ten".split()
 _KIND = r"(?:cohomology |integral |mod[- ]?\S+ |fixed |arbitrary |characteristic |homogeneous |nonzero |non-zero )*"
 _NOUN = rf"(?:(?:an?|the|any|some|every|two|three|both|our|its) )?{_KIND}(?:class|classes|element|elements|generator|generators|background|backgrounds)"
 _CONDITIONAL = re.compile(
-    r"\b(?:if|when|whenever|suppose|case|unless|would|needs?)\b[^.]{0,40}$|\b(?:for|on|where|with)\s+(?:all\s+)?$", re.IGNORECASE
+    r"\b(?:if|when|whenever|suppose|case|unless|would|needs?)\b[^.]{0,40}$|\b(?:for|on|where|with)\s+(?:all\s+)?$",
+    re.IGNORECASE,
 )
 
 _OF_DEGREE = re.compile(

@@ -26,7 +26,9 @@ HIGHEST = 40
 def family_of(left: Sum, right: Sum, known: Known) -> str:
     """The letter of the characteristic classes that occur, w (with v) or c; empty where there are none."""
     names = [*names_of(left), *names_of(right)]
-    letters = {name.letter for name in names if name.letter in known.families and name.letter in ("w", "v", "c") and name.index}
+    letters = {
+        name.letter for name in names if name.letter in known.families and name.letter in ("w", "v", "c") and name.index
+    }
     letters -= {name.letter for name in names if name.spelling in known.classes and name.letter != "w"}
     letters |= {"w"} if any(name.letter == DUAL for name in names) and "w" in known.families else set()
     letters = {"w" if letter == "v" else letter for letter in letters}

@@ -70,14 +70,15 @@ class Decision:
     right: str = ""
     name: str = ""
     special: str = ""
+    of_class: bool = False
     sort: str = ""
     degree: int | None = None
     derivation: tuple[str, ...] = field(default=(), repr=False)
 
     @property
     def certainly_false(self) -> bool:
-        """False, whatever the classes are."""
-        return self.answer == "false" and not self.special
+        """False, whatever the classes are: where the degrees differ, nothing that is not known of them can help."""
+        return self.answer == "false" and (not self.special or (self.name == "degrees-differ" and self.of_class))
 
 
 class Desk(Session):
@@ -151,9 +152,7 @@ def _of_bundles(
     return Decision("unknown", "it depends on the bundle", "whether the bundle is oriented, or spin")
 
 
-def _with_definitions(
-    left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool
-) -> Decision:
+def _with_definitions(left: Sum, right: Sum, known: Known, values: Mapping[str, int] | None, why: bool) -> Decision:
     own = evolve(known, rules=tuple([rule for rule in known.rules if rule.source == OF_THE_SPACE]))
     left, right = spelled_out(left, own), spelled_out(right, own)
     decision = _by_convention(left, right, known, values, why)
@@ -204,12 +203,14 @@ def _decide(left: Sum, right: Sum, known: Known, numbers: dict[str, int], why: b
     span = (left.at.start, right.at.end)
     statement = sf.RelationStatement((surfaces[0], surfaces[1]), span)
     outcome = session.answer(statement, span)
+    of_class = bool(special)
     classes = frozenset(name.spelling for side in (left, right) for name in names_of(side))
-    if classes and not special:
-        special = _circumstances(left, right, known)
+    around = _circumstances(left, right, known) if classes else ""
+    special, of_class = (around, False) if around else (special, of_class)
     if not special and other_rules(known, classes):
+        of_class = False
         special = "the draft has rules for its classes that are not worked in"
-    return _read(outcome, session, statement, special, why)
+    return evolve(_read(outcome, session, statement, special, why), of_class=of_class)
 
 
 def _prepared(side: Sum, known: Known, numbers: Mapping[str, int], naming: Naming, first_primitive: int) -> Sum:

@@ -8,6 +8,7 @@ from opslang.lint.context.names import nodes_in
 from opslang.lint.context.spaces import written
 from opslang.lint.model import ClassName, Condition, Finding, Index, Known, Operation, Statement, Verdict
 from opslang.lint.rule import LintRule
+from opslang.lint.symbolic.polynomial import Polynomial
 from opslang.lint.symbolic.values import polynomial_of
 
 _ALGEBRA = re.compile(r"\b(?:polynomial|algebra|ring|generat\w+)\b", re.IGNORECASE)
@@ -42,21 +43,23 @@ def _is_algebra(statement: Statement, known: Known) -> bool:
 
 
 def _admissible(condition: Condition, multi: str) -> list[Finding]:
-    """I_j > 2 I_{j+1} where ≥ is meant."""
+    """I_j > 2 I_{j+1} or I_j ≥ I_{j+1} where I_j ≥ 2 I_{j+1} is meant."""
     left, right = condition.left, condition.right
-    if condition.sign not in (">", "<") or left is None or right is None:
+    if condition.sign not in (">", "<", "≥", "≤") or left is None or right is None:
         return []
-    if condition.sign == "<":
+    if condition.sign in ("<", "≤"):
         left, right = right, left
     larger, smaller = polynomial_of(left), polynomial_of(right)
     if larger is None or smaller is None or len(larger.symbols) != 1 or len(smaller.symbols) != 1:
         return []
     first, second = next(iter(larger.symbols)), next(iter(smaller.symbols))
-    follows = first.startswith(multi + "_") and second == first + "+1"
-    twice = smaller.linear_in(second)
-    if not follows or twice is None or twice[0].constant != 2:
+    follows = first.startswith(multi + "_") and second == first + "+1" and larger == Polynomial.symbol(first)
+    bound = smaller.linear_in(second)
+    if not follows or bound is None or bound[0].constant not in (1, 2):
         return []
-    message = f"admissible is {first} ≥ 2 {second}, with equality\nSq^2 Sq^1 is admissible"
+    if condition.sign in ("≥", "≤") and smaller == Polynomial.symbol(second).scaled(2):
+        return []
+    message = f"admissible is {first} ≥ 2 {second}, with equality\nSq^2 Sq^1 is admissible, Sq^1 Sq^1 is not"
     return [Finding("basis-condition", "error", message, condition.at)]
 
 
@@ -79,7 +82,7 @@ def _is_excess(index: Index, multi: str) -> bool:
     value = polynomial_of(index)
     if value is None:
         return False
-    terms = {monomial: c for monomial, c in value.terms}
+    terms = dict(value.terms)
     total = terms.get((f"{multi}_+",)) == -1 or terms.get((f"|{multi}|",)) == -1
     return terms.get((f"{multi}_1",)) == 2 and total
 

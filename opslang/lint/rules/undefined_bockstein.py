@@ -32,8 +32,7 @@ def _is_high(operation: Operation) -> bool:
 def _computed(side: Sum, known: Known) -> str:
     names = [name for name in _names(side) if name.letter]
     facts = [known.fact(name) or known.classes.get(f"{name.spelling}^{name.label}") for name in names]
-    told = {rule for rule in known.rules}
-    if not names or any(fact is None or (fact.order is None and not told) for fact in facts):
+    if not names or any(fact is None or (fact.order is None and not known.rules) for fact in facts):
         return ""
     decision = decide(side, side, known)
     if decision.name != "bockstein-undefined" or decision.special:

@@ -113,7 +113,7 @@ def tried(statement: Statement, known: Known, domain: tuple[Condition, ...], mos
         here = _with_degrees(evolve(known, prime=given["p"]), unknown, number)
         lengths = {f"|{name}|": _degree(here, name) for name in unknown}
         decision = decide(left, right, here, {**given, **lengths})
-        answer = "false" if decision.certainly_false else decision.answer
+        answer = "unknown" if decision.answer == "false" and not decision.certainly_false else decision.answer
         if answer in ("true", "false"):
             degrees = [(f"|{name}|", _degree(here, name)) for name in unknown]
             points.append(Point((*values.items(), *degrees), answer, decision.left, decision.right))

@@ -7,6 +7,10 @@ says nothing it is a fault only if it holds nowhere.
 
 from __future__ import annotations
 
+import re
+
+from attrs import evolve
+
 from opslang.lint.formula.integers import letters_of
 from opslang.lint.model import (
     Call,
@@ -23,7 +27,6 @@ from opslang.lint.model import (
     Verdict,
     found,
 )
-from opslang.lint.symbolic.polynomial import ONE
 from opslang.lint.symbolic.trial import Trial, classes_of, free_symbols, tried
 from opslang.lint.symbolic.walk import about_operations, factors_of
 from opslang.lint.templates.shapes import adem, adem_range, cartan, has_binomial, only_product, says_range, wu
@@ -43,13 +46,22 @@ def template(statement: Statement, known: Known) -> Verdict | None:
     if shape is not None:
         return _adem(statement, known, shape)
     if cartan(statement):
-        trial = tried(statement, known, statement.conditions, TEMPLATE // 2)
+        trial = tried(statement, _of_any_classes(statement, known), statement.conditions, TEMPLATE // 2)
         if trial is None:
             return None
         if trial.false:
             return found(_wrong(statement, trial, "cartan-formula", "this is not the Cartan formula"))
         return Verdict("agrees", reason="agrees for " + trial.extent)
     return None
+
+
+def _of_any_classes(statement: Statement, known: Known) -> Known:
+    """What is known without the classes, where the sides have the same ones: Cartan's formula is one of any two."""
+    left, right = [{f.spelling for f in factors_of(side) if isinstance(f, ClassName)} for side in statement.sides]
+    if left != right:
+        return known
+    conventions = {key: value for key, value in known.conventions.items() if key != "hypothesis"}
+    return evolve(known, classes={}, families={}, rules=(), space="", conventions=conventions)
 
 
 def _adem(statement: Statement, known: Known, shape: tuple[str, Index, Index]) -> Verdict | None:
@@ -75,12 +87,15 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
         return None
     domain = (*statement.conditions, *known.ranges)
     classes = classes_of(statement)
-    trial = tried(statement, known, domain, FEW if classes else ENOUGH)
+    binomial = isinstance(statement.right, Sum) and any(has_binomial(product) for _, product in statement.right.terms)
+    trial = tried(statement, known, domain, FEW if classes and not binomial else ENOUGH)
     if trial is None:
         return None
     if not trial.false:
         return Verdict("agrees", reason="agrees for " + trial.extent)
     if classes and _powers_of_a_line(statement, known):
+        return found(_wrong(statement, trial, "false-for-small-values", "this does not hold for all values"))
+    if classes and _for_all(statement, known):
         return found(_wrong(statement, trial, "false-for-small-values", "this does not hold for all values"))
     if classes or _stated(statement):
         return None
@@ -92,18 +107,37 @@ def relation(statement: Statement, known: Known) -> Verdict | None:
 
 
 def _powers_of_a_line(statement: Statement, known: Known) -> bool:
-    """Sq^i(a^m) = binomial · a^{m+i}, with a of degree 1: it is meant for all i and m, and a has no special case."""
+    """Sq^i(a^m) = binomial · a^{m+i}, the degree of a being a number: it is meant for all i and m."""
     if not isinstance(statement.right, Sum) or not any(has_binomial(product) for _, product in statement.right.terms):
         return False
     names = [factor for side in statement.sides for factor in factors_of(side) if isinstance(factor, ClassName)]
     if any(condition.sign == "words" for condition in (*statement.conditions, *known.ranges)):
         return False
-    return all(known.degree(name) == ONE and _plain(known, name) for name in names)
+    return all(_constant(known, name) and _plain(known, name) for name in names)
 
 
 def _plain(known: Known, name: ClassName) -> bool:
     fact = known.fact(name)
-    return fact is not None and fact.order in (None, 1) and not fact.order_text
+    return fact is not None and not fact.order_text
+
+
+def _for_all(statement: Statement, known: Known) -> bool:
+    """Whether the statement itself says for which numbers it holds, in inequalities, and all degrees are known."""
+    if any(condition.sign == "words" for condition in (*statement.conditions, *known.ranges)):
+        return False
+    names = [factor for side in statement.sides for factor in factors_of(side) if isinstance(factor, ClassName)]
+    if any(known.degree(name) is None for name in names):
+        return False
+    own = {letter for c in statement.conditions for p in (c.left, c.right) if p is not None for letter in letters_of(p)}
+    free = set(free_symbols(statement, known)) - {"p"}
+    if re.match(r"\s*,?\s*(?:for|if|when|whenever)\s+(?:all\s+)?\$", known.tail):
+        own |= {letter for c in known.ranges for p in (c.left, c.right) if p is not None for letter in letters_of(p)}
+    return bool(free) and free <= own
+
+
+def _constant(known: Known, name: ClassName) -> bool:
+    degree = known.degree(name)
+    return degree is not None and degree.constant is not None
 
 
 def _stated(statement: Statement) -> bool:
