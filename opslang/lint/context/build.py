@@ -37,6 +37,7 @@ from opslang.lint.numeric.rules_given import OF_THE_SPACE, defined, transgresses
 from opslang.lint.reading import Document, Formula
 from opslang.lint.rule import Unit
 from opslang.lint.symbolic.polynomial import Polynomial
+from opslang.lint.symbolic.values import polynomial_of
 
 INDEX = Polynomial.symbol("index")
 
@@ -63,6 +64,8 @@ class _Builder:
     numbers: dict[int, frozenset[str]] = field(factory=dict)
     rules: list[tuple[Spot, Rule, Formula]] = field(factory=list)
     primitives: list[tuple[Spot, str]] = field(factory=list)
+    lowered: set[int] = field(factory=set)
+    """The sections that define Sq_i x as Sq^{n-i} x."""
 
     def statements(self, formula: Formula) -> tuple[Statement, ...]:
         """The statements of a formula, read once."""
@@ -144,6 +147,8 @@ class _Builder:
             named = bool(names_of(left) or names_of(right))
             if transgresses(rule) or (hypothesis and named) or defined(rule) is not None:
                 self.rules.append((spot, rule, formula))
+            if from_the_top(left, right):
+                self.lowered.add(spot.section)
             counted = first_primitive(left, right)
             if counted is not None:
                 self.primitives.append((spot, counted))
@@ -222,6 +227,8 @@ class _Builder:
             found["prime"] = "odd"
         if is_hypothesis(paragraph, spot.offset):
             found["hypothesis"] = "yes"
+        if spot.section in self.lowered:
+            found["squares"] = "lower"
         counted = self._primitive(spot)
         if counted is not None:
             found["Q"] = counted
@@ -344,6 +351,20 @@ def _of_space(degree: Polynomial, space: SpaceSaid) -> ClassFact:
     return ClassFact(degree, space.group.order, space.group.text, text, "the space named beside it")
 
 
+def from_the_top(left: Sum, right: Sum) -> bool:
+    """Whether an equation is Sq_i x = Sq^{n-i} x."""
+    sides = [side.terms[0][1].factors for side in (left, right) if len(side.terms) == 1]
+    if len(sides) != 2 or not all(side and isinstance(side[0], Operation) for side in sides):
+        return False
+    first, second = sides[0][0], sides[1][0]
+    if not isinstance(first, Operation) or not isinstance(second, Operation):
+        return False
+    if first.head != "Sq" or second.head != "Sq" or first.lower is None or first.upper or len(second.upper) != 1:
+        return False
+    i, above = polynomial_of(first.lower), polynomial_of(second.upper[0])
+    return i is not None and above is not None and len(i.symbols) == 1 and above.symbols > i.symbols
+
+
 def first_primitive(left: Sum, right: Sum) -> str | None:
     """The k of an equation Q_k = Sq^1 (or beta), for k = 0 and 1."""
     sides = [side.terms[0][1].factors for side in (left, right) if len(side.terms) == 1]
@@ -364,8 +385,6 @@ def _fits(space: SpaceSaid, degree: Polynomial) -> bool:
 
 
 def _index_degree(name: ClassName) -> Polynomial | None:
-    from opslang.lint.symbolic.values import polynomial_of
-
     return polynomial_of(name.index[0]) if len(name.index) == 1 else None
 
 

@@ -59,12 +59,14 @@ def operations_in(statement: Statement) -> list[Operation]:
 
 def about_operations(statement: Statement, known: Known) -> bool:
     """Whether a statement speaks of operations: P only at odd primes, beta only where it acts on something or is
-    alone with Sq^1.
+    alone with Sq^1, or is said to go from one cohomology group to another.
     """
     for operation in operations_in(statement):
         if operation.head == "Sq":
             return True
         if operation.head == "P" and known.prime != 2 and (known.prime is not None or "prime" in known.conventions):
+            return True
+        if operation.head == "beta" and statement.kind == "signature" and isinstance(statement.right, Cohomology):
             return True
         if operation.head == "Q" and known.conventions.get("Q"):
             return True
