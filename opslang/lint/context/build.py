@@ -5,6 +5,7 @@ The first gathers what is said, the second looks it up.  Nothing is invented: wh
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator, Mapping
 
 from attrs import define, evolve, field
@@ -39,6 +40,11 @@ from opslang.lint.rule import Unit
 from opslang.lint.symbolic.polynomial import Polynomial
 from opslang.lint.symbolic.values import polynomial_of
 
+_WORTH = re.compile(
+    r"Sq|SQ|\\beta|β|\\iota|ι|\\chi|χ|\\delta|(?<![A-Za-z])[Pe](?=[\^_({])|P$|P\\?[,=+]|Q|[wv](?=[_{]).*=|(?<![A-Za-z])d[_(].*="
+)
+"""What a formula about operations, their words, or characteristic classes has in its plain spelling."""
+_DECLARES = re.compile(r"\\in(?![a-z])|∈|\||\\l?vert|deg|dim")
 INDEX = Polynomial.symbol("index")
 
 
@@ -97,20 +103,29 @@ class _Builder:
             self.numbers[number] = frozenset(name.spelling for name in numbers_said(paragraph, self.statements))
             for saying in from_words(paragraph, self.statements, spot_at):
                 self.ledger.add(saying)
-            for formula, spot in zip(paragraph.formulas, spots):
-                for saying in from_formula(self.statements(formula), formula):
-                    local = self._hypothesis(paragraph, spot)
-                    said = evolve(saying, spot=spot, source="the formula", local=local)
-                    self.ledger.add(in_its_ring(said, paragraph))
-                self._note_rules(formula, spot, is_hypothesis(paragraph, spot.offset))
+            for formula, plain, spot in zip(paragraph.formulas, paragraph.plains, spots):
+                if _DECLARES.search(plain):
+                    self._note_sayings(paragraph, formula, spot)
+                if "=" in plain and self._worth(plain):
+                    self._note_rules(formula, spot, is_hypothesis(paragraph, spot.offset))
             self._note_lens(paragraph, spots)
+
+    def _worth(self, plain: str) -> bool:
+        """Whether a formula in plain spelling may be about operations."""
+        return _WORTH.search(plain) is not None or any(name in plain for name in self.scripts.macros)
+
+    def _note_sayings(self, paragraph: Paragraph, formula: Formula, spot: Spot) -> None:
+        for saying in from_formula(self.statements(formula), formula):
+            local = self._hypothesis(paragraph, spot)
+            said = evolve(saying, spot=spot, source="the formula", local=local)
+            self.ledger.add(in_its_ring(said, paragraph))
 
     def _note_lens(self, paragraph: Paragraph, spots: list[Spot]) -> None:
         """The classes of degree 1 and 2 of a K(Z/p^k, 1): the second is the Bockstein of the first."""
-        if not spots:
-            return
         number = spots[0].paragraph
         spaces = [at for at in self.settings.spaces if at.spot.paragraph == number and at.space.degree == "1"]
+        if not spaces:
+            return
         said = [one for found in self.ledger.sayings.values() for one in found if one.spot.paragraph == number]
         first = {one.name for one in said if one.degree == Polynomial.of(1)}
         second = {one.name for one in said if one.degree == Polynomial.of(2)}
@@ -186,10 +201,10 @@ class _Builder:
     def units(self) -> Iterator[Unit]:
         """The statements with what is known."""
         for paragraph, spots in self.pages:
-            for formula, spot in zip(paragraph.formulas, spots):
-                statements = self.statements(formula)
-                if not any(_worth(statement) for statement in statements):
+            for formula, plain, spot in zip(paragraph.formulas, paragraph.plains, spots):
+                if not self._worth(plain):
                     continue
+                statements = self.statements(formula)
                 frame = self._frame(paragraph, formula, spot)
                 for statement in statements:
                     yield Unit(statement, self._known(statement, spot, frame))
@@ -386,11 +401,6 @@ def _fits(space: SpaceSaid, degree: Polynomial) -> bool:
 
 def _index_degree(name: ClassName) -> Polynomial | None:
     return polynomial_of(name.index[0]) if len(name.index) == 1 else None
-
-
-def _worth(statement: Statement) -> bool:
-    """Whether a statement may be about operations at all."""
-    return statement.kind not in ("condition",)
 
 
 def operations_in(statement: Statement) -> list[Operation]:

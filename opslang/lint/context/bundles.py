@@ -11,7 +11,6 @@ from collections.abc import Sequence
 from attrs import define, field, frozen
 
 from opslang.lint.context.facts import Spot
-from opslang.lint.context.spaces import written
 from opslang.lint.context.stream import Paragraph
 
 _CLASSIFYING = re.compile(r"\bB(O|SO|Spin|U|SU|Sp)(?:\((\d+)\))?(?![A-Za-z(])")
@@ -60,8 +59,10 @@ class Bundles:
         self.wu_classes = self.wu_classes or "Wu class" in text
         self.chern = self.chern or "Chern class" in text
         found: list[BundleAt] = []
-        for formula, spot, place in zip(paragraph.formulas, spots, paragraph.places):
-            plain = written(formula.tokens).rstrip(".,;")
+        for plain, spot, place in zip(paragraph.plains, spots, paragraph.places):
+            if "O" not in plain and "U" not in plain and "S" not in plain:
+                continue
+            plain = plain.rstrip(".,;")
             found += [BundleAt(spot, one.group()) for one in _CLASSIFYING.finditer(plain)]
             group = _GROUP.match(plain)
             if group and re.match(r"[\s-]*(?:principal )?bundle", text[place + 1 : place + 24]):

@@ -147,7 +147,7 @@ def in_its_ring(saying: Saying, paragraph: Paragraph) -> Saying:
     if not _RING.search(paragraph.text, start, end):
         return saying
     for sign in re.findall(F, paragraph.text[start:end]):
-        for space in named_in(written(paragraph.formula(sign).tokens)):
+        for space in named_in(paragraph.plain(sign)):
             generic = universal(space, saying.degree)
             if generic is not None:
                 return evolve(saying, order=generic[0], space=generic[1])

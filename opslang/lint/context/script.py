@@ -54,6 +54,11 @@ class Scripts:
             context = self._after(context, one)
             self._steps.append(((one.at.file, one.at.start), context))
 
+    @property
+    def macros(self) -> tuple[str, ...]:
+        """The commands that the author says mean an operation."""
+        return tuple([name for _, context in self._steps[-1:] for name in context.operations])
+
     def at(self, formula: Formula | None) -> Context:
         """What is declared where a formula stands."""
         if not self._steps or formula is None:

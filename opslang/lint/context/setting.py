@@ -11,7 +11,7 @@ from collections.abc import Sequence
 from attrs import define, field, frozen
 
 from opslang.lint.context.facts import Spot
-from opslang.lint.context.spaces import NO_GROUP, SpaceSaid, group_said, mentioned, particular, written
+from opslang.lint.context.spaces import NO_GROUP, SpaceSaid, group_said, mentioned, particular
 from opslang.lint.context.stream import Paragraph
 from opslang.lint.reading import Formula
 
@@ -123,8 +123,7 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
         settings.manifolds.add(section)
         _note_sizes(settings, paragraph, section)
     found: list[PrimeSaid] = []
-    for formula, spot, place in zip(paragraph.formulas, spots, paragraph.places):
-        plain = written(formula.tokens)
+    for plain, spot, place in zip(paragraph.plains, spots, paragraph.places):
         _note_use(settings, plain, section)
         prime = _PRIME_IS.match(plain)
         if prime:
@@ -135,11 +134,11 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
         if "K(" in plain or "B^" in plain:
             settings.spaces += [SpaceAt(spot, space) for space in mentioned(plain)]
     for group in _GROUP.finditer(text):
-        said = group_said(written(paragraph.formula(group[1]).tokens))
+        said = group_said(paragraph.plain(group[1]))
         if said is not None:
             spot = Spot(section, at, paragraph.sentence_at(group.start()), group.start())
             settings.spaces.append(
-                SpaceAt(spot, SpaceSaid("group", written(paragraph.formula(group[1]).tokens), "", said))
+                SpaceAt(spot, SpaceSaid("group", paragraph.plain(group[1]), "", said))
             )
     found += _primes_in_words(settings, paragraph, at, section)
     settings.primes += sorted(found, key=lambda said: said.spot.offset)
@@ -148,7 +147,7 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
 def _note_sizes(settings: Settings, paragraph: Paragraph, section: int) -> None:
     for one in _SIZE.finditer(paragraph.text):
         word = one[1] or one[2]
-        plain = written(paragraph.formula(word).tokens) if word and len(word) == 1 and ord(word) >= 0xE000 else word
+        plain = paragraph.plain(word) if word and len(word) == 1 and ord(word) >= 0xE000 else word
         if plain and plain.isalpha() and len(plain) == 1:
             settings.dimensions.add(plain)
         else:
@@ -171,14 +170,14 @@ def _primes_in_words(settings: Settings, paragraph: Paragraph, at: int, section:
         word = one[1] or one[2]
         number = _PRIMES.get(word.lower()) or (int(word) if word.isdigit() else None)
         if number is None:
-            plain = written(paragraph.formula(word).tokens)
+            plain = paragraph.plain(word)
             number = int(plain) if plain.isdigit() else None
         if number is not None:
             spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
             found.append(PrimeSaid(spot, number, not _FOR_GOOD.search(text, max(0, one.start() - 60), one.start())))
     for one in _ODD.finditer(text):
         sign = re.search(r"[\ue000-\uf7ff]", one.group())
-        if sign and written(paragraph.formula(sign.group()).tokens) not in ("p", "\\ell", "l", "q", "p>2"):
+        if sign and paragraph.plain(sign.group()) not in ("p", "\\ell", "l", "q", "p>2"):
             continue
         settings.odd = True
         spot = Spot(section, at, paragraph.sentence_at(one.start()), one.start())
@@ -205,9 +204,9 @@ def particular_space(paragraph: Paragraph, place: int, sized: bool) -> str:
     A manifold of any dimension (`sized` false) satisfies in low degrees no more than any space does.
     """
     start, end = paragraph.sentences[paragraph.sentence_at(place)]
-    for formula, at in zip(paragraph.formulas, paragraph.places):
-        if at < end:
-            found = particular(written(formula.tokens))
+    for plain, at in zip(paragraph.plains, paragraph.places):
+        if at < end and ("P" in plain or "H^" in plain):
+            found = particular(plain)
             if found and (start <= at or found == NO_GROUP):
                 return found
     for words in _PARTICULAR.finditer(paragraph.text, start, end):

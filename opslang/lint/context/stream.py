@@ -6,6 +6,7 @@ Knows pieces and sentences; knows nothing of what they say.
 from __future__ import annotations
 
 import re
+from bisect import bisect_right
 from collections.abc import Iterator, Sequence
 
 from attrs import field, frozen
@@ -25,11 +26,12 @@ _ABBREVIATIONS = re.compile(
 
 @frozen
 class Paragraph:
-    """The text of a paragraph; formula k stands in it as one sign, whose offset is `places[k]`."""
+    """The text of a paragraph; formula k stands in it as one sign at `places[k]`, and reads `plains[k]` in plain spelling."""
 
     text: str
     formulas: tuple[Formula, ...] = field(repr=False)
     places: tuple[int, ...] = field(repr=False)
+    plains: tuple[str, ...] = field(repr=False)
     sentences: tuple[tuple[int, int], ...] = field(repr=False)
     where: Where = field(factory=Where, repr=False)
 
@@ -37,16 +39,17 @@ class Paragraph:
         """The formula that a sign stands for."""
         return self.formulas[ord(sign) - FIRST]
 
+    def plain(self, sign: str) -> str:
+        """The formula that a sign stands for, in plain spelling."""
+        return self.plains[ord(sign) - FIRST]
+
     def sentence_at(self, offset: int) -> int:
         """The number of the sentence in which an offset lies."""
-        for number, (_, end) in enumerate(self.sentences):
-            if offset < end:
-                return number
-        return len(self.sentences) - 1
+        return min(bisect_right(self.sentences, (offset, 1 << 62)) - 1, len(self.sentences) - 1)
 
     def shown(self, start: int, end: int) -> str:
         """A stretch of the text with the formulas written out, each between dollars."""
-        return re.sub(SIGN, lambda found: f"${written(self.formula(found.group()).tokens)}$", self.text[start:end])
+        return re.sub(SIGN, lambda found: f"${self.plain(found.group())}$", self.text[start:end])
 
     def around(self, offset: int, reach: int = 1) -> tuple[int, int]:
         """The stretch of text of the sentence at an offset and of that many before and after it."""
@@ -88,7 +91,8 @@ def _paragraph(pieces: list[Piece]) -> Paragraph:
         parts.append(text)
         length += len(text)
     whole = "".join(parts)
-    return Paragraph(whole, tuple(formulas), tuple(places), tuple(_sentences(whole)), pieces[0].where)
+    plains = tuple([written(formula.tokens) for formula in formulas])
+    return Paragraph(whole, tuple(formulas), tuple(places), plains, tuple(_sentences(whole)), pieces[0].where)
 
 
 def _ends(formula: Formula) -> bool:
