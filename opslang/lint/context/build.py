@@ -44,7 +44,7 @@ _WORTH = re.compile(
     r"Sq|SQ|\\beta|β|\\iota|ι|\\chi|χ|\\delta|(?<![A-Za-z])[Pe](?=[\^_({])|P$|P\\?[,=+]|Q|[wv](?=[_{]).*=|(?<![A-Za-z])d[_(].*="
 )
 """What a formula about operations, their words, or characteristic classes has in its plain spelling."""
-_DECLARES = re.compile(r"\\in(?![a-z])|∈|\||\\l?vert|deg|dim")
+_DECLARES = re.compile(r"H\^|\||\\l?vert|deg|dim")
 INDEX = Polynomial.symbol("index")
 
 

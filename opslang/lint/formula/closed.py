@@ -5,14 +5,16 @@ Only closed expressions pass: numbers in all indices, no sum sign, no ellipsis, 
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from fractions import Fraction
+from operator import mul
 from math import floor
 
 from opslang.lint.model import (
     BigSum,
     ClassName,
     Coefficient,
+    Condition,
     Conjugate,
     Factor,
     Group,
@@ -24,7 +26,8 @@ from opslang.lint.model import (
     Product,
     Sum,
 )
-from opslang.lint.symbolic.values import value_of
+from opslang.lint.symbolic.polynomial import Polynomial
+from opslang.lint.symbolic.values import polynomial_of, value_of
 from opslang.syntax import surface as sf
 
 _GLUES = {"": "", "*": "*", "cup": "cup", "cross": "cross", "times": "cross", "compose": "compose"}
@@ -147,17 +150,53 @@ def _solutions(big: BigSum, free: list[str], values: dict[str, int]) -> list[dic
         raise NotClosed
     ranges = [range(ceiling + 1)] * len(free)
     grid = [(a,) for a in ranges[0]] if len(free) == 1 else [(a, b) for a in ranges[0] for b in ranges[1]]
+    linear = [_linear(condition, free, values) for condition in big.bounds.conditions]
     found = []
     for point in grid:
         chosen = dict(zip(free, point))
-        if all(
-            _holds(condition.sign, condition.left, condition.right, {**values, **chosen})
-            for condition in big.bounds.conditions
-        ):
+        for condition, form in zip(big.bounds.conditions, linear):
+            if form is not None:
+                slopes, constant, holds = form
+                if not holds(sum(map(mul, slopes, point)) + constant):
+                    break
+            elif not _holds(condition.sign, condition.left, condition.right, {**values, **chosen}):
+                break
+        else:
             if ceiling in point:
                 raise NotClosed  # nothing bounds it
             found.append(chosen)
     return found
+
+
+_SIGNS: dict[str, Callable[[int], bool]] = {
+    "<": lambda n: n < 0,
+    ">": lambda n: n > 0,
+    "≤": lambda n: n <= 0,
+    "≥": lambda n: n >= 0,
+    "=": lambda n: n == 0,
+    "≠": lambda n: n != 0,
+}
+
+
+def _linear(
+    condition: Condition, free: list[str], values: Mapping[str, int]
+) -> tuple[list[int], int, Callable[[int], bool]] | None:
+    """A comparison as a linear form in the free variables, compared with 0; None where it is no such thing."""
+    if condition.left is None or condition.right is None or condition.sign not in _SIGNS:
+        return None
+    left, right = polynomial_of(condition.left), polynomial_of(condition.right)
+    if left is None or right is None:
+        return None
+    form = (left - right).substitute({name: Polynomial.of(value) for name, value in values.items() if name not in free})
+    slopes, constant = dict.fromkeys(free, 0), 0
+    for monomial, c in form.terms:
+        if not isinstance(c, int) or len(monomial) > 1 or (monomial and monomial[0] not in slopes):
+            return None
+        if monomial:
+            slopes[monomial[0]] = c
+        else:
+            constant = c
+    return list(slopes.values()), constant, _SIGNS[condition.sign]
 
 
 def _holds(sign: str, left: Index | None, right: Index | None, values: Mapping[str, int]) -> bool:
