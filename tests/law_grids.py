@@ -97,8 +97,7 @@ def _binomial_grid() -> list[Bindings]:
         (5, "CP", "y"),
     ):
         of_space = named(text, p, letter)
-        step = of_space.degree if p == 2 else 1
-        found += [{"p": p, "i": i * step, "m": m, "x": of_space} for m in range(1, 8) for i in range(1, 6)]
+        found += [{"p": p, "i": i, "m": m, "x": of_space} for m in range(1, 8) for i in range(1, 9)]
     return found
 
 
@@ -305,7 +304,7 @@ OUTSIDE: dict[str, list[Bindings]] = {
         {"p": 3, "k": 1, "of": named("CP", 3, "y")},
     ],
     "projective-power": [
-        {"p": 2, "i": 1, "m": 2, "x": named("CP", 2, "y")},
+        {"p": 2, "i": 1, "m": 0, "x": named("CP", 2, "y")},
         {"p": 2, "i": 0, "m": 2, "x": named("RP", 2, "x")},
         {"p": 3, "i": 1, "m": 1, "x": named("RP^5", 3, "x")},
         {"p": 2, "i": 1, "m": 2, "x": A},

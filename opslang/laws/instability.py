@@ -97,6 +97,10 @@ def _match_top(factor: Factor, exponent: int, p: int) -> Bindings | None:
     return {"p": p, "i": acts[0], "x": acts[1]} if acts and 2 * acts[0] == acts[2] else None
 
 
+def _top_words(p: int, i: int, x: Monomial) -> str:
+    return "the top square is the cup square" if p == 2 else "the top operation is the p-th power"
+
+
 TOP_POWER = Law(
     name="top-power",
     title="the top operation is the p-th power",
@@ -106,6 +110,7 @@ TOP_POWER = Law(
     examples=("Sq^3 iota_3 = iota_3^2",),
     instance=_top_power,
     match=_match_top,
+    words=_top_words,
 )
 
 

@@ -19,7 +19,7 @@ def _power_of(factor: Factor, p: int) -> tuple[int, Class, int] | None:
 
 
 def _row(p: int, i: int, m: int, x: Class) -> tuple[int, int, int] | None:
-    """The upper and lower argument of the binomial and the exponent of x; None where degrees forbid a value."""
+    """The upper and lower argument of the binomial and the exponent of x; None where degrees leave 0 alone."""
     if p == 2:
         j, odd = divmod(i, x.degree)
         return None if odd else (m, j, m + j)
@@ -31,18 +31,13 @@ def _row(p: int, i: int, m: int, x: Class) -> tuple[int, int, int] | None:
 def _binomial(p: int, i: int, m: int, x: Class) -> Equation:
     require(single_generator(x, p) and i > 0 and m > 0, "no power of the generator of a projective or lens space")
     row = _row(p, i, m, x)
-    require(row is not None, "the degree of the square is no multiple of that of the generator")
-    assert row is not None
-    upper, lower, exponent = row
-    rhs = add(p, (binomial_mod(upper, lower, p), of_factor(p, x, exponent)))
+    rhs = zero(p) if row is None else add(p, (binomial_mod(row[0], row[1], p), of_factor(p, x, row[2])))
     return Equation(Apply(head(p), i, Monomial(((x, m),))), 1, rhs)
 
 
 def _match_binomial(factor: Factor, exponent: int, p: int) -> Bindings | None:
     acts = _power_of(factor, p)
-    if acts is None or _row(p, acts[0], acts[2], acts[1]) is None:
-        return None
-    return {"p": p, "i": acts[0], "m": acts[2], "x": acts[1]}
+    return {"p": p, "i": acts[0], "m": acts[2], "x": acts[1]} if acts else None
 
 
 def _binomials(p: int, i: int, m: int, x: Class) -> tuple[Binomial, ...]:
@@ -65,7 +60,7 @@ BINOMIAL = Law(
         r"\mathrm{Sq}^{di}x^{m} = \binom{m}{i}x^{m+i}, \quad \mathcal{P}^{i}y^{m} = \binom{m}{i}y^{m+i(p-1)},"
         r" \quad \mathcal{P}^{i}u^{m} = \binom{2m}{i}u^{m+i(p-1)/2}"
     ),
-    condition="x in H^d(RP^n), H^d(CP^n), H^d(HP^n), d = 1, 2, 4; p odd: y on CP^n and lens spaces, u on HP^n",
+    condition="x in H^d of RP^n, CP^n, HP^n or a lens space, d = 1, 2, 4, 0 for other squares; p odd: y, and u on HP^n",
     source="Steenrod and Epstein 1962, chapters I and VI",
     examples=("Sq^2(x^3) = x^5", "Sq^1(x^4) = 0"),
     setting=("on RP^6",),

@@ -45,7 +45,7 @@ def _is_blank(derivation: Derivation) -> bool:
 def _is_short(step: Step) -> bool:
     """Whether a step may share its line: its instance has one term at most and nothing more to show."""
     law = LAWS[step.law]
-    if law.remarks(**step.bindings) or law.words:
+    if law.remarks(**step.bindings):
         return False
     return law.kills or (not law.binomials(**step.bindings) and len(law.instance(**step.bindings).rhs.terms) <= 1)
 
@@ -53,7 +53,7 @@ def _is_short(step: Step) -> bool:
 def _groups(derivation: Derivation) -> Iterator[Group]:
     waiting: list[Step] = []
     for number, step in enumerate(derivation.steps, start=1):
-        if waiting and not (step.law == waiting[0].law and _is_short(step) and _is_short(waiting[0])):
+        if waiting and not (_is_short(step) and _is_short(waiting[0]) and _title(step) == _title(waiting[0])):
             yield Group(number - len(waiting), tuple(waiting), LAWS[waiting[0].law])
             waiting = []
         waiting.append(step)
