@@ -38,6 +38,7 @@ if TYPE_CHECKING:
 
 __all__ = ["DEFAULT_LIMIT", "Outcome", "Session"]
 
+_WORST: tuple[Verdict, ...] = ("error", "false", "undecided", "true", "ok")
 _KINDS: dict[str, Kind] = {
     "prime": "declaration",
     "space": "declaration",
@@ -95,7 +96,8 @@ class Session:
             outcome = self._answer(statement, Outcome(source, span, kind, "ok", self.scope.prime), lowering)
             if lowering.home is not None and outcome.sort == "class":
                 outcome = changed(outcome, space=lowering.home.text)
-            return changed(outcome, diagnostics=(*lowering.diagnostics, *outcome.diagnostics))
+            said = (*lowering.diagnostics, *outcome.diagnostics)
+            return changed(outcome, diagnostics=said) if said else outcome
         except Refusal as refusal:
             lowering.diagnostics += refusal.others
             found = refusal.diagnostic
@@ -184,16 +186,20 @@ class Session:
 
     def _described(self, outcome: Outcome, values: tuple[Value, ...]) -> Outcome:
         """The sort of the values, and the space that their classes live in."""
-        sort = next((value.sort for value in values if value.sort != "scalar"), "class")
+        sort, space = self._sort_and_space(values)
+        return changed(outcome, sort=sort, space=space)
+
+    def _sort_and_space(self, values: tuple[Value, ...]) -> tuple[Sort, str | None]:
+        sort: Sort = next((value.sort for value in values if value.sort != "scalar"), "class")
         if sort == "operation":
-            return changed(outcome, sort="operation")
+            return sort, None
         if self.scope.space is not None:
-            return changed(outcome, sort="class", space=self.scope.space.text)
-        classes = {of for value in values for of in value.classes}
+            return "class", self.scope.space.text
+        classes = values[0].classes.union(*[value.classes for value in values[1:]])
         space = None
-        if classes and all(of.letter == "iota" for of in classes):
-            space = " x ".join(f"K(Z/{self.scope.prime}, {n})" for n in sorted(of.degree for of in classes))
-        return changed(outcome, sort="class", space=space)
+        if classes and all([of.letter == "iota" for of in classes]):
+            space = " x ".join([f"K(Z/{self.scope.prime}, {n})" for n in sorted([of.degree for of in classes])])
+        return "class", space
 
     def _one_name_one_class(self, classes: frozenset[Class], span: Span) -> None:
         if len(classes) < 2:
@@ -240,18 +246,19 @@ class Session:
                 name, message = words
         if engine.modulo:
             lowering.diagnostics.append(self._modulo(statement.span))
-        worst = next((v for v in ("false", "undecided", "true") if any(link.verdict == v for link in links)), "true")
-        shown = next((link.difference for link in links if link.verdict == worst), links[0].difference)
+        worst = min(links, key=lambda link: _WORST.index(link.verdict))
         degrees = {value.degree for value in values if not _bare_zero(value)}
         degree = degrees.pop() if len(degrees) == 1 else None if degrees else 0
-        outcome = self._described(blank, values)
+        sort, space = self._sort_and_space(values)
         outcome = changed(
-            outcome,
-            verdict=cast(Verdict, worst),
-            element=shown,
+            blank,
+            sort=sort,
+            space=space,
+            verdict=worst.verdict,
+            element=worst.difference,
             sides=elements,
             degree=degree,
-            excess=element_excess(shown),
+            excess=element_excess(worst.difference),
             links=tuple(links) if len(links) > 1 else (),
             name=name,
             message=message,

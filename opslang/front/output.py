@@ -63,6 +63,8 @@ class Output:
         self._size = 0
         self._room = 0 if on_terminal(sys.stdout) else BLOCK  # at a terminal every answer is wanted at once
         self.before = before
+        self._warned: list[str] = []
+        self._apart = _apart()
 
     def say(self, channel: Channel, text: str) -> None:
         """Takes text that ends with a line end.  Raises Departed or Failed."""
@@ -71,13 +73,23 @@ class Output:
             self._size += len(text)
             if self._size >= self._room:
                 self.flush()
+        elif self._apart:
+            self._warned.append(text)
+            self._size += len(text)
+            if self._size >= self._room:
+                self.flush()
         else:
-            self.flush()  # the two streams often share a terminal: keep the order
-            self._warn(text)
+            self.flush()  # the two streams go to one place: keep the order
+            self.warn(text)
 
     def flush(self) -> None:
-        """Hands over the results held so far.  Raises Departed or Failed."""
+        """Hands over what is held.  Raises Departed or Failed."""
+        if self._warned:
+            text = "".join(self._warned)
+            self._warned.clear()
+            self.warn(text)
         if not self._held:
+            self._size = 0
             return
         text = "".join(self._held)
         self._held.clear()
@@ -94,7 +106,8 @@ class Output:
         except (OSError, ValueError) as trouble:
             raise failure(trouble) from trouble
 
-    def _warn(self, text: str) -> None:
+    def warn(self, text: str) -> None:
+        """Writes to standard error at once; nobody is told where that fails."""
         if sys.stderr is None:
             return
         if self.before is not None:
@@ -103,6 +116,16 @@ class Output:
             _write(sys.stderr, text)
         except (OSError, ValueError):
             _abandon(sys.stderr)
+
+
+def _apart() -> bool:
+    """Whether results and diagnostics go to different files, neither a terminal, so that their order does not show."""
+    if on_terminal(sys.stdout) or on_terminal(sys.stderr) or sys.stdout is None or sys.stderr is None:
+        return False
+    try:
+        return not os.path.sameopenfile(sys.stdout.fileno(), sys.stderr.fileno())
+    except (OSError, ValueError):
+        return False
 
 
 def _write(stream: TextIO, text: str) -> None:
@@ -132,7 +155,7 @@ def failure(trouble: OSError | ValueError) -> Failed:
 
 def report(failed: Failed, paint: Paint = plain) -> int:
     """Says that standard output has failed, and gives the exit status."""
-    Output().say("diagnostic", render_file("output-failed", str(failed), "opslang", paint=paint) + "\n")
+    Output().warn(render_file("output-failed", str(failed), "opslang", paint=paint) + "\n")
     return 2
 
 

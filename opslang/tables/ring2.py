@@ -338,5 +338,8 @@ class Ring2:
     def decode(self, f: Iterable[int]) -> tuple[tuple[Monomial, int], ...]:
         """The terms of an element in canonical order."""
         slots, unpack = self.slots, self.algebra.unpack
-        found = sorted([decode(slots, unpack, x)[:3] for x in f])
-        return tuple([(monomial, 1) for _, _, monomial in found])
+        known = slots.decoded.get
+        found = [known(x) or decode(slots, unpack, x) for x in f]
+        if len(found) > 1:
+            found.sort()
+        return tuple([(term[2], 1) for term in found])
