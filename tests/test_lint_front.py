@@ -247,3 +247,10 @@ def test_reports_survive_packing() -> None:
 @pytest.mark.parametrize("text", ["", "$", "\\", "$\\Sq^", "\\begin{align}", "$\\Sq^{99999999999999999999}x=0$", "$" + "(" * 3000 + "$", "\udc80$x$"])
 def test_nothing_breaks_the_linter(text: str) -> None:
     assert lint_text(text, "a.tex").failure is None
+
+
+def test_the_derivation_is_shown_when_asked_for(folder: Path) -> None:
+    assert "Adem relation" not in run("false.tex", cwd=folder).out
+    assert "Adem relation" in run("--why", "false.tex", cwd=folder).out
+    log = sarif(run("--why", "--output", "sarif", "false.tex", cwd=folder).out)
+    assert "Adem" in "\n".join(log["runs"][0]["results"][0]["properties"]["derivation"])

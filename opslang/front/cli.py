@@ -112,7 +112,7 @@ def evaluate(
 )
 @click.option("--mend", is_flag=True, help="Write the mends that are certain into the files.")
 @click.option("--coverage", is_flag=True, help="Say of each formula whether it was checked, and why not.")
-@click.option("--why", is_flag=True, help="Show the derivation behind each finding.")
+@click.option("--why", is_flag=True, help="Show the derivation behind each finding (in SARIF: as a property).")
 @click.option("--explain", metavar="NAME", help="Say what a finding of this name is, and nothing else.")
 @click.option("--since", metavar="DATE|REVISION", help="Only files changed since then, or since that git revision.")
 @click.option("--jobs", type=click.IntRange(min=1), help="Processes to share the files; 2 where there are many.")

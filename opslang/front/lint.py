@@ -97,7 +97,8 @@ def _reports(names: list[str], settings: LintSettings) -> Generator[Report, None
     from opslang.syntax.loader import cache_folder
 
     folder = cache_folder() if settings.cache else None
-    work = Work(Cache(folder / "lint" if folder is not None else None))
+    options = "why" if settings.why else ""
+    work = Work(Cache(folder / "lint" if folder is not None else None, options), settings.why)
     jobs = settings.jobs or default_jobs(len(names))
     if STANDARD_INPUT not in names:
         if settings.cluster is not None:
@@ -106,10 +107,10 @@ def _reports(names: list[str], settings: LintSettings) -> Generator[Report, None
             yield from shared(names, work, min(jobs, max(1, len(names))))
         return
     for name in names:
-        yield _standard_input(settings.name) if name == STANDARD_INPUT else work.one(name)
+        yield _standard_input(settings.name, settings.why) if name == STANDARD_INPUT else work.one(name)
 
 
-def _standard_input(name: str) -> Report:
+def _standard_input(name: str, explain: bool) -> Report:
     if sys.stdin is None:
         return Report(name, failure=("unreadable-file", "standard input is closed"))
     try:
@@ -118,7 +119,7 @@ def _standard_input(name: str) -> Report:
         return Report(name, failure=("unreadable-file", (trouble.strerror or str(trouble)).lower()))
     if b"\0" in data and data[:2] not in (b"\xff\xfe", b"\xfe\xff"):
         return Report(name, failure=("binary-file", "what comes in is binary: it holds a NUL byte"))
-    return lint_text(data, name)
+    return lint_text(data, name, explain)
 
 
 def in_order(reports: Iterable[Report], names: list[str]) -> Iterator[Report]:
@@ -206,7 +207,7 @@ class Writer:
             return found
         from opslang.lint.run import lint
 
-        return lint(found.name)  # places have moved
+        return lint(found.name, self.settings.why)  # places have moved
 
     def _rows(self, found: Report, rows: tuple[Row, ...]) -> None:
         covered = (*found.notices, *found.formulas) if self.settings.coverage else ()

@@ -47,13 +47,14 @@ class Work:
     """What is done to drafts: they are looked up among the results kept, linted, kept.  Travels between processes."""
 
     cache: Cache
+    explain: bool = False
 
     def one(self, path: str) -> Report:
         """The report on a draft."""
         kept = self.cache.get(path)
         if kept is not None:
             return kept
-        report = lint(path)
+        report = lint(path, self.explain)
         self.cache.put(path, report)
         return report
 

@@ -195,7 +195,7 @@ class Known:
     `ranges`: what the neighbouring sentences say of symbols.  `counted_by`: what the index of P^i counts.
     `integers`: symbols said to be numbers, so that they are no classes (`beta`, `P` among them: no operations).
     `script`: lines of the author's own declarations, in the notation of scripts.  `lead` and `tail`: the
-    words of its sentence before and behind the formula.
+    words of its sentence before and behind the formula.  `explain`: derivations are wanted.
     """
 
     prime: int | None = None
@@ -212,6 +212,7 @@ class Known:
     script: tuple[str, ...] = ()
     lead: str = ""
     tail: str = ""
+    explain: bool = False
 
     def fact(self, name: ClassName) -> ClassFact | None:
         """What is known of a class by its spelling."""

@@ -5,13 +5,11 @@
 
 from __future__ import annotations
 
-import os
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 from hashlib import sha256
 
-from opslang.lint.context.build import units_of
+from opslang.lint.context.build import learnt_from
 from opslang.lint.context.names import nodes_in
-from opslang.lint.context.stream import paragraphs
 from opslang.lint.model import Finding, Operation, Origin, Verdict
 from opslang.lint.reading import Document, Notice, read_file, read_text
 from opslang.lint.reading.project import Project, load
@@ -28,13 +26,13 @@ _SAID = {
 }
 
 
-def lint(path: str) -> Report:
-    """All that is to be said of the draft in a file.  Never raises: what goes wrong is the report's `failure`."""
+def lint(path: str, explain: bool = False) -> Report:
+    """All that is to be said of the draft in a file, with derivations if they are wanted.  Never raises: what goes wrong is the report's `failure`."""
     try:
         file = load(path)
         if "\0" in file.text:
             return Report(path, failure=("binary-file", "the file is binary: it holds a NUL byte"))
-        report = report_on(read_file(file), path)
+        report = report_on(read_file(file), path, explain)
         root = Project(file).root() if path.endswith((".tex", ".ltx")) else None
         return report._replace(part_of=root or "")
     except FileNotFoundError:
@@ -49,10 +47,10 @@ def lint(path: str) -> Report:
         return Report(path, failure=("internal-fault", f"opslang itself failed on this file: {what}"))
 
 
-def lint_text(text: str | bytes, name: str = "-") -> Report:
+def lint_text(text: str | bytes, name: str = "-", explain: bool = False) -> Report:
     """All that is to be said of a draft given as text; `name` says by its ending what it is.  Never raises."""
     try:
-        return report_on(read_text(text, name), name)
+        return report_on(read_text(text, name), name, explain)
     except (RecursionError, MemoryError):
         return Report(name, failure=("too-large", "the text is nested too deeply or too large for the memory"))
     except Exception as fault:
@@ -60,10 +58,11 @@ def lint_text(text: str | bytes, name: str = "-") -> Report:
         return Report(name, failure=("internal-fault", f"opslang itself failed on this text: {what}"))
 
 
-def report_on(document: Document, name: str) -> Report:
+def report_on(document: Document, name: str, explain: bool = False) -> Report:
     """The report on a draft that has been read."""
-    units, allowed, trouble = units_of(document)
-    findings = list(trouble)
+    learnt = learnt_from(document, explain)
+    units, allowed = learnt.units, learnt.allowed
+    findings = list(learnt.trouble)
     formulas: list[Row] = []
     checked = unchecked = 0
     for unit in units:
@@ -75,7 +74,7 @@ def report_on(document: Document, name: str) -> Report:
         checked += known
         unchecked += not known
         formulas.append(_covered(document, unit, verdict))
-    findings += _compared(Draft(document, tuple(units), tuple(paragraphs(document.pieces))))
+    findings += _compared(Draft(document, units, learnt.paragraphs))
     rows = [_row(document, finding) for finding in findings if not allowed.allows(finding)]
     return Report(
         name,
@@ -195,13 +194,3 @@ def _notice(document: Document, notice: Notice) -> Row:
 
 def _raw(document: Document, at: Origin) -> str:
     return document.files[at.file].text[at.start : at.end]
-
-
-def names(rows: Sequence[Row]) -> list[str]:
-    """The names of some findings, in order."""
-    return [row.name for row in rows]
-
-
-def same_file(first: str, second: str) -> bool:
-    """Whether two paths lead to one file."""
-    return os.path.realpath(first) == os.path.realpath(second)

@@ -8,11 +8,11 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator, Mapping
 
-from attrs import define, evolve, field
+from attrs import define, evolve, field, frozen
 
 from opslang.lint.context.bundles import Bundles
 from opslang.lint.context.directives import Allowed, allowed_in, directives_of
-from opslang.lint.context.facts import Ledger, Saying, Spot
+from opslang.lint.context.facts import Ledger, Spot
 from opslang.lint.context.names import class_names, names_of
 from opslang.lint.context.sayings import degree_written, from_formula, from_words, in_its_ring, numbers_said
 from opslang.lint.context.script import Scripts, rule_of
@@ -29,7 +29,6 @@ from opslang.lint.model import (
     Finding,
     Known,
     Operation,
-    Origin,
     Rule,
     Statement,
     Sum,
@@ -48,20 +47,32 @@ _DECLARES = re.compile(r"H\^|\||\\l?vert|deg|dim")
 INDEX = Polynomial.symbol("index")
 
 
-def units_of(document: Document) -> tuple[list[Unit], Allowed, list[Finding]]:
-    """The statements with what is known, what the author allows, and findings on the author's own declarations."""
+@frozen
+class Learnt:
+    """The statements with what is known, what the author allows, findings on the author's own comments, the paragraphs."""
+
+    units: tuple[Unit, ...]
+    allowed: Allowed
+    trouble: tuple[Finding, ...]
+    paragraphs: tuple[Paragraph, ...]
+
+
+def learnt_from(document: Document, explain: bool = False) -> Learnt:
+    """What a draft says; `explain` says whether derivations are wanted."""
     said, trouble = directives_of(document)
-    builder = _Builder(document, Scripts(said))
+    builder = _Builder(document, Scripts(said), explain)
     builder.gather()
     allowed = allowed_in(document, said)
-    units = [unit for unit in builder.units() if not allowed.skips(unit.statement.at)]
-    return units, allowed, trouble + builder.scripts.trouble
+    units = tuple([unit for unit in builder.units() if not allowed.skips(unit.statement.at)])
+    trouble += builder.scripts.trouble
+    return Learnt(units, allowed, tuple(trouble), tuple([paragraph for paragraph, _ in builder.pages]))
 
 
 @define
 class _Builder:
     document: Document
     scripts: Scripts
+    explain: bool = False
     ledger: Ledger = field(factory=Ledger)
     settings: Settings = field(factory=Settings)
     bundles: Bundles = field(factory=Bundles)
@@ -84,7 +95,10 @@ class _Builder:
 
     def gather(self) -> None:
         """Take note of all that is said."""
-        for number, paragraph in enumerate(paragraphs(self.document.pieces)):
+        found = list(paragraphs(self.document.pieces))
+        if not any(self._worth(plain) for paragraph in found for plain in paragraph.plains):
+            return
+        for number, paragraph in enumerate(found):
             first = paragraph.where
             environment = first.environments[-1].number if first.environments else 0
             section = first.section_number
@@ -228,6 +242,7 @@ class _Builder:
             conventions=self._manner(paragraph, spot, prime) | dict(context.conventions),
             ranges=tuple(ranges),
             rules=rules,
+            explain=self.explain,
             integers=self.numbers.get(spot.paragraph, frozenset()) | no_operations(paragraph, formula, spot.offset),
             sentences=paragraph.shown(start, end),
             tail=paragraph.shown(spot.offset + 1, paragraph.sentences[paragraph.sentence_at(spot.offset)][1]),
@@ -410,4 +425,4 @@ def operations_in(statement: Statement) -> list[Operation]:
     return [node for node in nodes_in(statement) if isinstance(node, Operation)]
 
 
-__all__ = ["Origin", "Rule", "Saying", "units_of"]
+__all__ = ["Learnt", "learnt_from"]

@@ -137,9 +137,7 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
         said = group_said(paragraph.plain(group[1]))
         if said is not None:
             spot = Spot(section, at, paragraph.sentence_at(group.start()), group.start())
-            settings.spaces.append(
-                SpaceAt(spot, SpaceSaid("group", paragraph.plain(group[1]), "", said))
-            )
+            settings.spaces.append(SpaceAt(spot, SpaceSaid("group", paragraph.plain(group[1]), "", said)))
     found += _primes_in_words(settings, paragraph, at, section)
     settings.primes += sorted(found, key=lambda said: said.spot.offset)
 

@@ -295,7 +295,10 @@ def _read(outcome: Outcome, session: Desk, statement: sf.RelationStatement, spec
     if why and (outcome.degree or 0) <= LONGEST:
         steps = _derivation(session, statement)
     sort = outcome.sort or ""
-    return Decision(answer, outcome.message or "", "", left, right, name, special, sort, outcome.degree, steps)
+    return Decision(
+        answer, outcome.message or "", "", left, right, name, special,
+        sort=sort, degree=outcome.degree, derivation=steps,
+    )  # fmt: skip
 
 
 def _derivation(session: Desk, statement: sf.RelationStatement) -> tuple[str, ...]:

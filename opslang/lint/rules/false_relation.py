@@ -43,8 +43,9 @@ def check(statement: Statement, known: Known) -> Verdict | None:
         return Verdict("true", reason=decision.reason)
     if not decision.certainly_false:
         return Verdict("not-checked", (), decision.special or decision.reason, decision.needed)
-    again = decide(left, right, known, why=True)
-    return found(_finding(statement, again))
+    if known.explain:
+        decision = decide(left, right, known, why=True)
+    return found(_finding(statement, decision))
 
 
 def _sides(statement: Statement, known: Known) -> tuple[Sum, Sum] | None:
