@@ -21,9 +21,9 @@ from opslang.meaning.bundles import STEP, Bundle
 from opslang.meaning.canonical import Arithmetic, element_value, pieces
 from opslang.meaning.indices import number
 from opslang.meaning.lower import Lowering
-from opslang.meaning.pulling import arithmetic, belongs, in_space
+from opslang.meaning.pulling import arithmetic, belongs, total_class
 from opslang.meaning.spaces import space_value
-from opslang.meaning.value import Value, as_sort, polynomial_value
+from opslang.meaning.value import Value, polynomial_value
 from opslang.render.text import element_text
 from opslang.report.diagnostic import Refusal, error, warning
 from opslang.spaces import characteristic
@@ -159,7 +159,7 @@ def _given(statement: sf.BundleStatement, rank: int | None, space: SpaceValue | 
     step, values = STEP[letter], total
     if euler is not None:
         if letter != "p" or rank is None or rank % 2:
-            message = "an Euler class is given beside p, for a bundle of an even rank: of rank 4 over X with p = …, e = …"
+            message = "an Euler class is given beside p, for an even rank: of rank 4 over X with p = …, e = …"
             raise _refusal(message, statement.span)
         if set(pieces(euler)) - {rank}:
             raise _refusal(f"the Euler class has degree {rank}", statement.span)
@@ -181,8 +181,7 @@ def _letter(left: sf.Sum, prime: int) -> str:
 
 
 def _element(right: sf.Sum, space: SpaceValue | None, lowering: Lowering) -> ClassElement:
-    inner = lowering if space is None else in_space(lowering, space)
-    value = as_sort(inner.sum(right, mixed_degrees=True), "class", right.span)
+    value = total_class(lowering, space, right)
     if value.sort != "class":
         raise _refusal("a characteristic class is a class, and this is an operation", right.span, name="sorts-differ")
     if space is not None:

@@ -23,7 +23,7 @@ from opslang.ir.tree import Class, ClassElement, Generator
 from opslang.meaning.canonical import Arithmetic, element_value, pieces
 from opslang.meaning.lower import Lowering
 from opslang.meaning.maps import MapValue, pulled_back
-from opslang.meaning.pulling import arithmetic, belongs, in_space, map_named
+from opslang.meaning.pulling import arithmetic, belongs, in_space, map_named, total_class
 from opslang.meaning.scope import spelled
 from opslang.meaning.spaces import space_value
 from opslang.meaning.value import NONE, Value, as_sort, cls, polynomial_value
@@ -151,9 +151,10 @@ def _read(
     images: _Images,
 ) -> None:
     a = arithmetic(lowering)
-    right = as_sort(
-        in_space(lowering, source).sum(assignment.right, mixed_degrees=True), "class", assignment.right.span
-    )
+    if _total_of(assignment.left, there) is None:
+        right = as_sort(in_space(lowering, source).sum(assignment.right), "class", assignment.right.span)
+    else:
+        right = total_class(lowering, source, assignment.right)
     if right.sort != "class":
         raise refusal("sorts-differ", "a class goes to a class, and this is an operation", assignment.right.span)
     belongs(right, source, a.prime, "the source of the map", assignment.right.span)

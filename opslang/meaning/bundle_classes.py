@@ -167,7 +167,7 @@ def _pulled(lowering: Lowering, factor: sf.PullBack) -> Bundle:
     euler = None if below.euler is None else back(below.euler)
     name = lowering.quote(factor.span)
     return Bundle(
-        name, below.letter, below.rank, f.source, a, below.last, lambda i: back(below.piece(i)), euler, below.finder
+        name, below.letter, below.rank, f.source, a, below.last, lambda i: back(below.piece(i)), euler, below.quotient
     )
 
 

@@ -20,7 +20,7 @@ from opslang.spaces.space import SpaceValue
 
 STEP = {"w": 1, "c": 2, "p": 4}
 """The degree of the first class."""
-MOST_CLASSES = 80
+MOST_CLASSES = 48
 """So many classes of an inverse bundle are looked at to find the end of its total class."""
 
 
@@ -30,13 +30,12 @@ class NoBundle(Exception):
 
 @define(eq=False)
 class Bundle:
-    """A bundle: its name, the letter of its classes, its rank over the reals (w, p) or the complex numbers (c), None
-    where unknown.
+    """A bundle: its name, the letter of its classes, its rank (over the complex numbers where they are c_i; None: not
+    known).
 
     `space` is its base, None where it lives on declared classes; `last` is the number of the last class that may be
-    other than 0, None where
-    there may be no end to them, in which case `finder` looks for one; `euler` is its Euler class at odd primes, where
-    it is known.
+    other than 0, None where there may be no end to them; then `fraction` gives the last numbers of two total classes of
+    which its own is the quotient.  `euler` is its Euler class at odd primes, where it is known.
     """
 
     name: str
@@ -47,7 +46,7 @@ class Bundle:
     last: int | None
     _piece: Callable[[int], ClassElement]
     euler: ClassElement | None = None
-    finder: Callable[[], int | None] | None = None
+    fraction: tuple[int, int] | None = None
     _known: dict[int, ClassElement] = field(factory=dict)
 
     @property
@@ -55,9 +54,27 @@ class Bundle:
         """Whether it is a complex bundle."""
         return self.letter == "c"
 
+    @property
+    def quotient(self) -> tuple[int, int] | None:
+        """The last numbers of two total classes of which the bundle's is the quotient, where they are known."""
+        return self.fraction if self.last is None else (self.last, 0)
+
     def end(self) -> int | None:
-        """The number of the last class that may be other than 0, where one is seen."""
-        return self.finder() if self.last is None and self.finder is not None else self.last
+        """The number of the last class that may be other than 0, where one is seen.
+
+        Beyond the numerator the classes satisfy a recursion of the order of the denominator: when so many in a row
+        are 0,
+        all that follow are.
+        """
+        if self.quotient is None:
+            return None
+        above, below = self.quotient
+        zeros = 0
+        for k in range(above + 1, above + MOST_CLASSES):
+            if zeros >= below:
+                return k - 1 - zeros
+            zeros = 0 if self.piece(k).terms else zeros + 1
+        return None
 
     def piece(self, i: int) -> ClassElement:
         """The class of that number."""
@@ -81,8 +98,8 @@ def trivial(rank: int, letter: str, arithmetic: Arithmetic) -> Bundle:
     return Bundle(str(rank), letter, rank, None, arithmetic, 0, lambda i: arithmetic.zero())
 
 
-def _times(count: int, end: int | None) -> int | None:
-    return None if end is None else count * end
+def _doubled(quotient: tuple[int, int] | None) -> tuple[int, int] | None:
+    return None if quotient is None else (2 * quotient[0], 2 * quotient[1])
 
 
 def as_real(bundle: Bundle) -> Bundle:
@@ -100,12 +117,12 @@ def as_real(bundle: Bundle) -> Bundle:
         def halved(i: int) -> ClassElement:
             return a.zero() if i % 2 else bundle.piece(i // 2)
 
-        return Bundle(bundle.name, "w", rank, bundle.space, a, double, halved, None, lambda: _times(2, bundle.end()))
+        return Bundle(bundle.name, "w", rank, bundle.space, a, double, halved, None, _doubled(bundle.quotient))
 
     def pontryagin(i: int) -> ClassElement:
         return a.combined([((-1) ** (i + j), bundle.piece(j), bundle.piece(2 * i - j)) for j in range(2 * i + 1)])
 
-    return Bundle(bundle.name, "p", rank, bundle.space, a, last, pontryagin, euler, bundle.end)
+    return Bundle(bundle.name, "p", rank, bundle.space, a, last, pontryagin, euler, bundle.quotient)
 
 
 def complexified(bundle: Bundle) -> Bundle:
@@ -114,12 +131,16 @@ def complexified(bundle: Bundle) -> Bundle:
         raise NoBundle("the complexification is that of a real bundle")
     a, last = bundle.arithmetic, bundle.last
     if a.prime == 2:
-        return Bundle(bundle.name, "c", bundle.rank, bundle.space, a, last, lambda i: a.power(bundle.piece(i), 2))
+        square = bundle.quotient
+        return Bundle(
+            bundle.name, "c", bundle.rank, bundle.space, a, last, lambda i: a.power(bundle.piece(i), 2), None, square
+        )
 
     def chern(i: int) -> ClassElement:
         return a.zero() if i % 2 else a.combined([((-1) ** (i // 2), bundle.piece(i // 2), a.one())])
 
-    return Bundle(bundle.name, "c", bundle.rank, bundle.space, a, None if last is None else 2 * last, chern)
+    twice = None if last is None else 2 * last
+    return Bundle(bundle.name, "c", bundle.rank, bundle.space, a, twice, chern, None, _doubled(bundle.quotient))
 
 
 def _alike(left: Bundle, right: Bundle) -> tuple[Bundle, Bundle]:
@@ -162,11 +183,9 @@ def whitney(left: Bundle, right: Bundle, name: str) -> Bundle:
 
     euler = a.product(left.euler, right.euler) if left.euler is not None and right.euler is not None else None
 
-    def finder() -> int | None:
-        first, second = left.end(), right.end()
-        return None if first is None or second is None else first + second
-
-    return Bundle(name, left.letter, rank, space, a, last, piece, euler, finder)
+    one, other = left.quotient, right.quotient
+    fraction = None if one is None or other is None else (one[0] + other[0], one[1] + other[1])
+    return Bundle(name, left.letter, rank, space, a, last, piece, euler, fraction)
 
 
 def inverse(bundle: Bundle, name: str) -> Bundle:
@@ -180,19 +199,10 @@ def inverse(bundle: Bundle, name: str) -> Bundle:
             found.piece(i)  # smaller numbers first: no deep recursion
         return a.combined([(-1, bundle.piece(i), found.piece(k - i)) for i in range(1, high + 1)])
 
-    def finder() -> int | None:
-        """The recursion has the order of the bundle's last class: when so many classes in a row are 0, all are."""
-        order = bundle.end()
-        if order is None:
-            return None
-        zeros = 0
-        for i in range(1, MOST_CLASSES):
-            zeros = 0 if found.piece(i).terms else zeros + 1
-            if zeros >= order:
-                return i - zeros
-        return None
-
-    found = Bundle(name, bundle.letter, rank, bundle.space, a, 0 if bundle.last == 0 else None, piece, None, finder)
+    one = bundle.quotient
+    fraction = None if one is None else (one[1], one[0])
+    last = 0 if bundle.last == 0 else None
+    found = Bundle(name, bundle.letter, rank, bundle.space, a, last, piece, None, fraction)
     return found
 
 
@@ -210,7 +220,7 @@ def dual(bundle: Bundle, name: str) -> Bundle:
         bundle.last,
         lambda i: a.combined([((-1) ** i, bundle.piece(i), a.one())]),
         None,
-        bundle.end,
+        bundle.quotient,
     )
 
 

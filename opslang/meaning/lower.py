@@ -12,6 +12,7 @@ from attrs import define, field
 
 from opslang.ground.source import Span
 from opslang.ir import tree as ir
+from opslang.ir.tree import Class
 from opslang.meaning.characteristic import Characteristic
 from opslang.meaning.indices import bounded, number
 from opslang.meaning.letters import Marker, letter
@@ -31,7 +32,7 @@ from opslang.meaning.value import (
 )
 from opslang.report.diagnostic import Diagnostic, Refusal, error, note, warning
 from opslang.spaces.family import NotKnown
-from opslang.spaces.space import Localised, SpaceValue
+from opslang.spaces.space import Localised, SpaceValue, localise
 from opslang.syntax import surface as sf
 
 Pending = list[tuple["Value | Marker", Span]]
@@ -355,11 +356,11 @@ class Lowering:
 
     def _fundamental(self, factor: sf.Fundamental) -> Value:
         degree = number(factor.degree, factor.span)
-        self._choose(factor.span)
         try:
             of = self.scope.fundamental(degree, factor.primes)
+            self._choose(factor.span)
         except KeyError:
-            self._no_fundamental(factor, degree)
+            of = self._fundamental_of_home(factor, degree)
         if of is None:
             self.diagnostics.append(
                 note(
@@ -371,7 +372,12 @@ class Lowering:
             return cls(ir.ClassSum((), degree, degree, factor.span), NONE)
         return cls(ir.Fundamental(of, degree, degree, factor.span), frozenset((of,)))
 
-    def _no_fundamental(self, factor: sf.Fundamental, degree: int) -> NoReturn:
+    def _fundamental_of_home(self, factor: sf.Fundamental, degree: int) -> Class:
+        """A fundamental class of the space that a transgression or a pull-back leads to.  Refusal where there is
+        none."""
+        for of in () if self.home is None else localise(self.home, self.scope.prime).classes:
+            if (of.degree, of.primes) == (degree, factor.primes):
+                return of
         name = spelled(("iota", degree, factor.primes))
         here = self.scope.localised()
         if here is None or self.scope.space is None:

@@ -80,6 +80,14 @@ def in_space(lowering: Lowering, space: SpaceValue) -> Lowering:
     return evolve(lowering, scope=evolve(lowering.scope, space=space), home=None, chosen=False)
 
 
+def total_class(lowering: Lowering, space: SpaceValue | None, body: sf.Sum) -> Value:
+    """A class of a space whose parts may have different degrees, as total classes do."""
+    inner = lowering if space is None else in_space(lowering, space)
+    value = as_sort(inner.sum(body, mixed_degrees=True), "class", body.span)
+    lowering.diagnostics[:] = [d for d in lowering.diagnostics if d.name != "inhomogeneous-sum"]
+    return value
+
+
 def belongs(value: Value, space: SpaceValue, prime: int, what: str, span: Span) -> None:
     """Refusal where an expression has a class that is not one of the space."""
     from opslang.spaces.space import localise
