@@ -2,6 +2,9 @@
 
 Spans are offsets into the text of the statement's chunk and do not take part in comparisons,
 so two spellings of one expression are equal.
+
+Nodes are not changed once they are built.  All but indices (which are keys) leave that to the reader's word: building
+them is most of the work of reading a script, and making 37 frozen classes a good part of a cold start.
 """
 
 from __future__ import annotations
@@ -9,7 +12,7 @@ from __future__ import annotations
 from typing import Union
 
 import attrs
-from attrs import frozen
+from attrs import define, frozen
 
 from opslang.ground.source import Span
 
@@ -39,7 +42,7 @@ Index = Union[int, IndexExpression]
 # --- factors ------------------------------------------------------------------------------------
 
 
-@frozen
+@define(repr=False)
 class Operation:
     """`Sq^4`, `P^3`, `Sq^{4,2,1}` (several indices), `Sq` or `P` alone (no indices: the total operation)."""
 
@@ -48,7 +51,7 @@ class Operation:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Bockstein:
     """`beta` (order None) or `beta_k`."""
 
@@ -56,7 +59,7 @@ class Bockstein:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Milnor:
     """`Q_k`."""
 
@@ -64,7 +67,7 @@ class Milnor:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Fundamental:
     """`iota_n`, with its number of primes."""
 
@@ -73,7 +76,7 @@ class Fundamental:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Name:
     """A name: letter or spelled Greek letter, optional index, number of primes.  A class or an abbreviation."""
 
@@ -83,7 +86,7 @@ class Name:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Number:
     """A non-negative integer written as a factor."""
 
@@ -91,7 +94,7 @@ class Number:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Group:
     """A bracketed expression."""
 
@@ -99,7 +102,7 @@ class Group:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Conjugate:
     """`chi(…)`."""
 
@@ -107,7 +110,7 @@ class Conjugate:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Construction:
     """`transgression(…)`, `suspension(…)` of a class, `dual(…)` of a bundle."""
 
@@ -116,7 +119,7 @@ class Construction:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class PullBack:
     """`f^*(…)` or `f^* x`: the pull-back along a named map."""
 
@@ -125,7 +128,7 @@ class PullBack:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Power:
     """A factor to a power."""
 
@@ -137,7 +140,7 @@ class Power:
 Factor = Union[Operation, Bockstein, Milnor, Fundamental, Name, Number, Group, Conjugate, Construction, PullBack, Power]
 
 
-@frozen
+@define(repr=False)
 class Product:
     """A flat list of factors.  `glues[i]` is how factor i is joined to the one before it:
     "" (side by side), "*" (also a centred dot), "cup", "cross" (⊗) or "compose" (∘); `glues[0]` is ""."""
@@ -147,7 +150,7 @@ class Product:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Sum:
     """A flat sum: pairs (sign +1 or -1, product)."""
 
@@ -158,7 +161,7 @@ class Sum:
 # --- groups and spaces --------------------------------------------------------------------------
 
 
-@frozen
+@define(repr=False)
 class Summand:
     """`Z` (order 0), `Z/m` (order m), with how many copies; `F_p` is a field (field=True, order p)."""
 
@@ -168,7 +171,7 @@ class Summand:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Coefficients:
     """A finitely generated abelian group, or a field F_p, as written."""
 
@@ -176,7 +179,7 @@ class Coefficients:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class EilenbergMacLane:
     """`K(G, n)`."""
 
@@ -185,7 +188,7 @@ class EilenbergMacLane:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class NamedSpace:
     """Any other space word, `X`, `BO(3)`, `RP^5(a)`, `thom(BO(3))`: name, the power after `^`, and what stands
     in its brackets: `Number`s, `Name`s (a lone letter: of a class, or of a space), spaces."""
@@ -196,7 +199,7 @@ class NamedSpace:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class SpaceProduct:
     """Spaces joined by `x`, `×` or `\\times`; two factors or more."""
 
@@ -207,7 +210,7 @@ class SpaceProduct:
 Space = Union[EilenbergMacLane, NamedSpace, SpaceProduct]
 
 
-@frozen
+@define(repr=False)
 class PresentedClass:
     """`u:2`: a generator of a presented ring, with its degree."""
 
@@ -216,7 +219,7 @@ class PresentedClass:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Presentation:
     """`F_2[u:2, v:3] / (u^2, v^2) where Sq^1 u = v to 40`: the p of F_p, generators, relations, operations on
     generators (each the left side and its value), and the degree up to which to check it (None: not said)."""
@@ -232,7 +235,7 @@ class Presentation:
 # --- statements ---------------------------------------------------------------------------------
 
 
-@frozen
+@define(repr=False)
 class PrimeStatement:
     """`prime 3`."""
 
@@ -240,7 +243,7 @@ class PrimeStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class SpaceStatement:
     """`space X = …`."""
 
@@ -249,7 +252,7 @@ class SpaceStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class OnStatement:
     """`on X`."""
 
@@ -257,7 +260,7 @@ class OnStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class DeclareStatement:
     """`let x, y in H^2(X; Z/4)`: label and coefficients may be None."""
 
@@ -268,7 +271,7 @@ class DeclareStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class AbbreviateStatement:
     """`let u = Sq^2 x + x^2`."""
 
@@ -277,7 +280,7 @@ class AbbreviateStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class ExpressionStatement:
     """A bare expression."""
 
@@ -285,7 +288,7 @@ class ExpressionStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class RelationStatement:
     """`a = b`, or a chain `a = b = c`; two sides or more."""
 
@@ -293,7 +296,7 @@ class RelationStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class WhyStatement:
     """`why …` of an expression or a relation."""
 
@@ -301,7 +304,7 @@ class WhyStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class BasisStatement:
     """`basis H^9(K(Z/2, 3))`; no space: the current one."""
 
@@ -310,7 +313,7 @@ class BasisStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class SeriesStatement:
     """`series K(Z/4, 3) to 20`; no space: the current one."""
 
@@ -319,7 +322,7 @@ class SeriesStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class Assignment:
     """`x -> a^2`, where a map takes a class of its target; `w = 1 + a`, the total class of a bundle."""
 
@@ -328,7 +331,7 @@ class Assignment:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class MapStatement:
     """`map f : X -> Y with …`; `how` is "with", "diagonal", "standard" or "projection" (on the factor `number`)."""
 
@@ -341,7 +344,7 @@ class MapStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class ComposeStatement:
     """`map h = g f`: first f, then g."""
 
@@ -350,7 +353,7 @@ class ComposeStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class BundleStatement:
     """`bundle E of rank 3 over X with w = 1 + a`: rank and space may be None; with no classes, the universal bundle."""
 
@@ -361,7 +364,7 @@ class BundleStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class BundleSumStatement:
     """`bundle D = E + F`: a name for a bundle that is made from others."""
 
@@ -370,7 +373,7 @@ class BundleSumStatement:
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
-@frozen
+@define(repr=False)
 class CompareStatement:
     """`compare X, Y to 12`."""
 
