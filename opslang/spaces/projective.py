@@ -86,7 +86,8 @@ class Lens(Family):
 
     @property
     def text(self) -> str:
-        return f"lens({self.modulus})"
+        named = "" if self.letters == ("x", "y") else ", " + ", ".join(self.letters)
+        return f"lens({self.modulus}{named})"
 
     def _order(self, prime: int) -> int:
         return p_part(self.modulus, prime)
