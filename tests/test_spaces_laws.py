@@ -149,7 +149,7 @@ def test_results_have_the_same_image_in_roots(p: int) -> None:
                 value = value_of_element(derivation.result, ring, where)
                 assert value == value_of_element(derivation.start, ring, where), f"seed {SEED}: {tree} at {p}"
                 shown += bool(value)
-    assert shown > len(SEEN[p])
+    assert shown * 3 > len(SEEN[p]), f"seed {SEED}: nearly everything went to 0"
 
 
 # --- stand-ins for the witness --------------------------------------------------------------------
