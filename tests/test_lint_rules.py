@@ -32,7 +32,9 @@ def test_bad_lines_are_found(rule: LintRule, line: str) -> None:
     assert {rule.name, *rule.also} & set(names_found(line))
 
 
-@pytest.mark.parametrize(("rule", "line"), [(r, g) for r in RULES for g in r.good], ids=lambda v: getattr(v, "name", ""))
+@pytest.mark.parametrize(
+    ("rule", "line"), [(r, g) for r in RULES for g in r.good], ids=lambda v: getattr(v, "name", "")
+)
 def test_nothing_is_said_of_good_lines(rule: LintRule, line: str) -> None:
     assert names_found(line) == []
 

@@ -122,7 +122,7 @@ def evaluate(
 @click.option("--width", type=click.IntRange(min=20), help="Columns of text; the terminal's, or 80.")
 @click.option("--colour", "--color", type=click.Choice(COLOURS), default="auto", help="Colour for findings.")
 @click.pass_context
-def lint(context: click.Context, paths: tuple[str, ...], explain: str | None, **asked: Any) -> int:
+def lint(context: click.Context, /, paths: tuple[str, ...], explain: str | None, **asked: Any) -> int:
     """Check the formulas of drafts: TeX, Markdown, MyST, notebooks, and folders of them.
 
     `-` is standard input.  Nothing is changed without --mend.  Exit status: 0 nothing found; 1 findings; 2 a file

@@ -1,8 +1,7 @@
 """`opslang lint`: which drafts, by how many processes, written how.  Knows no formula.
 
-Reports are written in the order of the files, whoever worked on them.  A file that is part of another one on the list is
-not written twice: the main file's report holds it.
-"""
+Reports are written in the order of the files, whoever worked on them.  A file that is part of another one on the list
+is not written twice: the main file's report holds it."""
 
 from __future__ import annotations
 

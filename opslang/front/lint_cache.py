@@ -1,9 +1,8 @@
 """Results kept from earlier runs.  Knows digests and files; knows nothing of what a result says.
 
-A result is kept under the digest of the draft's bytes, its name, and the program itself, together with the digests of all
-files that were read with it; it is used only while all of them are as they were.  The folder may be deleted at
-any time; one that cannot be read or written is no error.
-"""
+A result is kept under the digest of the draft's bytes, its name, and the program itself, together with the digests of
+all files that were read with it; it is used only while all of them are as they were.  The folder may be deleted at
+any time; one that cannot be read or written is no error."""
 
 from __future__ import annotations
 

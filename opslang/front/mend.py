@@ -1,9 +1,8 @@
 """Puts certain mends into the author's files.  Knows bytes and places; knows no mathematics.
 
-A file is written as a whole or not at all, with its encoding, its byte order mark and its line ends; what was not mended keeps every byte.
-Before it is written the mended text is linted: a mend that does not take its finding away, or brings a new one, is
-not written.
-"""
+A file is written as a whole or not at all, with its encoding, its byte order mark and its line ends; what was not
+mended keeps every byte. Before it is written the mended text is linted: a mend that does not take its finding away,
+or brings a new one, is not written."""
 
 from __future__ import annotations
 
@@ -76,7 +75,9 @@ def _better(before: str, after: str, path: str) -> bool:
 
 
 def _spliced(file: File, before: bytes, rows: list[Row]) -> bytes | None:
-    """The bytes of the mended file: those of the old one but for the mended stretches; None where that cannot be done."""
+    """The bytes of the mended file: those of the old one but for the mended stretches; None where that cannot be
+    done.
+    """
     encoding = file.encoding
     head = b""
     if encoding == "utf-8" and file.mark:

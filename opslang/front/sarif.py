@@ -61,7 +61,11 @@ class Sarif:
         if report.failure is not None:
             name, message = report.failure
             place = {"physicalLocation": {"artifactLocation": {"uri": uri(report.name)}}}
-            trouble = {"level": "error", "message": {"text": f"{name}: {message}"}, "locations": [place]}
+            trouble: dict[str, object] = {
+                "level": "error",
+                "message": {"text": f"{name}: {message}"},
+                "locations": [place],
+            }
             self._troubles.append(trouble)
         for row in rows:
             yield ("\n" if self._first else ",\n") + json.dumps(self._result(row), ensure_ascii=True)

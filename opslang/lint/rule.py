@@ -42,12 +42,12 @@ DraftCheck = Callable[[Draft], Iterable[Finding]]
 
 @frozen
 class LintRule:
-    """A rule: its name (reads well after "allow"), what it is in a line, why it is there, drafts it speaks in and is silent in.
+    """A rule: its name (reads well after "allow"), what it is in a line, why it is there, drafts it speaks in and is
+    silent in.
 
     `severity` is that of most of its findings.  Rules are asked in the order of `rank` (then name): once one of them
     has found an error in a statement, what later ones find in the same statement is not shown.  `also` are further
-    names that its findings may bear.
-    """
+    names that its findings may bear."""
 
     name: str
     title: str
@@ -67,7 +67,7 @@ def register() -> tuple[LintRule, ...]:
     """All rules, in the order in which they are asked."""
     folder = join(dirname(__file__), "rules")
     names = sorted(name[:-3] for name in listdir(folder) if name.endswith(".py") and not name.startswith("_"))
-    rules = [rule for rule in (import_module(f"opslang.lint.rules.{name}").RULE for name in names)]
+    rules: list[LintRule] = [import_module(f"opslang.lint.rules.{name}").RULE for name in names]
     return tuple(sorted(rules, key=lambda rule: (rule.rank, rule.name)))
 
 

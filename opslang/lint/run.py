@@ -7,6 +7,9 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from hashlib import sha256
+from typing import Any
+
+from attrs import evolve
 
 from opslang.lint.context.build import learnt_from
 from opslang.lint.context.names import nodes_in
@@ -27,7 +30,9 @@ _SAID = {
 
 
 def lint(path: str, explain: bool = False) -> Report:
-    """All that is to be said of the draft in a file, with derivations if they are wanted.  Never raises: what goes wrong is the report's `failure`."""
+    """All that is to be said of the draft in a file, with derivations if they are wanted.  Never raises: what goes
+    wrong is the report's `failure`.
+    """
     try:
         file = load(path)
         if "\0" in file.text:
@@ -69,7 +74,7 @@ def report_on(document: Document, name: str, explain: bool = False) -> Report:
         verdict = judged(unit)
         if verdict is None or verdict.standing == "not-about-operations":
             continue
-        findings += verdict.findings
+        findings += [_named(document, unit, finding) for finding in verdict.findings]
         known = verdict.standing != "not-checked"
         checked += known
         unchecked += not known
@@ -143,7 +148,7 @@ def _order(row: Row) -> tuple[str, int, int, int, str, str]:
 # --- rows ---------------------------------------------------------------------------------------
 
 
-def _placed(document: Document, at: Origin, **rest: object) -> Row:
+def _placed(document: Document, at: Origin, **rest: Any) -> Row:
     file = document.files[at.file]
     place = file.place(at.start, at.end)
     row = Row(
@@ -151,6 +156,13 @@ def _placed(document: Document, at: Origin, **rest: object) -> Row:
         source=file.source.line_at(place.line), start=at.start, end=at.end, path=file.path,
     )  # fmt: skip
     return row._replace(**rest)
+
+
+def _named(document: Document, unit: Unit, finding: Finding) -> Finding:
+    """A finding between two signs names the whole formula."""
+    if finding.formula or finding.at.start < finding.at.end:
+        return finding
+    return evolve(finding, formula=_raw(document, unit.statement.at))
 
 
 def _row(document: Document, finding: Finding) -> Row:

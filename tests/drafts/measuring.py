@@ -1,8 +1,8 @@
-"""What the linter makes of the corpus: understood, checked, found, false alarms.  Knows marks and rows; judges no formula.
+"""What the linter makes of the corpus: understood, checked, found, false alarms.  Knows marks and rows; judges no
+formula.
 
-A mark is understood where a statement in it was read and was found to be about operations; checked where a verdict was reached;
-"not checked" counts as missed.  A finding that touches no formula marked false is a false alarm.
-"""
+A mark is understood where a statement in it was read and was found to be about operations; checked where a verdict
+was reached; "not checked" counts as missed.  A finding that touches no formula marked false is a false alarm."""
 
 from __future__ import annotations
 
@@ -15,7 +15,6 @@ from pathlib import Path
 
 from drafts.corpus import Draft, Mark, drafts
 from drafts.slips import Slip
-
 from opslang.lint.result import Report, Row
 from opslang.lint.run import FAULT, lint
 

@@ -49,7 +49,9 @@ INDEX = Polynomial.symbol("index")
 
 @frozen
 class Learnt:
-    """The statements with what is known, what the author allows, findings on the author's own comments, the paragraphs."""
+    """The statements with what is known, what the author allows, findings on the author's own comments, the
+    paragraphs.
+    """
 
     units: tuple[Unit, ...]
     allowed: Allowed

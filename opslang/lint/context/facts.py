@@ -1,9 +1,8 @@
 """What is said of each class, where, and which of several sayings holds at a place.
 
 A saying in the same sentence goes before one in the same paragraph, that before one in the same section, that before
-one in an earlier section.  What was said only of a sentence ("if |x| = 1") holds in its paragraph alone.  Where two sayings of
-other sections disagree, nothing is known.
-"""
+one in an earlier section.  What was said only of a sentence ("if |x| = 1") holds in its paragraph alone.  Where two
+sayings of other sections disagree, nothing is known."""
 
 from __future__ import annotations
 

@@ -28,19 +28,24 @@ NUMBER = rf"(?:{F}|{_WORD}\b)"
 NUMBERS = rf"{NUMBER}(?:{_AND}{NUMBER})*"
 _WORDS = "zero one two three four five six seven eight nine ten".split()
 _KIND = r"(?:cohomology |integral |mod[- ]?\S+ |fixed |arbitrary |characteristic |homogeneous |nonzero |non-zero )*"
-_NOUN = rf"(?:(?:an?|the|any|some|every|two|three|both|our|its) )?{_KIND}(?:class|classes|element|elements|generator|generators|background|backgrounds)"
+_NOUN = (
+    rf"(?:(?:an?|the|any|some|every|two|three|both|our|its) )?{_KIND}(?:class|classes|element|elements|"
+    rf"generator|generators|background|backgrounds)"
+)
 _CONDITIONAL = re.compile(
     r"\b(?:if|when|whenever|suppose|case|unless|would|needs?)\b[^.]{0,40}$|\b(?:for|on|where|with)\s+(?:all\s+)?$",
     re.IGNORECASE,
 )
 
 _OF_DEGREE = re.compile(
-    rf"(?P<names>{LIST}),?\s+(?:(?:has|have|is|are|be|being|denotes?|stands? for)\s+)?(?:both\s+)?(?:{_NOUN}\s+)?(?:integral\s+)?(?:is\s+)?"
+    rf"(?P<names>{LIST}),?\s+(?:(?:has|have|is|are|be|being|denotes?|stands? "
+    rf"for)\s+)?(?:both\s+)?(?:{_NOUN}\s+)?(?:integral\s+)?(?:is\s+)?"
     rf"(?:of|in|has|have|with|having)?\s*(?:the\s+)?(?:cohomological\s+)?degrees?\s+(?P<degrees>{NUMBERS})",
     re.IGNORECASE,
 )
 _DEGREE_FIRST = re.compile(
-    rf"(?:degree[- ](?P<degree>{NUMBER})\s+{_KIND}(?:class|classes)|{_NOUN}\s+of\s+degree\s+(?P<degree2>{NUMBER}))[, ]+(?P<names>{LIST})",
+    rf"(?:degree[- ](?P<degree>{NUMBER})\s+{_KIND}(?:class|"
+    rf"classes)|{_NOUN}\s+of\s+degree\s+(?P<degree2>{NUMBER}))[, ]+(?P<names>{LIST})",
     re.IGNORECASE,
 )
 _LIES_IN = re.compile(

@@ -1,7 +1,7 @@
-"""What a paragraph stands under: the prime, the Eilenberg–MacLane spaces named there, bundles, the letters that are numbers.
+"""What a paragraph stands under: the prime, the Eilenberg–MacLane spaces named there, bundles, the letters that are
+numbers.
 
-Knows the ways in which drafts say these things; draws no conclusion about a formula.
-"""
+Knows the ways in which drafts say these things; draws no conclusion about a formula."""
 
 from __future__ import annotations
 
@@ -23,7 +23,8 @@ _WORDS_PRIME = re.compile(
     re.IGNORECASE,
 )
 _ODD = re.compile(
-    r"[\ue000-\uf7ff] (?:(?:is|be|denotes?) )?(?:an? )?(?:fixed |arbitrary )?odd(?: prime)?\b|odd primes? [\ue000-\uf7ff]|an odd prime\b",
+    r"[\ue000-\uf7ff] (?:(?:is|be|denotes?) )?(?:an? )?(?:fixed |arbitrary )?odd(?: prime)?\b|odd primes? "
+    r"[\ue000-\uf7ff]|an odd prime\b",
     re.IGNORECASE,
 )
 _FOR_GOOD = re.compile(
@@ -31,14 +32,16 @@ _FOR_GOOD = re.compile(
 )
 _PRIMES = {"two": 2, "three": 3, "five": 5}
 _NO_BETA = re.compile(
-    r"\b(?:temperature|coupling|roots?|Betti|bar length|bar complex|golden|number theory|length [\ue000-\uf7ff]|inverse|angle|exponent)\b",
+    r"\b(?:temperature|coupling|roots?|Betti|bar length|bar complex|golden|number theory|length "
+    r"[\ue000-\uf7ff]|inverse|angle|exponent)\b",
     re.IGNORECASE,
 )
 _NO_POWER = re.compile(r"\b(?:projective|Postnikov|field|stage|polynomial ring|series|lines)\b", re.IGNORECASE)
 _BUNDLES = re.compile(r"Stiefel|Whitney|vector bundle|tangent bundle|bundle\b|characteristic class", re.IGNORECASE)
 _POWER = re.compile(r"(?<![A-Z{])P\^")
 _SIZE = re.compile(
-    r"\b(?:two|three|four|five|six|seven|eight|\d+)-(?:dimensional )?(?:manifold|complex)|([\ue000-\uf7ff])-(?:dimensional )?manifold"
+    r"\b(?:two|three|four|five|six|seven|eight|\d+)-(?:dimensional )?(?:manifold|complex)|"
+    r"([\ue000-\uf7ff])-(?:dimensional )?manifold"
     r"|\bdimensions? ([\ue000-\uf7ff]|(?:\d+|two|three|four|five|six|seven|eight)\b)",
     re.IGNORECASE,
 )
@@ -189,7 +192,8 @@ _PARTICULAR = re.compile(
     re.IGNORECASE,
 )
 _HYPOTHESIS = re.compile(
-    r"\b(?:if|when|whenever|suppose|assume|provided|such that|with|unless|satisfying|satisfies|let|put|requires?|needs)\b"
+    r"\b(?:if|when|whenever|suppose|assume|provided|such that|with|unless|satisfying|satisfies|let|put|"
+    r"requires?|needs)\b"
     r"(?:\s+(?:that|also|moreover|we have|both))*\s*(?:[\ue000-\uf7ff]\s*(?:,|and|, and)\s*)*$",
     re.IGNORECASE,
 )

@@ -1,7 +1,7 @@
-"""Spaces and coefficient groups as drafts write them: K(\\mathbb{Z}/2, n), B^2\\mathbb{Z}_2, \\mathbb{RP}^\\infty, BSO(3).
+"""Spaces and coefficient groups as drafts write them: K(\\mathbb{Z}/2, n), B^2\\mathbb{Z}_2, \\mathbb{RP}^\\infty,
+BSO(3).
 
-Knows spellings, no cohomology.
-"""
+Knows spellings, no cohomology."""
 
 from __future__ import annotations
 
@@ -12,7 +12,10 @@ from attrs import frozen
 
 from opslang.lint.reading.document import Token
 
-_GROUP = r"(?P<group>Z(?:/\(?(?P<order>\d+|[a-zA-Z])(?:\^\{?(?P<power>[\w+-]+)\}?)?\)?|_\{?(?P<low>\d+|[a-zA-Z])(?:\^\{?(?P<lowpower>\w+)\}?)?\}?)?|F_\{?(?P<field>\w+)\}?)"
+_GROUP = (
+    r"(?P<group>Z(?:/\(?(?P<order>\d+|[a-zA-Z])(?:\^\{?(?P<power>[\w+-]+)\}?)?\)?|_\{?(?P<low>\d+|"
+    r"[a-zA-Z])(?:\^\{?(?P<lowpower>\w+)\}?)?\}?)?|F_\{?(?P<field>\w+)\}?)"
+)
 _EM = re.compile(rf"K\({_GROUP},(?P<degree>[^(),]+)\)$")
 _DELOOPED = re.compile(rf"B\^\{{?(?P<degree>\w+)\}}?{_GROUP}$")
 _ONLY_GROUP = re.compile(_GROUP + "$")

@@ -26,7 +26,9 @@ _ABBREVIATIONS = re.compile(
 
 @frozen
 class Paragraph:
-    """The text of a paragraph; formula k stands in it as one sign at `places[k]`, and reads `plains[k]` in plain spelling."""
+    """The text of a paragraph; formula k stands in it as one sign at `places[k]`, and reads `plains[k]` in plain
+    spelling.
+    """
 
     text: str
     formulas: tuple[Formula, ...] = field(repr=False)

@@ -7,8 +7,8 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from fractions import Fraction
-from operator import mul
 from math import floor
+from operator import mul
 
 from opslang.lint.model import (
     BigSum,

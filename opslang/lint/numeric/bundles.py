@@ -1,9 +1,9 @@
 """Relations between characteristic classes: decided in the cohomology of the space that classifies the bundle.
 
-What holds in H^*(BO) holds for every bundle; what fails there may hold for oriented ones, or for those of small rank.  So a
-relation is false only where the draft says which bundles it speaks of, or where it fails for all kinds.  The Wu classes are given by w = Sq(v), the
-dual ones by w times their sum = 1 (Wu 1950; Milnor and Stasheff 1974, sections 4 and 11).
-"""
+What holds in H^*(BO) holds for every bundle; what fails there may hold for oriented ones, or for those of small rank.
+So a relation is false only where the draft says which bundles it speaks of, or where it fails for all kinds.  The Wu
+classes are given by w = Sq(v), the dual ones by w times their sum = 1 (Wu 1950; Milnor and Stasheff 1974, sections 4
+and 11)."""
 
 from __future__ import annotations
 

@@ -1,8 +1,8 @@
 """Decides closed relations: the classes are declared, the surface trees handed to a session, its outcome read.
 
-A class of some space is the fundamental class of K(G, n) under another name: what holds for it holds for every such class,
-and what fails for it fails for some.  A class of a particular space may satisfy more; then only "true" is believed.
-"""
+A class of some space is the fundamental class of K(G, n) under another name: what holds for it holds for every such
+class, and what fails for it fails for some.  A class of a particular space may satisfy more; then only "true" is
+believed."""
 
 from __future__ import annotations
 

@@ -1,8 +1,7 @@
 """Classes of a draft under names of their own, so that a session cannot mistake them for anything else.
 
-Two classes are one where they are spelled alike, with the same argument.  The class keeps the author's spelling for what
-is printed.
-"""
+Two classes are one where they are spelled alike, with the same argument.  The class keeps the author's spelling for
+what is printed."""
 
 from __future__ import annotations
 

@@ -1,9 +1,9 @@
 """Rules and conventions of a draft, worked into a closed expression before it is computed.
 
-A transgression d with `d iota_4 = Sq^2 iota_3` is linear and commutes with the operations, and z^2 is Sq^|z| z; so d of a word on
-iota_4 is that word on Sq^2 iota_3 (Serre 1951, McCleary 2001, chapter 6).  Conventions: whether Q_0 or Q_1 is Sq^1, whether P^i counts
-number or degree.  A class with `Sq^1 u = 0` obeys the same relations of primary operations as the reduction of a Z/4 class.
-"""
+A transgression d with `d iota_4 = Sq^2 iota_3` is linear and commutes with the operations, and z^2 is Sq^|z| z; so d
+of a word on iota_4 is that word on Sq^2 iota_3 (Serre 1951, McCleary 2001, chapter 6).  Conventions: whether Q_0 or
+Q_1 is Sq^1, whether P^i counts number or degree.  A class with `Sq^1 u = 0` obeys the same relations of primary
+operations as the reduction of a Z/4 class."""
 
 from __future__ import annotations
 

@@ -1,8 +1,7 @@
 """Words of operations with numbers: read off a tree, measured, and the generators of H^*(K(G, n)) listed.
 
-Letters are ("Sq", i), ("P", i), ("beta", k).  Admissible, excess: Serre 1953; Cartan 1954; Steenrod and Epstein 1962, chapters I and
-VI; the generators of K(G, n) also in May 1970, theorem 10.3.
-"""
+Letters are ("Sq", i), ("P", i), ("beta", k).  Admissible, excess: Serre 1953; Cartan 1954; Steenrod and Epstein 1962,
+chapters I and VI; the generators of K(G, n) also in May 1970, theorem 10.3."""
 
 from __future__ import annotations
 
@@ -135,7 +134,9 @@ def is_generator(word: Word, prime: int, n: int) -> bool:
 
 
 def generators(prime: int, n: int, order: int, top: int) -> tuple[Word, ...]:
-    """The words of the generators of H^*(K(G, n); F_p) up to a degree; `order` as in `ClassFact`.  Needs n >= 2 or order 1."""
+    """The words of the generators of H^*(K(G, n); F_p) up to a degree; `order` as in `ClassFact`.  Needs n >= 2 or
+    order 1.
+    """
     found = [word for word in _admissible(prime, top - n) if is_generator(word, prime, n) and _fits(word, prime, order)]
     renamed = [_with_order(word, order) for word in found]
     return tuple(sorted(renamed, key=lambda word: (degree_of(word, prime), word)))

@@ -67,7 +67,10 @@ def _excess(condition: Condition, multi: str) -> list[Finding]:
     """Excess ≤ n where < is meant."""
     if condition.sign != "≤" or condition.left is None or not _is_excess(condition.left, multi):
         return []
-    message = "the excess must be less than the degree\na word of excess equal to the degree gives a square, which is no generator"
+    message = (
+        "the excess must be less than the degree\na word of excess equal to the degree gives a square, "
+        "which is no generator"
+    )
     return [Finding("basis-condition", "error", message, condition.at)]
 
 
@@ -92,7 +95,8 @@ RULE = LintRule(
     name="basis-condition",
     title="the condition of a basis has the wrong sign",
     why=(
-        "Admissible means I_j ≥ 2 I_{j+1}.  The generators of the algebra H^*(K(Z/2, n)) are the admissible words of excess less than "
+        "Admissible means I_j ≥ 2 I_{j+1}.  The generators of the algebra H^*(K(Z/2, n)) are the admissible "
+        "words of excess less than "
         "n; excess n gives squares (a module has excess at most n)."
     ),
     bad=(

@@ -43,7 +43,8 @@ def check(statement: Statement, known: Known) -> Verdict | None:
         return None
     (first, second), answer = wrong
     message = (
-        f"the sign is wrong for |{names[0]}| = {first}, |{names[1]}| = {second}\nthere the right side should be {answer.left}; "
+        f"the sign is wrong for |{names[0]}| = {first}, |{names[1]}| = {second}\nthere the right side should "
+        f"be {answer.left}; "
         f"beta(xy) = beta(x) y + (-1)^|x| x beta(y)"
     )
     return Verdict("finding", (Finding("bockstein-sign", "error", message, statement.at),))
@@ -67,7 +68,8 @@ def _product(side: Sum) -> tuple[str, str] | None:
 RULE = LintRule(
     name="bockstein-sign",
     title="the Bockstein of a product has the wrong sign",
-    why="At an odd prime beta(xy) = beta(x) y + (-1)^|x| x beta(y); the sign is lost where it is copied from the prime 2.",
+    why="At an odd prime beta(xy) = beta(x) y + (-1)^|x| x beta(y); the sign is lost where it is copied from "
+    "the prime 2.",
     bad=(r"Let $p$ be an odd prime. Then $\beta(xy)=\beta(x)y+x\beta(y)$.",),
     good=(
         r"Let $p$ be an odd prime. Then $\beta(xy)=\beta(x)y+(-1)^{|x|}x\beta(y)$.",

@@ -86,7 +86,7 @@ def _at_odd_primes(statement: Statement, left: Sum, right: Sum, known: Known) ->
 
 def _stable(statement: Statement, left: Sum, right: Sum, known: Known) -> Verdict | None:
     """A relation with one symbol for a degree, tried on large values: those of the stable range."""
-    symbols = set()
+    symbols: set[str] = set()
     for node in nodes_in(statement):
         for index in node.index if isinstance(node, ClassName) else ():
             degree = polynomial_of(index)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 
-from opslang.lint.model import ClassFact, ClassName, Finding, Known, Operation, Product, Statement, Sum, Verdict
+from opslang.lint.model import ClassFact, ClassName, Finding, Known, Operation, Origin, Product, Statement, Sum, Verdict
 from opslang.lint.numeric.words import (
     Word,
     degree_of,
@@ -77,14 +77,23 @@ def _member(word: Word, prime: int, n: int, order: int, name: ClassName) -> str:
     text = f"{word_text(word)} {name.spelling}"
     worn = inadmissible_at(word, prime)
     if worn is not None:
-        return f"{word_text(word)} is not admissible: {worn[0]} < {worn[2]}\na generator is an admissible word on {name.spelling}"
+        return (
+            f"{word_text(word)} is not admissible: {worn[0]} < {worn[2]}\na generator is an admissible word "
+            f"on {name.spelling}"
+        )
     excess = excess_of(word, prime)
     if not is_generator(word, prime, n):
         what = "a power of another generator" if excess == n else "0"
-        return f"{text} is {what}: its excess is {excess}, and the class has degree {n}\na generator has excess less than {n}"
+        return (
+            f"{text} is {what}: its excess is {excess}, and the class has degree {n}\na generator has "
+            f"excess less than {n}"
+        )
     if word and word[-1] in (("Sq", 1), ("beta", 1)) and order != 1:
         wanted = f"; the second generator is beta_{order} {name.spelling}" if order else ""
-        return f"{text} is 0: {name.spelling} is the reduction of a class with {'integral' if not order else 'other'} coefficients{wanted}"
+        return (
+            f"{text} is 0: {name.spelling} is the reduction of a class "
+            f"with {'integral' if not order else 'other'} coefficients{wanted}"
+        )
     bocksteins = [index for head, index in word if head == "beta" and index > 1]
     if bocksteins and (bocksteins != [order] or word[-1] != ("beta", order)):
         return f"{text} is no generator\nthe Bockstein of this group has order {order}"
@@ -111,7 +120,12 @@ def _run_on(side: object, name: ClassName) -> Finding | None:
     if any(only_word(Sum(((1, half),))) is None for half in halves):
         return None
     message = "a product stands in this list of generators\na comma is missing before the second operation"
-    return Finding("generator-list", "error", message, side.at)
+    first, second = factors[cuts[0] - 1].at, factors[cuts[0]].at
+    gap = Origin(first.file, first.end, first.end)
+    known_places = first.file == second.file and side.at.start < first.end <= second.start
+    if not known_places:
+        return Finding("generator-list", "error", message, side.at)
+    return Finding("generator-list", "error", message, gap, mend=",", certain=True)
 
 
 def _missing(
@@ -144,20 +158,22 @@ RULE = LintRule(
     name="generator-list",
     title="a list of generators has a wrong member or lacks one",
     why=(
-        "The cohomology of K(G, n) is free on the admissible words of excess less than n on the fundamental class; a word of "
-        "excess n gives a power, one of greater excess 0.  Where the draft says up to which degree the list goes, or the "
+        "The cohomology of K(G, n) is free on the admissible words of excess less than n on the fundamental "
+        "class; a word of "
+        "excess n gives a power, one of greater excess 0.  Where the draft says up to which degree the list "
+        "goes, or the "
         "list ends in dots, it must not leave any out before that."
     ),
     bad=(
         _HEAD + r"The generators of $H^*(K(\mathbb{Z}/2,2))$ are $\iota_2, \Sq^1\iota_2, \Sq^2\iota_2, \ldots$",
-        _HEAD
-        + r"Through degree $7$ those of $K(\mathbb{Z}/2,3)$ are $\iota_3, \Sq^1\iota_3, \Sq^2\iota_3, \Sq^2\Sq^1\iota_3$.",
+        _HEAD + r"Through degree $7$ those of $K(\mathbb{Z}/2,3)$ are $\iota_3, \Sq^1\iota_3, \Sq^2\iota_3, "
+        r"\Sq^2\Sq^1\iota_3$.",
         _HEAD + r"The generators for $K(\mathbb{Z},5)$ are $\iota_5, \Sq^2\iota_5\ \Sq^3\iota_5, \Sq^4\iota_5$.",
     ),
     good=(
         _HEAD + r"The generators of $H^*(K(\mathbb{Z}/2,2))$ are $\iota_2, \Sq^1\iota_2, \Sq^2\Sq^1\iota_2, \ldots$",
-        _HEAD
-        + r"Through degree $6$ those of $K(\mathbb{Z}/2,3)$ are $\iota_3, \Sq^1\iota_3, \Sq^2\iota_3, \Sq^2\Sq^1\iota_3$.",
+        _HEAD + r"Through degree $6$ those of $K(\mathbb{Z}/2,3)$ are $\iota_3, \Sq^1\iota_3, \Sq^2\iota_3, "
+        r"\Sq^2\Sq^1\iota_3$.",
     ),
     check=check,
     rank=35,

@@ -12,8 +12,10 @@ from opslang.lint.numeric.words import degree_of, inadmissible_at, is_dots, only
 from opslang.lint.rule import Draft, LintRule
 
 _CLAIM = re.compile(
-    rf"(?P<names>{SIGN}(?:(?:,? and |, | or ){SIGN})*),? (?:is|are)(?: (?:also|again|both|all|clearly|certainly))? admissible\b"
-    rf"|\b(?:words?|sequences?) (?P<names2>{SIGN}(?:(?:,? and |, | or ){SIGN})*) (?:is|are)(?: (?:also|again|both|all))? admissible\b",
+    rf"(?P<names>{SIGN}(?:(?:,? and |, | or ){SIGN})*),? (?:is|are)(?: (?:also|again|both|all|clearly|"
+    rf"certainly))? admissible\b"
+    rf"|\b(?:words?|sequences?) (?P<names2>{SIGN}(?:(?:,? and |, | or ){SIGN})*) (?:is|are)(?: (?:also|again|"
+    rf"both|all))? admissible\b",
     re.IGNORECASE,
 )
 _UNSURE = re.compile(r"\b(?:if|when|whenever|whether|unless|until|not|neither|nor)\b[^.]{0,60}$", re.IGNORECASE)

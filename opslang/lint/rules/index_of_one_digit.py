@@ -16,17 +16,31 @@ def check(statement: Statement, known: Known) -> Verdict | None:
     found = []
     for first, last in _runs(statement.formula.tokens):
         if statement.at.start <= first.start < statement.at.end and first.file == statement.at.file:
-            found.append(_finding(first, last))
+            found.append(_finding(first, last, _digits(statement.formula.tokens, first, last)))
     return Verdict("finding", tuple(found)) if found else None
 
 
-def _finding(first: Token, last: Token) -> Finding:
+def _digits(tokens: tuple[Token, ...], first: Token, last: Token) -> str:
+    """The digits as typed one after another; empty where braces or a macro stand between."""
+    run = tokens[tokens.index(first) : tokens.index(last) + 1]
+    typed = all(token.kind == "digit" and token.within is None for token in run)
+    return "".join(token.text for token in run) if typed and last.end - first.start == len(run) else ""
+
+
+def _finding(first: Token, last: Token, digits: str) -> Finding:
     at = Origin(first.file, first.start, last.end)
     length = last.end - first.start
     message = (
         f"TeX takes one digit as the index, and the other {'is a factor' if length == 2 else 'digits are a factor'}"
     )
-    return Finding("index-of-one-digit", "warning", message + "\nput the whole index in braces", at)
+    return Finding(
+        "index-of-one-digit",
+        "warning",
+        message + "\nput the whole index in braces",
+        at,
+        mend=f"{{{digits}}}" if digits else None,
+        certain=bool(digits),
+    )
 
 
 def _runs(tokens: tuple[Token, ...]) -> Iterator[tuple[Token, Token]]:

@@ -60,7 +60,10 @@ def _symbolic(side: Sum, known: Known) -> str:
     degree = fact.degree
     if degree is None or order != degree:
         return ""
-    return f"the order of the Bockstein is that of the coefficients, {fact.order_text}\nas written it is the degree of the class"
+    return (
+        f"the order of the Bockstein is that of the coefficients, {fact.order_text}\nas written it is the "
+        f"degree of the class"
+    )
 
 
 def _names(side: Sum) -> list[ClassName]:
@@ -74,7 +77,8 @@ RULE = LintRule(
     name="undefined-bockstein",
     title="a Bockstein where it is not defined",
     why=(
-        "The Bockstein of order k is defined on classes on which those of lower order vanish: on the reduction of a Z/p^k class, "
+        "The Bockstein of order k is defined on classes on which those of lower order vanish: on the reduction "
+        "of a Z/p^k class, "
         "but not on any mod p class."
     ),
     bad=(r"Let $x\in H^2(X;\mathbb{Z}/2)$. Then $\beta_2x\in H^3(X;\mathbb{Z}/2)$.",),
