@@ -77,6 +77,8 @@ class Requests:
         if scope.space is not None:
             lines.append(f"on {scope.space.text}: {classes_here(scope) or 'a point at this prime'}")
         lines += _names(scope, self._sitting.logbook.entries)
+        lines += [f"map {value.text}" for value in scope.maps.values()]
+        lines += [f"bundle {name}" for name in scope.bundles]
         self._paged("\n".join(lines))
 
     def _results(self, _: str) -> None:

@@ -279,7 +279,7 @@ class Check:
 
     def _compared(self, left: ClassElement, right: ClassElement, words: str) -> Iterator[str]:
         if left != right:
-            yield f"{words}: one side goes to {element_text(left)}, the other to {element_text(right)}"
+            yield f"{words}: the left side goes to {element_text(left)}, the right side to {element_text(right)}"
 
     def _height(self, of: Class, family: Family) -> Iterator[str]:
         height = family.height(self.arithmetic.prime, of)
@@ -299,7 +299,7 @@ class Check:
                 self.unknown.append(f"{letter} {name} is not known, so that its image was not checked")
                 continue
             image = a.applied(token, a.evaluate(self.image(of)))
-            yield from self._compared(self.pulled(value), image, f"{letter} {name} = {_text(value, p)}")
+            yield from self._compared(image, self.pulled(value), f"{letter} {name} = {_text(value, p)}")
         if of.order > 1:
             yield from self._higher(of, family, name)
 
@@ -319,7 +319,7 @@ class Check:
             self.unknown.append(f"beta_{order} of the image of {name} has an indeterminacy, and was not compared")
             return
         yield from self._compared(
-            self.pulled(value), found, f"beta_{order} {name} = {_text(value, self.arithmetic.prime)}"
+            found, self.pulled(value), f"beta_{order} {name} = {_text(value, self.arithmetic.prime)}"
         )
 
 
