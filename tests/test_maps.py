@@ -182,6 +182,7 @@ def test_values_of_maps(prime: int, lines: list[str], relation: str) -> None:
         (2, "map f : RP^3(a) -> K(Z/2, 1) with iota_1 -> a, iota_1 -> 0", "map"),
         (2, "map f : RP^3(a) -> K(Z/2, 1) with iota_1 -> Sq^1", "sorts-differ"),
         (2, "map h = g f", "unknown-map"),
+        (2, "map f : BO(3) -> thom(BO(3)) with U -> w_3", "map"),
     ],
 )
 def test_what_is_a_map_and_what_is_none(prime: int, line: str, name: str | None) -> None:

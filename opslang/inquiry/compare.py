@@ -79,7 +79,7 @@ class _Module:
             ring: Any = self.engine.ring(2 * self.to + 2)
             if word:
                 inner = self.values(d, word[1:])
-                self.engine.budget.spend(len(inner))
+                self.engine.budget.spend(8 + 4 * len(inner))
                 found = [ring.letter(word[0], element) if element else element for element in inner]
             else:
                 found = [self._packed(monomial) for monomial in self.basis(d)]
@@ -125,6 +125,7 @@ class _Module:
         all_products: list[Vector] = []
         for x in self.values(a, ()):
             row: dict[tuple[int, int], int] = {}
+            self.engine.budget.spend(8 + 4 * len(self.values(b, ())))
             for number_, y in enumerate(self.values(b, ())):
                 product = self.vector(ring.multiply(x, y))
                 all_products.append(product)

@@ -63,7 +63,37 @@ class Span(Generic[Key]):
 
 def rank(prime: int, vectors: Iterable[Mapping[Key, int]]) -> int:
     """The dimension of the span of vectors."""
-    span: Span[Key] = Span(prime)
+    places: dict[Key, int] = {}
+    if prime == 2:
+        return _rank_at_two([sum([1 << places.setdefault(key, len(places)) for key in vector]) for vector in vectors])
+    rows: dict[int, dict[int, int]] = {}
     for vector in vectors:
-        span.add(vector)
-    return span.rank
+        rest = {places.setdefault(key, len(places)): c for key, c in vector.items()}
+        while rest:
+            pivot = max(rest)
+            row = rows.get(pivot)
+            if row is None:
+                inverse = pow(rest[pivot], -1, prime)
+                rows[pivot] = {at: c * inverse % prime for at, c in rest.items()}
+                break
+            c = rest[pivot]
+            for at, d in row.items():
+                value = (rest.get(at, 0) - c * d) % prime
+                if value:
+                    rest[at] = value
+                else:
+                    rest.pop(at, None)
+    return len(rows)
+
+
+def _rank_at_two(vectors: Iterable[int]) -> int:
+    """The same for vectors of bits."""
+    rows: dict[int, int] = {}
+    for vector in vectors:
+        while vector:
+            row = rows.get(vector.bit_length())
+            if row is None:
+                rows[vector.bit_length()] = vector
+                break
+            vector ^= row
+    return len(rows)

@@ -32,6 +32,7 @@ from opslang.report.diagnostic import Refusal, error, note, warning
 from opslang.spaces.characteristic import Classifying
 from opslang.spaces.family import Family, NotKnown, Polynomial
 from opslang.spaces.space import Localised, SpaceValue, localise
+from opslang.spaces.thom import Thom
 from opslang.syntax import surface as sf
 from opslang.tables.bockstein import Undefined
 from opslang.tables.engine import Engine
@@ -51,6 +52,10 @@ def declared(statement: sf.MapStatement, blank: Outcome, lowering: Lowering, eng
     """`map f : X -> Y …`."""
     scope = lowering.scope
     source, target = space_value(statement.source, scope), space_value(statement.target, scope)
+    there = localise(target, scope.prime)
+    if there.thom is not None or any(isinstance(family, Thom) for family in there.families):
+        message = "maps into Thom spaces are not known here: their classes are no polynomials in generators"
+        raise refusal("map", message, statement.span)
     if statement.how == "with":
         image = _given(statement, source, target, lowering, engine)
     else:
