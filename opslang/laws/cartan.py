@@ -28,7 +28,7 @@ from opslang.ir.term import (
     zero,
 )
 from opslang.laws.law import Bindings, Equation, Law, head, require, single, word
-from opslang.laws.ring import single_generator
+from opslang.laws.ring import degree_step, single_generator
 
 Parts = tuple[tuple[Monomial, int], ...]
 
@@ -96,11 +96,13 @@ def _cartan(p: int, k: int, parts: Parts) -> Equation:
     require(k > 0 and len(parts) > 1 and all(_is_power_of(n, p) for _, n in parts), "not a product of p-powers")
     require(all(n == 1 or not (p > 2 and parity_of_monomial(y)) for y, n in parts), "a power of an odd class is 0")
     lhs = Apply(head(p), k, whole(parts, p))
-    costs, bounds = [n for _, n in parts], _bounds(parts, p)
+    steps = [degree_step(y, p) if p == 2 else 1 for y, _ in parts]
+    costs = [n * step for (_, n), step in zip(parts, steps)]
+    bounds = [bound // step for bound, step in zip(_bounds(parts, p), steps)]
     _refuse_many(k, costs, bounds)
     terms = []
     for ks in _shares(k, costs, bounds):
-        factors = [power(of_monomial(p, word(((head(p), i),), y)), n) for i, (y, n) in zip(ks, parts)]
+        factors = [power(of_monomial(p, word(((head(p), i * s),), y)), n) for i, s, (y, n) in zip(ks, steps, parts)]
         terms.append((1, cup(*factors)))
     return Equation(lhs, 1, add(p, *terms))
 
@@ -143,7 +145,10 @@ CARTAN = Law(
         r"\mathrm{Sq}^{k}(x_1 \cdots x_n) = \sum_{k_1 + \dots + k_n = k}"
         r" \mathrm{Sq}^{k_1}x_1 \cdots \mathrm{Sq}^{k_n}x_n, \quad \mathcal{P}^{k} \text{ likewise}"
     ),
-    condition="terms that vanish by instability are left out; x_i = y^{p^m} gives (Sq^j y)^{p^m} with k_i = p^m j",
+    condition=(
+        "terms that vanish by instability or for want of classes of the degree are left out;"
+        " x_i = y^{p^m} gives (Sq^j y)^{p^m} with k_i = p^m j"
+    ),
     source="Cartan 1950; Steenrod and Epstein 1962, chapters I and VI",
     examples=("Sq^1(x y) = (Sq^1 x) y + x (Sq^1 y)", "Sq^2(x y) = (Sq^2 x) y + (Sq^1 x) (Sq^1 y) + x (Sq^2 y)"),
     setting=("let x in H^2", "let y in H^3"),

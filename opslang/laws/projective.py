@@ -5,9 +5,8 @@ from __future__ import annotations
 from opslang.ground.arith import binomial_mod
 from opslang.ir.term import Apply, Class, Factor, Monomial, add, degree_of_monomial, letter_degree, of_factor, zero
 from opslang.laws.law import Bindings, Binomial, Equation, Law, Remark, head, require
-from opslang.laws.ring import single_generator
-from opslang.spaces.characteristic import Classifying, Pontryagin
-from opslang.spaces.projective import Lens, Projective
+from opslang.laws.ring import degree_step, single_generator
+from opslang.spaces.projective import Lens
 
 
 def _power_of(factor: Factor, p: int) -> tuple[int, Class, int] | None:
@@ -75,22 +74,9 @@ BINOMIAL = Law(
 # --- degrees --------------------------------------------------------------------------------------
 
 
-def _step(x: Monomial, p: int) -> int:
-    """A number that divides all degrees in which the space of a product of classes has any; 1 where none is known."""
-    rings = {of.ring if isinstance(of, Class) else None for of, _ in x.blocks}
-    ring = rings.pop() if len(rings) == 1 else None
-    if isinstance(ring, Classifying) and not (isinstance(ring, Pontryagin) and ring.euler):
-        return ring.step
-    if isinstance(ring, Projective):
-        of = x.blocks[0][0]
-        assert isinstance(of, Class)
-        return of.degree
-    return 1
-
-
 def _fits(p: int, i: int, x: Monomial) -> bool:
     degree = degree_of_monomial(x, p)
-    return i > 0 and degree is not None and (letter_degree((head(p), i), p) or 0) % _step(x, p) != 0
+    return i > 0 and degree is not None and (letter_degree((head(p), i), p) or 0) % degree_step(x, p) != 0
 
 
 def _empty(p: int, i: int, x: Monomial) -> Equation:
@@ -108,7 +94,9 @@ def _empty_remarks(p: int, i: int, x: Monomial) -> tuple[Remark, ...]:
     of = x.blocks[0][0]
     assert isinstance(of, Class)
     degree = (degree_of_monomial(x, p) or 0) + (letter_degree((head(p), i), p) or 0)
-    return ((f"the degrees of classes of {of.ring.text} are multiples of {_step(x, p)}, and here it is {degree}",),)
+    return (
+        (f"the degrees of classes of {of.ring.text} are multiples of {degree_step(x, p)}, and here it is {degree}",),
+    )
 
 
 EMPTY = Law(

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from opslang.ir.term import UNIT, Apply, Class, Element, Factor, Monomial, add, cup, of_factor, of_monomial
 from opslang.laws.law import Equation, Remark, bockstein, head, only
+from opslang.spaces.characteristic import Classifying, Pontryagin
 from opslang.spaces.family import Family, NotKnown, Polynomial, Powers
 from opslang.spaces.projective import Lens, Projective
 
@@ -61,6 +62,19 @@ def single_generator(of: Factor, p: int) -> bool:
     return isinstance(of.ring, Lens) and (of.degree == 2 or (p == 2 and of.order == 1))
 
 
+def degree_step(x: Monomial, p: int) -> int:
+    """A number that divides all degrees in which the space of a product of classes has any; 1 where none is known."""
+    rings = {of.ring if isinstance(of, Class) else None for of, _ in x.blocks}
+    ring = rings.pop() if len(rings) == 1 else None
+    if isinstance(ring, Classifying) and not (isinstance(ring, Pontryagin) and ring.euler):
+        return ring.step
+    if isinstance(ring, Projective):
+        of = x.blocks[0][0]
+        assert isinstance(of, Class)
+        return of.degree
+    return 1
+
+
 def joined(before: str, equations: list[Equation], after: str = "", most: int = 4) -> tuple[Remark, ...]:
     """A remark that lists some equations; none where there are none."""
     if not equations:
@@ -74,6 +88,7 @@ def joined(before: str, equations: list[Equation], after: str = "", most: int = 
 __all__ = [
     "Family",
     "applied",
+    "degree_step",
     "element_of",
     "is_open",
     "joined",
