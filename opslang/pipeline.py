@@ -117,6 +117,8 @@ class Session:
         return self._failed(source, span, kind, (*lowering.diagnostics, found))
 
     def _failed(self, source: Source, span: Span, kind: Kind, diagnostics: tuple[Diagnostic, ...]) -> Outcome:
+        if source.text.split(None, 1)[:1] == ["on"]:
+            self.scope.space, self.scope.lost = None, True
         first = next((d for d in diagnostics if d.severity == "error"), None)
         name, message = (first.name, first.message) if first else (None, None)
         return Outcome(
@@ -197,26 +199,33 @@ class Session:
             return "class", self.scope.space.text
         classes = values[0].classes.union(*[value.classes for value in values[1:]])
         space = None
-        if classes and all([of.letter == "iota" for of in classes]):
+        if classes and all(of.letter == "iota" for of in classes):
             space = " x ".join([f"K(Z/{self.scope.prime}, {n})" for n in sorted([of.degree for of in classes])])
         return "class", space
 
     def _one_name_one_class(self, classes: frozenset[Class], span: Span) -> None:
+        """Refuse classes that cannot stand in one expression: of one name, or of two spaces that are no product."""
+        if self.scope.lost and any(of.letter == "iota" for of in classes):
+            raise Refusal(lost(span))
         if len(classes) < 2:
             return
-        seen = {}
+        seen: dict[tuple[str, int | None, int], Class] = {}
+        homes: dict[int, Class] = {}
         for of in classes:
             key = (of.letter, of.index, of.primes)
             if key in seen:
-                raise Refusal(
-                    error(
-                        "classes-of-different-spaces",
-                        f"{spelled(key)} stands here for two different classes, from different spaces or declarations",
-                        span,
-                        "give one of them another name",
-                    )
-                )
+                words = f"{spelled(key)} stands here for two different classes, from different spaces or declarations"
+                raise Refusal(error("classes-of-different-spaces", words, span, "give one of them another name"))
             seen[key] = of
+            if of.ring is None and of.letter != "iota":
+                continue
+            other = homes.setdefault(of.factor, of)
+            if other.ring != of.ring and not _thom(other, of):
+                first, second = (spelled((c.letter, c.index, c.primes)) for c in (other, of))
+                words = f"{first} and {second} are classes of different spaces"
+                raise Refusal(
+                    error("classes-of-different-spaces", words, span, "choose their product as the space, or a map")
+                )
 
     # --- relations ------------------------------------------------------------------------------
 
@@ -329,6 +338,8 @@ class Session:
 
     def _space_of(self, space: sf.Space | None, span: Span) -> SpaceValue:
         found = self.scope.space if space is None else space_value(space, self.scope)
+        if found is None and self.scope.lost:
+            raise Refusal(lost(span))
         if found is None:
             raise Refusal(
                 error(
@@ -408,6 +419,20 @@ def _kind(statement: sf.Statement) -> Kind:
 def as_sort_or_class(value: Value, sort: Sort, span: Span) -> Value:
     """A value, scalars lifted to the sort of their neighbours; to a class where they stand alone."""
     return as_sort(value, "class" if sort == "scalar" else sort, span)
+
+
+def _thom(one: Class, other: Class) -> bool:
+    """Whether one is the Thom class over the space of the other."""
+    if one.ring is None and other.ring is None:
+        return True
+    pairs = ((one, other), (other, one))
+    return any(b.ring is not None and getattr(a.ring, "base", None) == b.ring for a, b in pairs)
+
+
+def lost(span: Span) -> Diagnostic:
+    """What is said where the current space is needed and the last `on` failed."""
+    words = "the last `on` could not be read, so there is no current space"
+    return error("no-space", words, span, "mend that line first")
 
 
 def _bare_zero(value: Value) -> bool:

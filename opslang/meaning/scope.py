@@ -9,6 +9,7 @@ from attrs import define, field
 
 from opslang.ir.tree import Class
 from opslang.meaning.value import Value
+from opslang.spaces.family import NotKnown
 from opslang.spaces.space import Localised, SpaceValue, localise
 
 if TYPE_CHECKING:
@@ -44,6 +45,8 @@ class Scope:
     names: dict[Key, Value] = field(factory=dict)
     maps: dict[str, "MapValue"] = field(factory=dict)
     bundles: dict[str, "Bundle"] = field(factory=dict)
+    lost: bool = False
+    """Whether the last `on` could not be read, so that nobody knows what the current space is."""
     _localised: tuple[SpaceValue, int, Localised] | None = None
 
     def localised(self) -> Localised | None:
@@ -53,6 +56,16 @@ class Scope:
         if self._localised is None or self._localised[:2] != (self.space, self.prime):
             self._localised = (self.space, self.prime, localise(self.space, self.prime))
         return self._localised[2]
+
+    def class_of_space(self, key: Key) -> bool:
+        """Whether the current space has a class of that name, fundamental classes aside."""
+        here = self.localised()
+        if here is None or not here.families:
+            return False
+        try:
+            return bool(here.named(self.prime, *key))
+        except NotKnown:
+            return False
 
     def fundamental(self, degree: int, primes: int) -> Class | None:
         """The fundamental class of that degree and number of primes; None where it is 0 at the prime.

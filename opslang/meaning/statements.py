@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from opslang.ground.arith import is_prime
+from opslang.ground.source import Span
 from opslang.ir import tree as ir
 from opslang.ir.tree import Class
 from opslang.meaning.indices import number
@@ -53,13 +54,35 @@ def space(statement: sf.SpaceStatement, scope: Scope, limit: int = DEFAULT_LIMIT
 
 
 def on(statement: sf.OnStatement, scope: Scope) -> list[Diagnostic]:
-    """`on X`."""
+    """`on X`.  What was declared under the name of a class of the space gives way to it."""
     scope.space = space_value(statement.space, scope)
+    scope.lost = False
     here = scope.localised()
+    found: list[Diagnostic] = []
     if here is not None and here.vanishing:
         names = ", ".join(spelled(("iota", degree, primes)) for degree, primes in sorted(here.vanishing))
-        return [note("zero-at-the-prime", f"at the prime {scope.prime} this is 0: {names}", statement.span)]
-    return []
+        found.append(note("zero-at-the-prime", f"at the prime {scope.prime} this is 0: {names}", statement.span))
+    hidden = [key for key in scope.names if scope.class_of_space(key)]
+    for key in hidden:
+        del scope.names[key]
+    if hidden:
+        names = ", ".join(spelled(key) for key in hidden)
+        words = f"from here on {names} means what {scope.space.text} calls so, and no longer what was declared before"
+        found.append(warning("redeclared", words, statement.span))
+    return found
+
+
+def _free(scope: Scope, key: Key, span: Span) -> None:
+    """Refuse a name that the current space gives to a class of its own."""
+    if scope.space is not None and scope.class_of_space(key):
+        raise Refusal(
+            error(
+                "name-taken",
+                f"{spelled(key)} is a class of the current space, {scope.space.text}",
+                span,
+                "choose another name",
+            )
+        )
 
 
 def declare(statement: sf.DeclareStatement, scope: Scope) -> list[Diagnostic]:
@@ -75,6 +98,7 @@ def declare(statement: sf.DeclareStatement, scope: Scope) -> list[Diagnostic]:
     for name in statement.names:
         index = None if name.index is None else number(name.index, name.span)
         key = (name.letter, index, name.primes)
+        _free(scope, key, name.span)
         if key in values:
             raise Refusal(error("declared-twice", f"{spelled(key)} stands twice in this declaration", name.span))
         if order is None:
@@ -98,6 +122,7 @@ def abbreviate(statement: sf.AbbreviateStatement, scope: Scope, lowering: Loweri
     """`let u = …`; the value is put into the scope."""
     name = statement.name
     index = None if name.index is None else number(name.index, name.span)
+    _free(scope, (name.letter, index, name.primes), name.span)
     value = lowering.sum(statement.body)
     lowering.diagnostics += _put(scope, (name.letter, index, name.primes), value, statement)
     return value

@@ -78,7 +78,7 @@ def _relation(outcome: Outcome, notation: Notation, width: int) -> list[str]:
             signs = [" = " if link.verdict == "true" else r" \neq " for link in outcome.links]
             return [sides[0] + "".join(s + side for s, side in zip(signs, sides[1:])) + f" % {outcome.verdict}"]
         return [sides[0] + sign + sides[1] + f" % {outcome.verdict}"]
-    head = outcome.verdict.ljust(8)
+    head = (outcome.verdict + "  ").ljust(8)
     first = head + _statement(outcome)
     if outcome.verdict == "true":
         return (

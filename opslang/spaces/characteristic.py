@@ -65,8 +65,12 @@ class Classifying(Family):
         return {self.letter: self.step, "W": 1, "p": 4, "Delta": 1}.get(letter, 1) * (index or 0)
 
     def names(self, prime: int) -> str:
-        end = "…" if self.rank is None else f"{self.letter}_{self.rank}"
-        return f"{self.letter}_{self.first}, …, {end}" if self.rank is None else f"{self.letter}_{self.first} … {end}"
+        first = f"{self.letter}_{self.first}"
+        if self.rank is None:
+            return f"{first}, {self.letter}_{self.first + 1}, …"
+        if self.rank < self.first:
+            return "none at this prime"
+        return first if self.rank == self.first else f"{first} … {self.letter}_{self.rank}"
 
     def product(self, r: symmetric.Partition) -> list[tuple[int, list[tuple[Class, int]]]]:
         """The product of the classes of these numbers, as a list of at most one term."""

@@ -12,6 +12,7 @@ from opslang.ir.tree import Class
 from opslang.spaces import characteristic, projective, spin
 from opslang.spaces.bundle_thom import BundleThom, ThomFactor
 from opslang.spaces.family import Family, NotKnown, Polynomial
+from opslang.spaces.primed import told_apart
 from opslang.spaces.reductions import further, further_degree
 from opslang.spaces.thom import thom
 
@@ -129,12 +130,12 @@ def localise(space: SpaceValue, prime: int) -> Localised:
     """A space at a prime; fundamental classes are numbered among equal degrees by the factors as written.  NotKnown."""
     classes = []
     vanishing = set()
-    families = []
+    families: list[Family] = []
     seen: dict[int, int] = {}
     for number, factor in enumerate(space.factors):
         at = number if len(space.factors) > 1 else 0
         if not isinstance(factor, Factor):
-            families.append(factor.family(prime, at))
+            families.append(told_apart(families, factor.family(prime, at), prime))
             continue
         primes = seen.get(factor.degree, 0)
         seen[factor.degree] = primes + 1

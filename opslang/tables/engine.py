@@ -325,7 +325,7 @@ class Evaluation:
                 return value
 
     def _unstable(self, tree: ir.Apply) -> bool:
-        """Whether a word on a class of known degree is 0 by instability alone: a letter is above the degree it meets."""
+        """Whether a word on a class of known degree is 0 by instability: a letter is above the degree it meets."""
         if type(tree.op) is not ir.Composite or tree.argument.degree is None:
             return False
         p, degree = self.prime, tree.argument.degree

@@ -37,14 +37,40 @@ def within(engine: Engine, element: ClassElement, classes: tuple[Class, ...], to
         return True
     if engine.modulo_order <= 2:
         return False
+    settled = True
     for order in range(2, min(engine.modulo_order, _MOST_ORDER)):
+        settled = settled and order == 2 and _all_defined(engine, ring, below, classes, degree)
         for f in below:
             try:
                 value, _ = higher(ring, order, f)
             except Undefined:
                 continue
             span.put(_vector(value, p))
-    return True if span.holds(_vector(target, p)) else None
+    if span.holds(_vector(target, p)):
+        return True
+    return False if settled else None
+
+
+def _all_defined(engine: Engine, ring: Any, below: list[Any], classes: tuple[Class, ...], degree: int) -> bool:
+    """Whether beta_2 is seen to be defined on every element, one degree lower, on which the first Bockstein is 0.
+
+    It is on the monomials that lift and on the Bocksteins of what lies one degree lower still, where beta_2 is 0.
+    """
+    p = engine.prime
+    token = 1 if p == 2 else 0
+    images = Span(p)
+    for f in below:
+        images.put(_vector(ring.letter(token, f), p))
+    seen = Span(p)
+    for monomial in basis(p, _ring_of(classes), degree - 2, engine.budget) if degree >= 2 else []:
+        seen.put(_vector(ring.letter(token, encode(engine, ring, monomial)), p))
+    for f in below:
+        try:
+            higher(ring, 2, f)
+        except Undefined:
+            continue
+        seen.put(_vector(f, p))
+    return len(below) - images.rank == seen.rank
 
 
 def _ring_of(classes: tuple[Class, ...]) -> Localised:
@@ -108,6 +134,11 @@ class Span:
         pivot, c = next(iter(vector.items()))
         inverse = pow(c, -1, self.prime)
         self._rows[pivot] = {x: e * inverse % self.prime for x, e in vector.items()}
+
+    @property
+    def rank(self) -> int:
+        """The dimension."""
+        return len(self._rows)
 
     def holds(self, vector: dict[int, int]) -> bool:
         """Whether the vector lies in the span."""
