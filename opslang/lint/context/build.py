@@ -13,11 +13,12 @@ from attrs import define, evolve, field, frozen
 from opslang.lint.context.bundles import Bundles
 from opslang.lint.context.directives import Allowed, allowed_in, directives_of
 from opslang.lint.context.facts import Ledger, Spot
-from opslang.lint.context.names import class_names, names_of
-from opslang.lint.context.sayings import degree_written, from_formula, from_words, in_its_ring, numbers_said
+from opslang.lint.context.fundamental import at_prime, fundamental
+from opslang.lint.context.laid_down import LaidDown
+from opslang.lint.context.names import class_names, names_of, operations_in
+from opslang.lint.context.sayings import from_formula, from_words, in_its_ring, numbers_said
 from opslang.lint.context.script import Scripts, rule_of
 from opslang.lint.context.setting import ODD, Settings, is_hypothesis, learn, no_operations, particular_space
-from opslang.lint.context.spaces import SpaceSaid, mentioned
 from opslang.lint.context.stream import Paragraph, paragraphs
 from opslang.lint.formula import statements_of
 from opslang.lint.model import (
@@ -29,20 +30,19 @@ from opslang.lint.model import (
     Finding,
     Known,
     Operation,
-    Rule,
     Statement,
-    Sum,
 )
-from opslang.lint.numeric.rules_given import OF_THE_SPACE, defined, transgresses
+from opslang.lint.numeric.rules_given import OF_THE_SPACE, defined
 from opslang.lint.reading import Document, Formula
 from opslang.lint.rule import Unit
 from opslang.lint.symbolic.polynomial import Polynomial
-from opslang.lint.symbolic.values import polynomial_of
 
 _WORTH = re.compile(
     r"Sq|SQ|\\beta|β|\\iota|ι|\\chi|χ|\\delta|(?<![A-Za-z])[Pe](?=[\^_({])|P$|P\\?[,=+]|Q|[wv](?=[_{]).*=|(?<![A-Za-z])d[_(].*="
 )
 """What a formula about operations, their words, or characteristic classes has in its plain spelling."""
+_LAID_DOWN = re.compile(r"^.{1,24}=0[.,;]?$|^[a-z]\w*\^\{?\w+\}?=.{1,16}$")
+"""A relation between classes alone, such as x^2=0."""
 _DECLARES = re.compile(r"H\^|\||\\l?vert|deg|dim")
 INDEX = Polynomial.symbol("index")
 
@@ -81,10 +81,7 @@ class _Builder:
     pages: list[tuple[Paragraph, list[Spot]]] = field(factory=list)
     read: dict[int, tuple[Statement, ...]] = field(factory=dict)
     numbers: dict[int, frozenset[str]] = field(factory=dict)
-    rules: list[tuple[Spot, Rule, Formula]] = field(factory=list)
-    primitives: list[tuple[Spot, str]] = field(factory=list)
-    lowered: set[int] = field(factory=set)
-    """The sections that define Sq_i x as Sq^{n-i} x."""
+    laid: LaidDown = field(factory=LaidDown)
 
     def statements(self, formula: Formula) -> tuple[Statement, ...]:
         """The statements of a formula, read once."""
@@ -122,8 +119,8 @@ class _Builder:
             for formula, plain, spot in zip(paragraph.formulas, paragraph.plains, spots):
                 if _DECLARES.search(plain):
                     self._note_sayings(paragraph, formula, spot)
-                if "=" in plain and self._worth(plain):
-                    self._note_rules(formula, spot, is_hypothesis(paragraph, spot.offset))
+                if "=" in plain and (self._worth(plain) or _LAID_DOWN.search(plain)):
+                    self.laid.note(formula, self.statements(formula), spot, is_hypothesis(paragraph, spot.offset))
             self._note_lens(paragraph, spots)
 
     def _worth(self, plain: str) -> bool:
@@ -164,45 +161,7 @@ class _Builder:
             return
         rule = rule_of(f"{second.pop()} = beta_{group.order} {name}", NOWHERE)
         if rule is not None:
-            self.rules.append((spots[0], evolve(rule, source=OF_THE_SPACE), paragraph.formulas[0]))
-
-    def _note_rules(self, formula: Formula, spot: Spot, hypothesis: bool) -> None:
-        """Take note of what a formula lays down: d iota_4 = …, Sq^1 x = 0 behind an if, Q_0 = Sq^1."""
-        for statement in self.statements(formula):
-            if statement.kind not in ("relation", "definition") or len(statement.sides) != 2 or statement.sign == "≠":
-                continue
-            left, right = statement.sides
-            if not isinstance(left, Sum) or not isinstance(right, Sum) or statement.unread:
-                continue
-            rule = Rule(left, right, "the text", statement.at)
-            named = bool(names_of(left) or names_of(right))
-            if transgresses(rule) or (hypothesis and named) or defined(rule) is not None:
-                self.rules.append((spot, rule, formula))
-            if from_the_top(left, right):
-                self.lowered.add(spot.section)
-            counted = first_primitive(left, right)
-            if counted is not None:
-                self.primitives.append((spot, counted))
-
-    def _said_rules(self, formula: Formula, spot: Spot) -> list[Rule]:
-        """The rules that the text lays down before a formula in its section; a hypothesis holds in its paragraph.
-
-        A definition is one where it stands first: that the same name occurs again on one side defines nothing.
-        """
-        found = []
-        for at, rule, where in self.rules:
-            if at.section != spot.section or (at.paragraph, at.offset) > (spot.paragraph, spot.offset):
-                continue
-            lasting = transgresses(rule) or defined(rule) is not None
-            if (where is formula and rule.source != OF_THE_SPACE) or (not lasting and at.paragraph != spot.paragraph):
-                continue
-            found.append(rule)
-        return found
-
-    def _primitive(self, spot: Spot) -> str | None:
-        """Which of the primitives is Sq^1 here, as the section says."""
-        here = {counted for at, counted in self.primitives if at.section == spot.section}
-        return here.pop() if len(here) == 1 else None
+            self.laid.rules.append((spots[0], evolve(rule, source=OF_THE_SPACE), paragraph.formulas[0]))
 
     def _hypothesis(self, paragraph: Paragraph, spot: Spot) -> bool:
         """Whether a declaration stands behind an if."""
@@ -235,7 +194,7 @@ class _Builder:
         ]
         ranges = [condition for one in near for condition in self._conditions(one)]
         context = self.scripts.at(formula)
-        rules = (*self._said_rules(formula, spot), *context.rules)
+        rules = (*self.laid.rules_at(formula, spot), *context.rules)
         prime = context.prime if context.prime is not None else self.settings.prime_at(spot)
         return Known(
             prime=None if prime == ODD else prime,
@@ -259,9 +218,9 @@ class _Builder:
             found["prime"] = "odd"
         if is_hypothesis(paragraph, spot.offset):
             found["hypothesis"] = "yes"
-        if spot.section in self.lowered:
+        if spot.section in self.laid.lowered:
             found["squares"] = "lower"
-        counted = self._primitive(spot)
+        counted = self.laid.primitive_at(spot)
         if counted is not None:
             found["Q"] = counted
         return found
@@ -272,7 +231,10 @@ class _Builder:
                 yield from statement.conditions
 
     def _known(self, statement: Statement, spot: Spot, frame: Known) -> Known:
-        mentioned = [*class_names(statement), *(name for rule in frame.rules for name in names_of(rule.right))]
+        mentioned = [
+            *class_names(statement),
+            *(name for rule in frame.rules for side in (rule.left, rule.right) for name in names_of(side)),
+        ]
         names = {name.spelling + (f"^{name.label}" if name.label else ""): name for name in mentioned}
         classes: dict[str, ClassFact] = {}
         context = self.scripts.at(statement.formula)
@@ -281,13 +243,13 @@ class _Builder:
                 continue
             fact = context.facts.get(name.spelling) or self.ledger.fact(spelling, spot)
             if name.letter == "iota":
-                fact = self._fundamental(name, fact, spot)
+                fact = fundamental(name, fact, spot, self.settings)
             if fact is None:
                 fact = self._by_definition(name, frame, spot)
             if fact is not None:
                 classes[name.spelling] = self._somewhere(fact, spot)
         prime = self._prime(statement, frame, spot.section)
-        classes = {spelling: _at_prime(fact, prime) for spelling, fact in classes.items()}
+        classes = {spelling: at_prime(fact, prime) for spelling, fact in classes.items()}
         return evolve(
             frame, classes=classes, families=self._families(spot), prime=self._prime(statement, frame, spot.section)
         )
@@ -308,7 +270,11 @@ class _Builder:
 
     def _somewhere(self, fact: ClassFact, spot: Spot) -> ClassFact:
         """The fact with its space: a class with no space, where manifolds are spoken of, may be one of a manifold."""
-        if fact.source == "the author's comment" or not self.settings.manifolds:
+        if fact.source == "the author's comment":
+            return fact
+        if fact.space in self.settings.described:
+            return evolve(fact, space=f"{fact.space}, a space that the text describes")
+        if not self.settings.manifolds:
             return fact
         letter = fact.space[:1]
         if letter not in ("M", "N", "W") and (fact.space or spot.section not in self.settings.manifolds):
@@ -340,91 +306,6 @@ class _Builder:
         if self.bundles.chern:
             families["c"] = FamilyFact(INDEX + INDEX, None, self.bundles.at(spot, "c"), "Chern classes")
         return families
-
-    def _fundamental(self, name: ClassName, fact: ClassFact | None, spot: Spot) -> ClassFact | None:
-        """The fundamental class of a degree: its coefficients are those of the nearest space K(G, n) of that degree."""
-        degree = _index_degree(name)
-        if degree is None:
-            return fact
-        same, here, section = self.settings.spaces_near(spot)
-        near = next((space for space in same if _fits(space, degree)), None)
-        if near is not None and near.group is not None:
-            return _of_space(degree, near)
-        if fact is not None and (fact.order is not None or fact.order_text):
-            return fact if fact.degree is not None else evolve(fact, degree=degree)
-        for spaces in (here, section):
-            fitting = [space for space in spaces if space.kind == "K" and _fits(space, degree)]
-            groups = {space.group for space in fitting}
-            if len(groups) == 1:
-                return _of_space(degree, fitting[0])
-            if groups:
-                return ClassFact(degree, None, "", "several", "several spaces of this degree are named")
-        general = [space for space in (*here, *section) if space.kind == "K"]
-        if len({space.group for space in general}) == 1:
-            return _of_space(degree, general[0])
-        return fact or ClassFact(degree, None, "", "", "the notation of fundamental classes")
-
-
-def _at_prime(fact: ClassFact, prime: int | None) -> ClassFact:
-    """The fact, unless its space belongs to another prime."""
-    spaces = mentioned(fact.space)
-    own = spaces[0].group.prime if len(spaces) == 1 and spaces[0].group is not None else None
-    return fact if own is None or prime is None or own == prime else evolve(fact, space="a space at another prime")
-
-
-def _of_space(degree: Polynomial, space: SpaceSaid) -> ClassFact:
-    """The fundamental class of that degree with the coefficients of a space."""
-    assert space.group is not None
-    text = (
-        space.text
-        if space.kind == "K" and _fits(space, degree)
-        else f"K({space.text.partition(',')[0].removeprefix('K(')},{degree})"
-    )
-    return ClassFact(degree, space.group.order, space.group.text, text, "the space named beside it")
-
-
-def from_the_top(left: Sum, right: Sum) -> bool:
-    """Whether an equation is Sq_i x = Sq^{n-i} x."""
-    sides = [side.terms[0][1].factors for side in (left, right) if len(side.terms) == 1]
-    if len(sides) != 2 or not all(side and isinstance(side[0], Operation) for side in sides):
-        return False
-    first, second = sides[0][0], sides[1][0]
-    if not isinstance(first, Operation) or not isinstance(second, Operation):
-        return False
-    if first.head != "Sq" or second.head != "Sq" or first.lower is None or first.upper or len(second.upper) != 1:
-        return False
-    i, above = polynomial_of(first.lower), polynomial_of(second.upper[0])
-    return i is not None and above is not None and len(i.symbols) == 1 and above.symbols > i.symbols
-
-
-def first_primitive(left: Sum, right: Sum) -> str | None:
-    """The k of an equation Q_k = Sq^1 (or beta), for k = 0 and 1."""
-    sides = [side.terms[0][1].factors for side in (left, right) if len(side.terms) == 1]
-    if len(sides) != 2 or any(len(side) != 1 or not isinstance(side[0], Operation) for side in sides):
-        return None
-    first, second = sides[0][0], sides[1][0]
-    if not isinstance(first, Operation) or not isinstance(second, Operation) or first.head != "Q":
-        return None
-    is_first = second.head == "beta" or (second.head == "Sq" and len(second.upper) == 1 and second.upper[0].number == 1)
-    k = first.lower.number if first.lower is not None else None
-    return str(k) if is_first and k in (0, 1) else None
-
-
-def _fits(space: SpaceSaid, degree: Polynomial) -> bool:
-    if space.kind == "group":
-        return True
-    return space.kind == "K" and space.group is not None and degree_written(space.degree) == degree
-
-
-def _index_degree(name: ClassName) -> Polynomial | None:
-    return polynomial_of(name.index[0]) if len(name.index) == 1 else None
-
-
-def operations_in(statement: Statement) -> list[Operation]:
-    """The operations in a statement."""
-    from opslang.lint.context.names import nodes_in
-
-    return [node for node in nodes_in(statement) if isinstance(node, Operation)]
 
 
 __all__ = ["Learnt", "learnt_from"]

@@ -30,7 +30,14 @@ _WORDS = (
         ),
         "BSO",
     ),
-    (re.compile(r"\b(?:real )?vector bundles?\b|\bcharacteristic classes of bundles\b", re.IGNORECASE), "BO"),
+    (
+        re.compile(
+            r"(?<!oriented )(?<!orientable )(?<!spin )(?<!complex )\b(?:real )?vector bundles?\b|"
+            r"\bcharacteristic classes of bundles\b",
+            re.IGNORECASE,
+        ),
+        "BO",
+    ),
     (re.compile(r"\bChern class(?:es)?\b|\bcomplex (?:vector )?bundles?\b", re.IGNORECASE), "BU"),
 )
 _STRUCTURE = re.compile(r"complex spin structure", re.IGNORECASE)

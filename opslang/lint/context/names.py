@@ -12,6 +12,7 @@ from opslang.lint.model import (
     Conjugate,
     Group,
     Index,
+    Operation,
     Power,
     Product,
     Statement,
@@ -60,3 +61,8 @@ def names_of(side: Sum) -> list[ClassName]:
 def class_names(statement: Statement) -> list[ClassName]:
     """The class names in a statement."""
     return [node for node in nodes_in(statement) if isinstance(node, ClassName)]
+
+
+def operations_in(statement: Statement) -> list[Operation]:
+    """The operations in a statement."""
+    return [node for node in nodes_in(statement) if isinstance(node, Operation)]

@@ -72,6 +72,8 @@ _NUMBERS_SAID = re.compile(
 
 _RING = re.compile(r"\b(?:ring|cohomology|algebra|generated|generators?|polynomial|exterior)\b", re.IGNORECASE)
 
+_RING_SIGNS = re.compile(r"H\^\{?(?:\*|\\ast|\\bullet).*(?:\[|\\Lambda|\\bigwedge)")
+
 Reader = Callable[[Formula], Sequence[Statement]]
 
 
@@ -149,9 +151,10 @@ def in_its_ring(saying: Saying, paragraph: Paragraph) -> Saying:
     if saying.space or saying.degree is None:
         return saying
     start, end = paragraph.sentences[saying.spot.sentence]
-    if not _RING.search(paragraph.text, start, end):
+    signs = re.findall(F, paragraph.text[start:end])
+    if not _RING.search(paragraph.text, start, end) and not any(_RING_SIGNS.search(paragraph.plain(s)) for s in signs):
         return saying
-    for sign in re.findall(F, paragraph.text[start:end]):
+    for sign in signs:
         for space in named_in(paragraph.plain(sign)):
             generic = universal(space, saying.degree)
             if generic is not None:

@@ -82,6 +82,8 @@ class Settings:
     """The sections that say their dimension in numbers."""
     squares_in: set[int] = field(factory=set)
     powers_in: set[int] = field(factory=set)
+    described: set[str] = field(factory=set)
+    """Letters of spaces that the text describes, so that they are not just any."""
     dimensions: set[str] = field(factory=set)
     """Letters that stand for dimensions."""
 
@@ -121,6 +123,7 @@ class Settings:
 def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: int, section: int) -> None:
     """Take note of what a paragraph says; `spots` are those of its formulas, `at` its number."""
     text = paragraph.text
+    _note_described(settings, paragraph)
     settings.bundles = settings.bundles or bool(_BUNDLES.search(text))
     if _MANIFOLD.search(text):
         settings.manifolds.add(section)
@@ -143,6 +146,35 @@ def learn(settings: Settings, paragraph: Paragraph, spots: Sequence[Spot], at: i
             settings.spaces.append(SpaceAt(spot, SpaceSaid("group", paragraph.plain(group[1]), "", said)))
     found += _primes_in_words(settings, paragraph, at, section)
     settings.primes += sorted(found, key=lambda said: said.spot.offset)
+
+
+_CALLED = re.compile(
+    r"([\ue000-\uf7ff])\s+(?:be|is|denotes?|stands for|for)\s+(the|an?|any|some|our|"
+    r"this)\s+([^.;\ue000-\uf7ff]{0,60})([\ue000-\uf7ff])?",
+    re.IGNORECASE,
+)
+_ANY_SPACE = re.compile(
+    r"(?:(?:arbitrary|finite|pointed|connected|simply|topological|based|nice|CW|cell)[- ]*)*(?:spaces?|"
+    r"complex(?:es)?|simplicial sets?|manifolds?)"
+    r"(?!\s+(?:with|whose|such|having|obtained|that|which|of))",
+    re.IGNORECASE,
+)
+_MANIFOLD_NOUN = re.compile(r"(?:\S+ ){0,4}manifold", re.IGNORECASE)
+
+
+def _note_described(settings: Settings, paragraph: Paragraph) -> None:
+    """Letters said to be a particular space: `let X be the cofibre of …`, `X = S^2 ∪ e^4`."""
+    for plain in paragraph.plains:
+        letter, sign, _ = plain.partition("=")
+        if sign and re.fullmatch(r"[A-Z](?:_\{?\w\}?)?'*", letter):
+            settings.described.add(letter)
+    for one in _CALLED.finditer(paragraph.text):
+        letter = paragraph.plain(one[1])
+        if not re.fullmatch(r"[A-Z](?:_\{?\w\}?)?'*", letter):
+            continue
+        anything = one[2].lower() in ("a", "an", "any", "some") and _ANY_SPACE.match(one[3])
+        if not anything and not _MANIFOLD_NOUN.match(one[3]):
+            settings.described.add(letter)
 
 
 def _note_sizes(settings: Settings, paragraph: Paragraph, section: int) -> None:
@@ -193,7 +225,7 @@ _PARTICULAR = re.compile(
 )
 _HYPOTHESIS = re.compile(
     r"\b(?:if|when|whenever|suppose|assume|provided|such that|with|unless|satisfying|satisfies|let|put|"
-    r"requires?|needs)\b"
+    r"requires?|needs|since|because|as|once)\b"
     r"(?:\s+(?:that|also|moreover|we have|both))*\s*(?:[\ue000-\uf7ff]\s*(?:,|and|, and)\s*)*$",
     re.IGNORECASE,
 )

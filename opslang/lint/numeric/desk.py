@@ -20,7 +20,7 @@ from opslang.ir.tree import Class
 from opslang.lint.context.names import names_of
 from opslang.lint.context.sayings import only_name
 from opslang.lint.formula.closed import to_surface
-from opslang.lint.model import ClassFact, ClassName, Known, Sum
+from opslang.lint.model import ClassFact, ClassName, Known, Rule, Sum
 from opslang.lint.numeric.bundles import KINDS, family_of, has_space, in_space, said_space, undualised
 from opslang.lint.numeric.naming import Naming, Unnamed
 from opslang.lint.numeric.rules_given import (
@@ -207,10 +207,15 @@ def _decide(left: Sum, right: Sum, known: Known, numbers: dict[str, int], why: b
     classes = frozenset(name.spelling for side in (left, right) for name in names_of(side))
     around = _circumstances(left, right, known) if classes else ""
     special, of_class = (around, False) if around else (special, of_class)
-    if not special and other_rules(known, classes):
+    if not special and any(_says_something(rule, known, numbers) for rule in other_rules(known, classes)):
         of_class = False
         special = "the draft has rules for its classes that are not worked in"
     return evolve(_read(outcome, session, statement, special, why), of_class=of_class)
+
+
+def _says_something(rule: Rule, known: Known, numbers: dict[str, int]) -> bool:
+    """Whether a rule is more than what holds for all classes anyway."""
+    return _decide(rule.left, rule.right, evolve(known, rules=()), numbers, False, 0).answer != "true"
 
 
 def _prepared(side: Sum, known: Known, numbers: Mapping[str, int], naming: Naming, first_primitive: int) -> Sum:

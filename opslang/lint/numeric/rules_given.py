@@ -322,13 +322,14 @@ def spelled_out(tree: Sum, known: Known) -> Sum:
     return tree
 
 
-def other_rules(known: Known, classes: frozenset[str]) -> bool:
-    """Whether rules are said of these classes that are not worked in."""
+def other_rules(known: Known, classes: frozenset[str]) -> list[Rule]:
+    """The rules said of these classes that are not worked in."""
     done = killed(known)
+    found = []
     for rule in known.rules:
         if transgresses(rule) or defined(rule) is not None:
             continue
         names = {name.spelling for side in (rule.left, rule.right) for name in names_of(side)}
         if names & classes and not names <= done:
-            return True
-    return False
+            found.append(rule)
+    return found
