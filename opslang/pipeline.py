@@ -16,11 +16,12 @@ from opslang.ground.source import Source, Span
 from opslang.ir.measure import element_degree, element_excess
 from opslang.ir.order import word_key
 from opslang.ir.outcome import Kind, Link, Outcome, Verdict, changed
-from opslang.ir.tree import Class, ClassElement, Element, OperationElement
+from opslang.ir.tree import ClassElement, Element, OperationElement
 from opslang.meaning import statements
+from opslang.meaning.homes import lost, one_home
 from opslang.meaning.indices import number
 from opslang.meaning.lower import Lowering
-from opslang.meaning.scope import Scope, spelled
+from opslang.meaning.scope import Scope
 from opslang.meaning.spaces import space_value
 from opslang.meaning.value import Sort, Value, as_sort
 from opslang.report.diagnostic import Diagnostic, Refusal, error, note
@@ -138,7 +139,7 @@ class Session:
                 lowering.diagnostics += statements.declare(statement, scope)
             case sf.AbbreviateStatement():
                 value = statements.abbreviate(statement, scope, lowering)
-                self._one_name_one_class(value.classes, statement.span)
+                one_home(self.scope, value.classes, statement.span)
                 return self._described(changed(blank, degree=value.degree), (value,))
             case sf.OnStatement():
                 lowering.diagnostics += statements.on(statement, scope)
@@ -163,7 +164,7 @@ class Session:
 
     def _expression(self, statement: sf.ExpressionStatement, blank: Outcome, lowering: Lowering) -> Outcome:
         value = as_sort_or_class(lowering.sum(statement.body), "class", statement.body.span)
-        self._one_name_one_class(value.classes, statement.span)
+        one_home(self.scope, value.classes, statement.span)
         engine = self.engine()
         engine.start()
         element = self.normal(value)
@@ -203,30 +204,6 @@ class Session:
             space = " x ".join([f"K(Z/{self.scope.prime}, {n})" for n in sorted([of.degree for of in classes])])
         return "class", space
 
-    def _one_name_one_class(self, classes: frozenset[Class], span: Span) -> None:
-        """Refuse classes that cannot stand in one expression: of one name, or of two spaces that are no product."""
-        if self.scope.lost and any(of.letter == "iota" for of in classes):
-            raise Refusal(lost(span))
-        if len(classes) < 2:
-            return
-        seen: dict[tuple[str, int | None, int], Class] = {}
-        homes: dict[int, Class] = {}
-        for of in classes:
-            key = (of.letter, of.index, of.primes)
-            if key in seen:
-                words = f"{spelled(key)} stands here for two different classes, from different spaces or declarations"
-                raise Refusal(error("classes-of-different-spaces", words, span, "give one of them another name"))
-            seen[key] = of
-            if of.ring is None and of.letter != "iota":
-                continue
-            other = homes.setdefault(of.factor, of)
-            if other.ring != of.ring and not _thom(other, of):
-                first, second = (spelled((c.letter, c.index, c.primes)) for c in (other, of))
-                words = f"{first} and {second} are classes of different spaces"
-                raise Refusal(
-                    error("classes-of-different-spaces", words, span, "choose their product as the space, or a map")
-                )
-
     # --- relations ------------------------------------------------------------------------------
 
     def _sides(self, statement: sf.RelationStatement, lowering: Lowering) -> tuple[Value, ...]:
@@ -237,7 +214,7 @@ class Session:
                 first, second = ("an operation", "a class") if sort == "operation" else ("a class", "an operation")
                 raise Refusal(error("sorts-differ", f"the left side is {first}, and this side is {second}", side.span))
         lifted = tuple([as_sort_or_class(value, sort, side.span) for value, side in zip(values, statement.sides)])
-        self._one_name_one_class(lifted[0].classes.union(*[value.classes for value in lifted[1:]]), statement.span)
+        one_home(self.scope, lifted[0].classes.union(*[value.classes for value in lifted[1:]]), statement.span)
         return lifted
 
     def _relation(self, statement: sf.RelationStatement, blank: Outcome, lowering: Lowering) -> Outcome:
@@ -419,20 +396,6 @@ def _kind(statement: sf.Statement) -> Kind:
 def as_sort_or_class(value: Value, sort: Sort, span: Span) -> Value:
     """A value, scalars lifted to the sort of their neighbours; to a class where they stand alone."""
     return as_sort(value, "class" if sort == "scalar" else sort, span)
-
-
-def _thom(one: Class, other: Class) -> bool:
-    """Whether one is the Thom class over the space of the other."""
-    if one.ring is None and other.ring is None:
-        return True
-    pairs = ((one, other), (other, one))
-    return any(b.ring is not None and getattr(a.ring, "base", None) == b.ring for a, b in pairs)
-
-
-def lost(span: Span) -> Diagnostic:
-    """What is said where the current space is needed and the last `on` failed."""
-    words = "the last `on` could not be read, so there is no current space"
-    return error("no-space", words, span, "mend that line first")
 
 
 def _bare_zero(value: Value) -> bool:

@@ -22,6 +22,14 @@ FRONT_CODES: dict[str, Code] = {
         ),
         example="$ ln -s round.ops round.ops; opslang run round.ops",
     ),
+    "unwritable-file": Code(
+        title="A mended draft cannot be written",
+        explanation=(
+            "`opslang lint --mend` writes the mended draft beside the old one and then puts it in its place; the folder "
+            "or the file does not allow it.  The draft is left as it was."
+        ),
+        example="$ chmod a-w drafts; opslang lint --mend drafts/paper.tex",
+    ),
     "folder-for-file": Code(
         title="A folder stands where a script is wanted",
         explanation=(

@@ -153,9 +153,10 @@ MEANING_CODES: dict[str, Code] = {
         "on BSpin(10)",
     ),
     "ambiguous-class": Code(
-        "a class name that several factors have",
-        "In a product of spaces two factors have a class of this name. Name the classes: RP^5(a) x RP^2(b).",
-        "on RP^5 x RP^2\nx",
+        "A class name that several factors have",
+        "Retired: in a product of spaces the classes of a later factor carry primes where an earlier one has the same "
+        "names, x and x'.",
+        "",
     ),
     "bundle": Code(
         "a bundle that cannot be, or a class that it does not have",
