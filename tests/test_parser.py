@@ -180,7 +180,7 @@ MENDED = [
     ("Sq^{nm} x", "run-of-letters", "nm", "n m"),
     ("Sq 4", "index-place", "Sq 4", "Sq^4"),
     ("Sq4 x", "index-place", "Sq4", "Sq^4"),
-    ("Sq_4 x", "index-place", "Sq_", "Sq^"),
+    ("Sq_4 x", "index-place", "Sq_4", "Sq^4"),
     ("P 3", "index-place", "P 3", "P^3"),
     (r"\mathrm{Sq} 12", "index-place", r"\mathrm{Sq} 12", r"\mathrm{Sq}^{12}"),
     ("Q2", "index-place", "Q2", "Q_2"),

@@ -69,6 +69,14 @@ SYNTAX_CODES: dict[str, Code] = {
         explanation="Only squares and powers take several indices: `Sq^{4,2,1}` is Sq^4 Sq^2 Sq^1.",
         example="iota_{3,2}",
     ),
+    "index-numbers": Code(
+        title="Numbers side by side in an index",
+        explanation=(
+            "`Sq^{4 2}` could be the square of degree 8, that of degree 42, or the word Sq^4 Sq^2, so it is not read: "
+            "write `Sq^{4*2}`, `Sq^{42}` or `Sq^{4,2}`.  A number beside a letter is a product: `Sq^{2n}`."
+        ),
+        example="Sq^{4 2 1} iota_5",
+    ),
     "index-not-integer": Code(
         title="An index that is no integer",
         explanation="Index positions hold integers; a negative power, as in 2^{-1}, is none.",

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from typing import Any
 
 from lark.visitors import Transformer_NonRecursive
@@ -10,10 +11,13 @@ from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
 from opslang.syntax.indices import binomial, power_of, product_of, sum_of
 from opslang.syntax.parts import Part, Sign, nodes_of, single, span_of
+from opslang.syntax.spelling import shown
 
 
 class IndexRules(Transformer_NonRecursive):  # type: ignore[type-arg]
     """`argument`, `index` and what they are made of; each gives a `Part`."""
+
+    text: str
 
     def argument(self, children: list[Any]) -> Part:
         first = children[0]
@@ -40,6 +44,9 @@ class IndexRules(Transformer_NonRecursive):  # type: ignore[type-arg]
         return sum_of(signs, terms, span_of(children))
 
     def index_term(self, children: list[Any]) -> Part:
+        side = _side_by_side(children, self.text)
+        if side is not None:
+            raise side
         return product_of(nodes_of(children), span_of(children))
 
     def index_power(self, children: list[Any]) -> Part:
@@ -79,3 +86,25 @@ class IndexRules(Transformer_NonRecursive):  # type: ignore[type-arg]
             raise Refusal(error("misplaced-script", "the bars of a degree hold one class", of.span))
         span = span_of(children)
         return Part(s.IndexExpression("length", (of,), span), span)
+
+
+_OF_OPERATION = re.compile(r"(?:Sq|P)[ }]*\^\s*[{(][\d\s,]*\Z")
+
+
+def _side_by_side(children: list[Any], text: str) -> Refusal | None:
+    """The refusal of `{4 2 1}`: whether a product, a list or one number is meant cannot be told."""
+    numbers = [isinstance(child, Part) and text[child.span[0] : child.span[0] + 1].isdigit() for child in children]
+    at = next((at for at in range(1, len(numbers)) if numbers[at - 1] and numbers[at]), None)
+    if at is None:
+        return None
+    end = next((end for end in range(at, len(numbers)) if not numbers[end]), len(numbers))
+    span = span_of(children[at - 1 : end])
+    pieces = [text[slice(*child.span)] for child in children[at - 1 : end]]
+    written = text[span[0] : span[1]]
+    message = f"numbers stand side by side in an index: {shown(written)}"
+    if _OF_OPERATION.search(text, 0, span[0]) and len(written) < 40:
+        mend = ",".join(pieces)
+        return Refusal(error("index-numbers", message, span, f"several indices are written {{{mend}}}", mend))
+    return Refusal(
+        error("index-numbers", message, span, "one number stands here; a product of numbers is written 4 * 2")
+    )

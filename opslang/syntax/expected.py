@@ -126,6 +126,8 @@ def _special(reading: Reading, at: int, accepted: Set[str]) -> Diagnostic | None
             inner = reading.text[token.end : reading.tokens[end].start]
             message = "braces hold indices; terms are put together with ( )"
             return error("expected", message, (token.start, reading.tokens[end].end), f"write ({inner})", f"({inner})")
+    if token.kind == "COMMA":
+        return _bare_indices(reading, at)
     if token.kind == "LETTER_H" and "IN" in accepted:
         return error("expected", "expected `in` before H", span, "", "in " + reading.text[span[0] : span[1]])
     if token.kind == "UNDER" and at and reading.tokens[at - 1].kind == "LETTER_H":
@@ -137,6 +139,23 @@ def _special(reading: Reading, at: int, accepted: Set[str]) -> Diagnostic | None
     if token.kind == "EQUALS" and reading.tokens[0].kind == "PRIME_WORD":
         return error("expected", "the prime follows its word at once", span, "it is written: prime 3", "")
     return None
+
+
+def _bare_indices(reading: Reading, at: int) -> Diagnostic | None:
+    """`Sq^4,2,1`: several indices without their braces."""
+    tokens = reading.tokens
+    kinds = [token.kind for token in tokens[max(at - 3, 0) : at]]
+    if kinds[1:] != ["CARET", "NUMBER"] or kinds[0] not in ("SQ", "PP"):
+        return None
+    end = at
+    while [token.kind for token in tokens[end : end + 2]] == ["COMMA", "NUMBER"]:
+        end += 2
+    if end == at:
+        return None
+    indices = ",".join(token.value for token in tokens[at - 1 : end] if token.kind == "NUMBER")
+    mend = f"{{{indices}}}"
+    help = f"write {tokens[at - 3].value}^{mend}"
+    return error("expected", "several indices stand in braces", (tokens[at - 1].start, tokens[end - 1].end), help, mend)
 
 
 def _partner(tokens: list[Token], at: int) -> int | None:

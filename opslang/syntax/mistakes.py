@@ -40,7 +40,7 @@ def mistakes(reading: Reading) -> list[Diagnostic]:
         slip
         for at, token in enumerate(tokens)
         if (check := (_AMONG_SPACES if at in spaces else _CHECKS).get(token.kind)) is not None
-        and (not indices[at] or token.kind == "RUN")
+        and (not indices[at] or token.kind in ("RUN", "COMMA"))
         and (slip := check(reading, at)) is not None
     )
     return list(islice(found, MANY))
@@ -179,11 +179,26 @@ def _square(reading: Reading, at: int) -> Diagnostic | None:
     if other.kind == "NUMBER":
         return _index_place(reading, token, other, "^", other.end, other.value)
     if other.kind == "UNDER":
-        message = f"the index of {token.value} stands above, behind ^"
-        span = (token.start, max(other.end, token.end))
-        mend = f"{_written(reading, token)}^" if other.end > other.start else None
-        return error("index-place", message, span, f"write {token.value}^4", mend)
+        return _lowered(reading, at)
     return None
+
+
+def _lowered(reading: Reading, at: int) -> Diagnostic:
+    """`Sq_4`, `Sq_{12}`, `Sq₄`: an index that stands below instead of above."""
+    token, under = reading.tokens[at : at + 2]
+    message = f"the index of {token.value} stands above, behind ^"
+    first = reading.tokens[at + 2] if at + 2 < len(reading.tokens) else None
+    last = first
+    if first is not None and first.kind == "LBRACE":
+        last = next((one for one in islice(reading.tokens, at + 3, None) if one.kind == "RBRACE"), None)
+    if first is None or last is None:
+        span = (token.start, max(under.end, token.end))
+        return error("index-place", message, span, f"write {token.value}^n with its index for n")
+    index = first.value if first is last else reading.text[first.start : last.end]
+    if first.kind == "LBRACE" and first.end == first.start:  # a Unicode script, with braces of no width
+        index = "{" + "".join(one.value for one in reading.tokens[at + 3 : reading.tokens.index(last)]) + "}"
+    mend = f"{_written(reading, token)}^{index}"
+    return error("index-place", message, (token.start, last.end), f"write {mend}", mend)
 
 
 def _below(reading: Reading, at: int) -> Diagnostic | None:
@@ -244,6 +259,14 @@ def _doubled(reading: Reading, at: int) -> Diagnostic | None:
     return error("expected", meaning, (token.start, other.end), f"write {mend}", mend)
 
 
+def _comma(reading: Reading, at: int) -> Diagnostic | None:
+    """`Sq^{2,}`."""
+    token, other = reading.tokens[at], _next(reading, at)
+    if other is None or other.kind != "RBRACE":
+        return None
+    return error("expected", "no index follows the comma", (token.start, other.end), "leave the comma out", "}")
+
+
 def _let(reading: Reading, at: int) -> Diagnostic | None:
     """A name that is taken, in a `let`."""
     for token in islice(reading.tokens, 1, None):
@@ -288,6 +311,7 @@ _CHECKS: dict[str, _Check] = {
     "EQUALS": _doubled,
     "STAR": _doubled,
     "LET": _let,
+    "COMMA": _comma,
     **dict.fromkeys(_LETTERS, _against),
 }
 _AMONG_SPACES: dict[str, _Check] = {"RUN": _space_number, **dict.fromkeys(_LETTERS - {"LETTER_X"}, _space_number)}

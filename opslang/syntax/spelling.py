@@ -205,13 +205,10 @@ class Reading:
         elif self._spatial and name[0].isupper():
             self._spatial_word(name, start, end)
         else:
-            self._fault(
-                "unknown-command",
-                f"the TeX command {shown(text)} is not known",
-                start,
-                end,
-                "a class is a letter or a Greek letter, with an index and primes",
-            )
+            close = next((known for known in COMMANDS if known.lower() == name.lower()), None)
+            mend = None if close is None else f"\\{close}"
+            help = f"write {mend}" if mend else "a class is a letter or a Greek letter, with an index and primes"
+            self._fault("unknown-command", f"the TeX command {shown(text)} is not known", start, end, help, mend)
 
     # --- scripts ---------------------------------------------------------------------------------
 
