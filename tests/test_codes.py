@@ -19,6 +19,7 @@ NAME = re.compile(r"[a-z]+(-[a-z0-9]+)*\Z")
 #: Names that no input shows by rights; each has a test of its own.
 SHOWN_ELSEWHERE = {
     "worker-lost": "test_robustness.py",
+    "unwritable-file": "test_lint_front.py",
     "no-such-result": "test_codes.py",
     "internal-fault": "test_codes.py",
     "engines-disagree": "test_codes.py",

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import json
 import os
 import stat
@@ -166,6 +167,24 @@ def test_mends_are_written_once_and_nothing_else_changes(tmp_path: Path) -> None
     assert stat.S_IMODE(path.stat().st_mode) == 0o640
     assert not mend(lint(str(path)).findings)
     assert sorted(os.listdir(tmp_path)) == ["draft.tex"]
+
+
+def test_a_mend_that_cannot_be_written_is_said(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, capfdbinary: pytest.CaptureFixture[bytes]
+) -> None:
+    from opslang.front.cli import opslang as command
+
+    def full(*arguments: object) -> None:
+        raise OSError(errno.ENOSPC, os.strerror(errno.ENOSPC))
+
+    text = "\\newcommand{\\Sq}{\\mathrm{Sq}}\nWe have $\\Sq^12=\\Sq^4\\Sq^8+\\Sq^{11}\\Sq^1+\\Sq^{10}\\Sq^2$.\n"
+    path = tmp_path / "draft.tex"
+    path.write_text(text, encoding="utf-8")
+    monkeypatch.setattr("opslang.front.mend.os.replace", full)
+    command.main(["lint", "--no-cache", "--mend", str(path)], standalone_mode=False)
+    assert b"error: unwritable-file: the file cannot be written: no space left" in capfdbinary.readouterr().err
+    assert path.read_text(encoding="utf-8") == text
+    assert os.listdir(tmp_path) == ["draft.tex"]
 
 
 def test_a_missing_comma_is_put_in(tmp_path: Path) -> None:

@@ -28,7 +28,7 @@ FRONT_CODES: dict[str, Code] = {
             "`opslang lint --mend` writes the mended draft beside the old one and then puts it in its place; the folder "
             "or the file does not allow it.  The draft is left as it was."
         ),
-        example="$ chmod a-w drafts; opslang lint --mend drafts/paper.tex",
+        example="",
     ),
     "folder-for-file": Code(
         title="A folder stands where a script is wanted",

@@ -154,9 +154,9 @@ MEANING_CODES: dict[str, Code] = {
     ),
     "ambiguous-class": Code(
         "A class name that several factors have",
-        "Retired: in a product of spaces the classes of a later factor carry primes where an earlier one has the same "
-        "names, x and x'.",
-        "",
+        "In a product of spaces the classes of a later factor carry primes where an earlier one has the same names, x "
+        "and x'; that is seen to up to degree 64. Beyond it give the classes different letters.",
+        "space R = F_2[u:80] / (u^2) where Sq u = u\non R x R\nu",
     ),
     "bundle": Code(
         "a bundle that cannot be, or a class that it does not have",

@@ -10,7 +10,7 @@ from attrs import evolve, frozen
 from opslang.ir.tree import Class
 from opslang.spaces.family import Family, NotKnown, Polynomial, Powers, Rule
 
-LOW = 16
+LOW = 64
 """Names of classes up to this degree are compared."""
 
 
