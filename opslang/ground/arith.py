@@ -53,7 +53,8 @@ _WITNESSES = (2, 3, 5, 7, 11, 13, 17, 19, 23, 29, 31, 37)
 
 
 def is_prime(n: int) -> bool:
-    """Whether n is a prime, for n < 3.3e24 (Miller and Rabin with the first twelve primes as bases; Sorenson and Webster 2017)."""
+    """Whether n is a prime, for n < 3.3e24 (Miller and Rabin with the first twelve primes as bases; Sorenson and
+    Webster 2017)."""
     if n < 2:
         return False
     for q in _WITNESSES:

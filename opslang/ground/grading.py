@@ -29,7 +29,8 @@ def excess(word: Word, p: int) -> int:
     """The excess of an admissible word; 0 for the empty word.
 
     p = 2: e(I) = 2 i_1 - |I|; p odd: e(I) = 2p s_1 + 2 eps_0 - |I|, where s_1 is the leftmost power and
-    eps_0 = 1 when the word begins with a Bockstein.  Source: Serre 1953; Cartan 1954 (convention of the language reference).
+    eps_0 = 1 when the word begins with a Bockstein.  Source: Serre 1953; Cartan 1954 (convention of the language
+    reference).
     """
     if not word:
         return 0
@@ -41,7 +42,8 @@ def excess(word: Word, p: int) -> int:
 
 
 def is_admissible(word: Word, p: int) -> bool:
-    """Whether the word is admissible: i_j >= 2 i_{j+1} (p = 2); s_j >= p s_{j+1} + eps_j and no two Bocksteins side by side (p odd)."""
+    """Whether the word is admissible: i_j >= 2 i_{j+1} (p = 2); s_j >= p s_{j+1} + eps_j and no two Bocksteins side
+    by side (p odd)."""
     if p == 2:
         values = [token if token > 0 else 1 for token in word]
         return all(a >= 2 * b for a, b in zip(values, values[1:]))
