@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import pytest
 
+from opslang import Script
 from opslang.ground.source import Source
 from opslang.report.diagnostic import Diagnostic
+from opslang.syntax import surface as s
 from opslang.syntax.parser import parse
 
 
@@ -61,3 +63,50 @@ def test_numbers_side_by_side_are_no_product(text: str) -> None:
 )
 def test_other_products_in_an_index_are_read(text: str) -> None:
     assert parse(Source("a.ops", text))[1] == ()
+
+
+# --- the integers localised at a prime -----------------------------------------------------------
+
+
+@pytest.mark.parametrize("text", ["Z_(2)", "Z_{(2)}", r"\mathbb{Z}_{(2)}", "ℤ₍₂₎", r"\Z_{\left(2\right)}", "Z_( 2 )"])
+def test_the_localised_integers_are_no_cyclic_group(text: str) -> None:
+    statement, diagnostics = parse(Source("a.ops", f"on K({text}, 3)"))
+    group = s.Coefficients((s.Summand(0, 1, local=2),))
+    assert statement == s.OnStatement(s.EilenbergMacLane(group, 3)) and not diagnostics
+
+
+@pytest.mark.parametrize("text", ["Z_2", "Z_{2}", "ℤ₂", r"\mathbb{Z}_2"])
+def test_an_index_without_brackets_is_an_order(text: str) -> None:
+    group = s.Coefficients((s.Summand(2),))
+    assert parse(Source("a.ops", f"on K({text}, 3)"))[0] == s.OnStatement(s.EilenbergMacLane(group, 3))
+
+
+@pytest.mark.parametrize("number", ["4", "0", "1", "n"])
+def test_localised_at_a_prime_only(number: str) -> None:
+    assert errors(f"on K(Z_({number}), 3)")[0].name == "group-number"
+
+
+def test_at_its_own_prime_it_counts_as_the_integers() -> None:
+    # H^*(K(Z_(p), n); F_p) is that of K(Z, n): common practice.
+    local, whole = Script(2, "K(Z_(2), 3)"), Script(2, "K(Z, 3)")
+    assert local.run("series to 12")[0].items == whole.run("series to 12")[0].items
+    assert local._session.scope.space is not None and local._session.scope.space.text == "K(Z_(2), 3)"
+    assert str(local.normalise("Sq^1 iota_3")) == "0" and str(local.normalise("Sq^2 iota_3")) == "Sq^2 iota_3"
+
+
+def test_at_another_prime_it_is_nothing() -> None:
+    # K(Z_(p), n) has no mod q cohomology, q another prime: multiplication by q is invertible.  Common practice.
+    script = Script(3, "K(Z_(2)^2, 3)")
+    assert script._session.scope.space is not None and script._session.scope.space.text == "K(Z_(2)^2, 3)"
+    assert str(script.normalise("iota_3'")) == "0"
+    (declared,) = script.run("let z in H^3(X; Z_(2))")
+    assert [d.name for d in declared.diagnostics] == ["zero-at-the-prime"]
+
+
+def test_declared_classes_are_reductions_of_localised_ones() -> None:
+    assert str(Script(2, let="let z in H^3(X; Z_(2))").normalise("Sq^1 z")) == "0"
+
+
+def test_the_transgression_keeps_the_group() -> None:
+    (outcome,) = Script(2, "K(Z_(2), 3)").run("transgression(Sq^2 iota_3)")
+    assert outcome.space == "K(Z_(2), 4)"

@@ -20,7 +20,7 @@ from opslang.meaning.canonical import Arithmetic
 from opslang.spaces.characteristic import Classifying, Pontryagin
 from opslang.spaces.family import Family
 from opslang.spaces.projective import Lens, Projective
-from opslang.spaces.space import Factor, Localised, SpaceValue, localise
+from opslang.spaces.space import Factor, Localised, SpaceValue, class_order, localise
 from opslang.spaces.spin import Spin
 from opslang.tables.bockstein import lifts
 from opslang.tables.engine import Engine
@@ -39,7 +39,7 @@ def _simple(space: SpaceValue, here: Localised, prime: int) -> bool:
         if isinstance(factor, Factor):
             free = factor.order == 0 and factor.degree <= 2
             line = factor.degree == 1 and p_part(factor.order, prime) <= 1 if factor.order else False
-            absent = bool(factor.order) and not p_part(factor.order, prime)
+            absent = class_order(factor.order, prime, factor.local) is None
             if not (free or line or absent):
                 return False
     return all(_simple_family(family, prime) for family in here.families)

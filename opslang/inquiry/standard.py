@@ -128,7 +128,8 @@ def _coefficients(source: SpaceValue, target: SpaceValue, prime: int) -> Image |
     one, other = source.factors[0], target.factors[0]
     if not (isinstance(one, Factor) and isinstance(other, Factor)) or one.degree != other.degree:
         return None
-    if one != other and (not other.order or one.order % other.order):
+    onto = one == other or (other.order and not one.order % other.order and one.local in (0, prime))
+    if not onto:
         return None
     here, there = localise(source, prime), localise(target, prime)
     if not here.classes or not there.classes:

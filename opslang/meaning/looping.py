@@ -37,7 +37,8 @@ def value(lowering: Lowering, factor: sf.Construction) -> Value:
     if body.sort != "class":
         raise Refusal(error("sorts-differ", f"{factor.head} takes a class, and this is an operation", factor.body.span))
     element: ClassElement = arithmetic(inner).evaluate(body)
-    orders, n = _space(inner, body, factor)
+    factors = _factors(inner, body, factor)
+    n = factors[0].degree
     up = factor.head == "transgression"
     if not up and n == 1:
         message = "the suspension leads from K(G, n) to K(G, n-1), and here n is 1"
@@ -48,23 +49,24 @@ def value(lowering: Lowering, factor: sf.Construction) -> Value:
         moved = _transgressed(monomial, element.prime, factor) if up else _suspended(monomial, factor)
         if moved is not None:
             terms.append((moved, c))
-    live_in(lowering, eilenberg_maclane_value(orders, n + shift), factor.span)
+    moved_factors = tuple([evolve(one, degree=n + shift) for one in factors])
+    live_in(lowering, eilenberg_maclane_value(moved_factors), factor.span)
     degree = None if body.degree is None else body.degree + shift
     return element_value(ClassElement(element.prime, tuple(terms)), degree, factor.span)
 
 
-def _space(lowering: Lowering, body: Value, factor: sf.Construction) -> tuple[tuple[int, ...], int]:
-    """The orders and the degree of the K(G, n) that the class lives in.  Refusal where it is none."""
+def _factors(lowering: Lowering, body: Value, factor: sf.Construction) -> tuple[Factor, ...]:
+    """The factors of the K(G, n) that the class lives in, one at least.  Refusal where it is none."""
     here: SpaceValue | None = lowering.home or lowering.scope.space
     plain = all(of.letter == "iota" and of.ring is None for of in body.classes)
     if here is None:
         degrees = {of.degree for of in body.classes}
         if len(degrees) == 1 and plain:
-            return (lowering.scope.prime,), degrees.pop()
+            return (Factor(lowering.scope.prime, degrees.pop()),)
     else:
-        factors = [f for f in here.factors if isinstance(f, Factor)]
+        factors = tuple([f for f in here.factors if isinstance(f, Factor)])
         if plain and len(factors) == len(here.factors) and len({f.degree for f in factors}) == 1:
-            return tuple([f.order for f in factors]), factors[0].degree
+            return factors
     message = f"{factor.head} is that of K(G, n) -> * -> K(G, n+1), and this is no class of one K(G, n)"
     raise Refusal(error("not-transgressive", message, factor.span, "choose the space first: on K(Z/2, 3)"))
 

@@ -15,9 +15,9 @@ from opslang.syntax import surface as sf
 MOST_FACTORS = 1_000
 
 
-def summand_text(order: int, copies: int = 1) -> str:
-    """Z, Z/m, Z^2, (Z/2)^2."""
-    name = "Z" if order == 0 else f"Z/{order}"
+def summand_text(order: int, copies: int = 1, local: int = 0) -> str:
+    """Z, Z/m, Z^2, (Z/2)^2, Z_(p)."""
+    name = f"Z_({local})" if local else "Z" if order == 0 else f"Z/{order}"
     if copies == 1:
         return name
     return f"{name}^{copies}" if order == 0 else f"({name})^{copies}"
@@ -34,15 +34,16 @@ def _eilenberg_maclane(space: sf.EilenbergMacLane) -> tuple[list[AnyFactor], str
             raise Refusal(error("group", "a cyclic group is Z or Z/m with m >= 1", summand.span))
         if len(factors) + summand.copies > MOST_FACTORS:
             raise Refusal(error("group", f"a space may have at most {MOST_FACTORS} factors", summand.span))
-        factors += [Factor(summand.order, degree)] * summand.copies
-        names.append(summand_text(summand.order, summand.copies))
+        factors += [Factor(summand.order, degree, summand.local)] * summand.copies
+        names.append(summand_text(summand.order, summand.copies, summand.local))
     return factors, f"K({' + '.join(names)}, {degree})"
 
 
-def eilenberg_maclane_value(orders: tuple[int, ...], degree: int) -> SpaceValue:
-    """K(G, n), G the sum of the cyclic groups of these orders (0: Z)."""
-    names = [summand_text(order, len(list(copies))) for order, copies in groupby(orders)]
-    return SpaceValue(tuple([Factor(order, degree) for order in orders]), f"K({' + '.join(names)}, {degree})")
+def eilenberg_maclane_value(factors: tuple[Factor, ...]) -> SpaceValue:
+    """K(G, n) of its factors, which have one degree."""
+    groups = groupby(factors, key=lambda factor: (factor.order, factor.local))
+    names = [summand_text(order, len(list(copies)), local) for (order, local), copies in groups]
+    return SpaceValue(factors, f"K({' + '.join(names)}, {factors[0].degree})")
 
 
 def space_value(space: sf.Space, scope: Scope) -> SpaceValue:
@@ -177,4 +178,4 @@ def coefficient_order(group: sf.Coefficients | None, prime: int) -> int | None:
                 f"write `prime {summand.order}` first, or F_{prime}",
             )
         )
-    return class_order(summand.order, prime)
+    return class_order(summand.order, prime, summand.local)

@@ -92,7 +92,7 @@ SYNTAX_CODES: dict[str, Code] = {
     ),
     "group-number": Code(
         title="A group whose order or number of copies is no number",
-        explanation="In `Z/m` and `(Z/m)^k` both m and k are numbers, 0 or more.",
+        explanation="In `Z/m` and `(Z/m)^k` both m and k are numbers, 0 or more; in `Z_(p)`, Z localised at p, p is a prime.",
         example="on K(Z/n, 3)",
     ),
     "bad-name": Code(

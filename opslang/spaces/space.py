@@ -22,10 +22,11 @@ if TYPE_CHECKING:
 
 @frozen
 class Factor:
-    """K(Z, degree) (order 0) or K(Z/order, degree)."""
+    """K(Z, degree) (order 0) or K(Z/order, degree); K(Z_(p), degree) has order 0 and local p."""
 
     order: int
     degree: int
+    local: int = 0
 
 
 @frozen
@@ -119,10 +120,11 @@ class Localised:
         return 0
 
 
-def class_order(order: int, prime: int) -> int | None:
-    """The `Class.order` of coefficients Z (order 0) or Z/order at a prime; None where the group is 0 there."""
+def class_order(order: int, prime: int, local: int = 0) -> int | None:
+    """The `Class.order` of coefficients Z (order 0; Z_(local) where that is no 0) or Z/order at a prime; None where
+    the group is 0 there."""
     if order == 0:
-        return 0
+        return 0 if local in (0, prime) else None
     return p_part(order, prime) or None
 
 
@@ -139,7 +141,7 @@ def localise(space: SpaceValue, prime: int) -> Localised:
             continue
         primes = seen.get(factor.degree, 0)
         seen[factor.degree] = primes + 1
-        order = class_order(factor.order, prime)
+        order = class_order(factor.order, prime, factor.local)
         if order is None:
             vanishing.add((factor.degree, primes))
         else:

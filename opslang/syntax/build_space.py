@@ -8,6 +8,7 @@ from typing import Any
 from attrs import evolve
 from lark.visitors import Transformer_NonRecursive
 
+from opslang.ground.arith import is_prime
 from opslang.ground.source import Span
 from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
@@ -19,6 +20,8 @@ from opslang.syntax.spellings import GREEK_NAMES
 
 class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
     """`space`, `coefficients` and what they are made of."""
+
+    text: str
 
     def space_product(self, children: list[Any]) -> s.SpaceProduct:
         factors: list[Any] = []
@@ -107,14 +110,16 @@ class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
         return s.Coefficients(tuple(summands), span_of(children))
 
     def summand(self, children: list[Any]) -> s.Summand:
-        order, copies = 0, 1
+        order, copies, local = 0, 1, 0
         for child in nodes_of(children):
             if isinstance(child, Copies):
                 copies = child.value
             else:
                 value = single(child) if isinstance(child.value, tuple) else child.value
                 order = _closed(value, child.span, "the order of a group")
-        return s.Summand(order, copies, children[0].type == "LETTER_F", span_of(children))
+                if _under_z(children) and _BRACKETED.fullmatch(self.text, *child.span):
+                    order, local = 0, _localised_at(order, child.span)
+        return s.Summand(order, copies, children[0].type == "LETTER_F", local, span_of(children))
 
     def summand_group(self, children: list[Any]) -> Part:
         copies = children[3].value if len(children) > 3 else 1
@@ -132,6 +137,21 @@ class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
         if len(children) == 1:
             return base  # type: ignore[no-any-return]
         return power_of(base, Part(single(children[2]), children[2].span), span_of(children))
+
+
+_BRACKETED = re.compile(r"\{?\s*(?:\\left\s*)?[(₍].*[)₎]\s*\}?", re.DOTALL)
+
+
+def _under_z(children: list[Any]) -> bool:
+    return [getattr(child, "type", "") for child in children[:2]] == ["LETTER_Z", "UNDER"]
+
+
+def _localised_at(prime: int, span: Span) -> int:
+    """The p of Z_(p).  Raises Refusal where it is no prime."""
+    if not is_prime(prime):
+        message = f"Z_(p) is Z localised at a prime p, and {prime} is none"
+        raise Refusal(error("group-number", message, span, f"write Z/{prime} for the cyclic group"))
+    return prime
 
 
 def _closed(value: s.Index, span: Span, what: str) -> int:

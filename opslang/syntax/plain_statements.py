@@ -63,7 +63,7 @@ def _group(text: str, span: Span) -> Coefficients | None:
     if found is None:
         return None
     order = int(found.group(2) or 0)
-    return Coefficients((Summand(order, 1, found.group(1) == "F", span),), span)
+    return Coefficients((Summand(order, 1, found.group(1) == "F", 0, span),), span)
 
 
 def _space(text: str, span: Span) -> Space | None:

@@ -163,11 +163,13 @@ class Sum:
 
 @define(repr=False)
 class Summand:
-    """`Z` (order 0), `Z/m` (order m), with how many copies; `F_p` is a field (field=True, order p)."""
+    """`Z` (order 0), `Z/m` (order m), with how many copies; `F_p` is a field (field=True, order p); `Z_(p)` is Z
+    localised at p (order 0, local=p)."""
 
     order: int
     copies: int = 1
     field: bool = False
+    local: int = 0
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 
