@@ -212,6 +212,17 @@ def test_ten_lines_pasted_at_once(tmp_path: Path) -> None:
         terminal.sees("x^2 ", "y^2 ", "(Sq^1 x) Sq^1 y", "degree 7", "0 ")
 
 
+def test_what_is_pasted_behind_a_space_that_cannot_be_read_is_not_run(tmp_path: Path) -> None:
+    with Terminal(tmp_path) as terminal:
+        terminal.at_prompt(1)
+        terminal.enter("on RP^4", 1)
+        terminal.press("\x1b[200~on RQ^2\rx^4\rx^3\x1b[201~\r")
+        terminal.sees("unknown-space", "what follows it is not run")
+        terminal.at_prompt(1)
+        terminal.enter("x^4", 2)
+        terminal.sees("x^4 ")
+
+
 TEX = r"""$$
 \mathrm{Sq}^{2}\,\mathrm{Sq}^{2}\left( \iota_{3} \right)
   = \operatorname{Sq}^3 \mathrm{Sq}^{1} \iota_3 .

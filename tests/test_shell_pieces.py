@@ -111,6 +111,44 @@ def test_a_message_about_a_reference_speaks_of_it_as_typed() -> None:
     assert marks[1].index("zeta") == marks[2].index("~")
 
 
+def test_a_result_keeps_its_value_in_another_space() -> None:
+    """H^*(RP^4; F_2) = F_2[x]/(x^5), and x^4 = 0 in RP^2: Hatcher, Algebraic Topology, Theorem 3.19."""
+    heard = Heard()
+    heard("on RP^4\nx^4\non RP^2\nthat_1")
+    assert heard("that").startswith("x^4 ")
+    assert heard("that_2 = that_1").startswith("true") and heard("that_2 = 0").startswith("false")
+    heard("that_1 + that_1 = that_2")
+    assert heard("that").startswith("x^4 ") and heard("x^4").startswith("0 ")
+    script = heard.sitting.logbook.script([])
+    assert "on RP^2\nr_1\nlet r_2 = r_1\nr_2\n" in script and "let r_1 = x^4\non RP^2" in script
+    assert replayed(script) == heard.texts()
+
+
+def test_an_abbreviation_of_a_class_that_is_declared_anew_is_bound_by_its_name() -> None:
+    heard = Heard()
+    heard("let x in H^2\nlet u = x^2\nlet x in H^3\nu")
+    assert heard("Sq^4 that").split()[:3] == ["x^4", "degree", "8"]
+    heard("Sq^4 u = u^2 = u = 0")
+    assert heard("that = u^2 + u").splitlines()[-1].startswith("true")
+    assert replayed(heard.sitting.logbook.script([])) == heard.texts()
+
+
+def test_a_line_that_fails_leaves_the_space_and_the_names_as_they_were() -> None:
+    heard = Heard()
+    heard("on RP^4\nlet z in H^2")
+    assert "unknown-space" in heard("on RQ") and "error" in heard("let z, x in H^3")
+    assert heard("x^4").startswith("x^4 ") and "degree 2" in heard("z")
+    assert replayed(heard.sitting.logbook.script([])) == heard.texts()
+
+
+def test_a_borrowed_name_is_no_class_of_a_space_chosen_meanwhile() -> None:
+    heard = Heard()
+    heard("Sq^2 iota_4\nthat\nspace R = F_2[r_1:2, r_2:1]\non R\nthat_1\nr_1")
+    heard("on K(Z/2, 4)\nthat_1\nthat_2\nthat_4")
+    assert heard.texts() == [*["Sq^2 iota_4"] * 3, "r_1", *["Sq^2 iota_4"] * 2, "r_1"]
+    assert replayed(heard.sitting.logbook.script([])) == heard.texts()
+
+
 def test_names_for_references_keep_out_of_the_way() -> None:
     heard = Heard()
     heard("let r_1, s_1 in H^2\nSq^2 iota_3")
@@ -178,6 +216,7 @@ LINES = (
     "space X = K(Z/2, 3) x K(Z/2, 3)", "x^2 + that", "that_1", "Sq^1 that_2", "Sq^2 Sq^2", "Sq^2 Sq^2 = Sq^3",
     "P^1 P^1", "beta_2 iota_3",
     "why x", "why that", "u that", "iota_3'", "basis H^4", "undo", "let r_1 in H^2", "# a remark",
+    "on RP^4", "on RP^2", "x^4", "x^4 = x^3", "on R", "space R = F_2[r_1:2, r_2:1] / (r_2^3)", "r_1", "r_2^2",
 )  # fmt: skip
 
 

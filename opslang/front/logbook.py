@@ -15,10 +15,13 @@ from attrs import define, evolve, frozen
 from opslang.front.glance import copy_of, lowered, means_alike, reads_alike
 from opslang.ground.source import Source, Span
 from opslang.ir.outcome import Outcome
+from opslang.ir.tree import ClassElement
 from opslang.meaning.scope import Key, Scope
 from opslang.meaning.value import Value
 from opslang.render.text import element_text
 from opslang.report.diagnostic import Diagnostic, Refusal, error
+from opslang.spaces.space import SpaceValue
+from opslang.syntax import surface as sf
 from opslang.syntax.parser import parse
 from opslang.syntax.spellings import is_tex
 
@@ -85,6 +88,8 @@ class Logbook:
         self._keys: dict[int, Key] = {}
         self._seen: set[Key] = set()
         self._values: dict[int, Value] = {}
+        self._definitions: dict[int, str] = {}
+        self._worlds: dict[tuple[SpaceValue, int], Scope] = {}
 
     # --- results --------------------------------------------------------------------------------
 
@@ -148,43 +153,81 @@ class Logbook:
         eras = self._eras()
         if eras[self.entries.index(entry)] == eras[-1]:
             return True
-        return means_alike(_definition(entry), entry.before, scope)
+        return means_alike(self._definition(entry), entry.before, scope)
 
     def _check_length(self, entry: Entry, span: Span) -> None:
-        length = len(_definition(entry))
+        length = len(self._definition(entry))
         if length > LONGEST:
             words = f"result {entry.number} is too long to be referred to: {length:,} characters"
             raise Refusal(error("long-statement", words, span, "name the line it came from with `let`"))
 
     def _key(self, number: int, text: str, scope: Scope) -> Key:
-        """A name for a result that is used for nothing else."""
+        """A name for a result that is used for nothing else, in no space that was chosen so far either."""
+
+        def hidden(key: Key) -> bool:
+            return any(each.class_of_space(key) for each in (scope, *self._worlds.values()))
+
         kept = self._keys.get(number)
-        if kept is not None and kept not in scope.names:
+        if kept is not None and kept not in scope.names and not hidden(kept):
             return kept
         for letter in _LETTERS:
             key = (letter, number, 0)
-            if key in scope.names or key in self._seen or re.search(rf"{letter}_\{{?{number}(?!\d)", text):
+            if (
+                key in scope.names
+                or key in self._seen
+                or re.search(rf"{letter}_\{{?{number}(?!\d)", text)
+                or hidden(key)
+            ):
                 continue
             self._keys[number] = key
             return key
         raise Refusal(error("no-such-result", f"no name is left for result {number}", (0, 0)))
 
     def value(self, number: int) -> Value:
-        """What a reference stands for: the canonical form, as the script's `let` line gives it."""
+        """What a reference stands for, as the script's `let` line gives it."""
         found = self._values.get(number)
         if found is None:
             entry = self.result(number)
-            text = _definition(entry)
-            scope = copy_of(entry.before)
-            if text == entry.text:
-                scope.names.update({key: self.value(of) for of, key in entry.borrowed})
-            statement, diagnostics = parse(Source("input", text))
-            if statement is None:
-                raise Refusal(diagnostics[0])
-            values = lowered(statement, scope, text)
-            assert values is not None
-            found = self._values[number] = values[0]
+            found = self._values[number] = self._read(self._definition(entry), entry)
         return found
+
+    def _read(self, text: str, entry: Entry) -> Value:
+        """The value of an expression at the place of a line.  Raises Refusal."""
+        scope = copy_of(entry.before)
+        scope.names.update({key: self.value(of) for of, key in entry.borrowed})
+        statement, diagnostics = parse(Source("input", text))
+        if statement is None:
+            raise Refusal(diagnostics[0])
+        values = lowered(statement, scope, text)
+        assert values is not None
+        return values[0]
+
+    def _definition(self, entry: Entry) -> str:
+        """The expression that a reference to a result stands for: its canonical form where the classes in it are
+        read at its place as those that they are, else the line itself."""
+        number = entry.number or 0
+        found = self._definitions.get(number)
+        if found is None:
+            assert entry.outcome is not None and entry.outcome.element is not None
+            found = element_text(entry.outcome.element)
+            if not self._reads_back(found, entry):
+                found = _as_written(entry)
+            self._definitions[number] = found
+        return found
+
+    def _reads_back(self, text: str, entry: Entry) -> bool:
+        """Whether the canonical form tells a result; that of a 0 does not tell its degree, and a class may come
+        from another space, which has a class of the same name."""
+        element = entry.outcome and entry.outcome.element
+        if not element or not element.terms:
+            return False
+        if not isinstance(element, ClassElement):
+            return True
+        classes = {generator.of for monomial, _ in element.terms for generator, _ in monomial}
+        try:
+            return classes == (self._read(text, entry).classes if classes else set())
+        except Refusal:
+            return False
 
     # --- keeping --------------------------------------------------------------------------------
 
@@ -196,6 +239,8 @@ class Logbook:
                 entry.number = self.next_number
                 self.next_number += 1
         self._seen |= set(entry.before.names)
+        if entry.before.space is not None:
+            self._worlds[entry.before.space, entry.before.prime] = entry.before
         self.entries.append(entry)
 
     def undo(self) -> tuple[Entry, list[Entry]] | None:
@@ -214,10 +259,12 @@ class Logbook:
                 if entry.number is not None:
                     gone.add(entry.number)
                     self._lost[entry.number] = f"result {entry.number} was taken back by `undo`"
-                    self._values.pop(entry.number, None)
             else:
                 entry.before = copy_of(before)
                 kept.append(entry)
+        for entry in later:
+            self._values.pop(entry.number or 0, None)
+            self._definitions.pop(entry.number or 0, None)
         self.entries[at:] = kept
         return declaration, dropped
 
@@ -256,7 +303,7 @@ class Logbook:
         return "\n".join(lines) + "\n"
 
     def _let(self, number: int, key: Key) -> str:
-        return f"let {spelling(key)} = {_definition(self.result(number))}"
+        return f"let {spelling(key)} = {self._definition(self.result(number))}"
 
     def _eras(self) -> list[int]:
         """How often the prime was changed before each line, and before the next one: each change drops the names."""
@@ -267,14 +314,25 @@ class Logbook:
         return eras
 
 
-def _definition(entry: Entry) -> str:
-    """The expression that a reference to a result stands for: its canonical form, or the line itself for a 0,
-    whose degree the canonical form does not tell."""
-    assert entry.outcome is not None and entry.outcome.element is not None
-    if entry.outcome.element.terms:
-        return element_text(entry.outcome.element)
-    text = "\n".join(line.split("#", 1)[0].rstrip() for line in entry.text.split("\n"))
-    return re.sub(r"\s*\bwhy\b\s*", "", text, count=1) if entry.outcome.kind == "derivation" else text.strip()
+def _as_written(entry: Entry) -> str:
+    """The line of a result as an expression: of a relation, the difference of the sides that it leaves."""
+    text = re.sub(r"#[^\n]*", lambda comment: " " * len(comment.group()), entry.text)
+    statement, diagnostics = parse(Source("input", text))
+    if isinstance(statement, sf.WhyStatement):
+        statement = statement.body
+    if isinstance(statement, sf.ExpressionStatement):
+        return _stretch(text, statement.body.span)
+    if not isinstance(statement, sf.RelationStatement):
+        raise Refusal(diagnostics[0])
+    assert entry.outcome is not None
+    links = enumerate(entry.outcome.links)
+    at = next((k for k, link in links if link.difference == entry.outcome.element), 0)
+    left, right = (_stretch(text, side.span) for side in statement.sides[at : at + 2])
+    return f"({left}) - ({right})"
+
+
+def _stretch(text: str, span: Span) -> str:
+    return "\n".join(line.rstrip() for line in text[slice(*span)].split("\n"))
 
 
 def _ranges(numbers: list[int]) -> str:

@@ -66,12 +66,14 @@ class Shell:
             sitting.remark(text.strip("\n"))
             return True
         try:
-            for source in sitting.statements(text):
+            sources = list(sitting.statements(text))
+            for number, source in enumerate(sources, start=1):
                 own = shell_statement(source.text)
-                if own is None:
-                    sitting.answer(source)
-                else:
+                if own is not None:
                     requests.do(*own, source)
+                elif not sitting.answer(source) and source.text.split()[0] == "on" and number < len(sources):
+                    to_terminal("what follows it is not run, since it may speak of that space\n")
+                    break
         except Leave:
             return False
         except OSError as trouble:

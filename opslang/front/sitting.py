@@ -156,7 +156,9 @@ class Sitting:
             return False
         found = [as_typed(diagnostic, line) for diagnostic in outcome.diagnostics]
         self._show(evolve(outcome, source=source, span=line.typed_span(outcome.span), diagnostics=tuple(found)))
-        if outcome.verdict != "error":
+        if outcome.verdict == "error":  # the script will not hold the line, so it must leave no trace either
+            self.session.scope = before
+        else:
             role: Role = "declaration" if outcome.kind == "declaration" else "answer"
             whole = len(list(chunks(line.text.split("\n"), "input"))) == 1
             text = line.text if whole else on_one_line(line.text)
