@@ -5,10 +5,13 @@ from __future__ import annotations
 import pytest
 
 from opslang import Script
+from opslang.front.vocabulary import ALSO_LEAVE, SHELL_WORDS
 from opslang.ground.source import Source
+from opslang.pipeline import Session
 from opslang.report.diagnostic import Diagnostic
 from opslang.syntax import surface as s
 from opslang.syntax.parser import parse
+from opslang.syntax.spellings import STATEMENT_WORDS
 
 
 def errors(text: str) -> tuple[Diagnostic, ...]:
@@ -110,3 +113,82 @@ def test_declared_classes_are_reductions_of_localised_ones() -> None:
 def test_the_transgression_keeps_the_group() -> None:
     (outcome,) = Script(2, "K(Z_(2), 3)").run("transgression(Sq^2 iota_3)")
     assert outcome.space == "K(Z_(2), 4)"
+
+
+# --- words ---------------------------------------------------------------------------------------
+
+
+@pytest.mark.parametrize(
+    ("text", "word", "says"),
+    [
+        ("Sq^2 iota_3 on K(Z,3)", "on", "a line of its own"),
+        ("Sq^2 iota_3 let x in H^2", "let", "a line of its own"),
+        ("Sq^2 iota_3 basis H^4(BO)", "basis", "a line of its own"),
+        ("quit", "quit", "the end of the input"),
+        ("exit", "exit", "the end of the input"),
+        ("explain wu", "explain", "why"),
+        ("dim H^5(K(Z/2, 3))", "dim", "basis"),
+        ("St^2 iota_3", "St", "Sq^i"),
+        ("simplify Sq^2 Sq^2", "simplify", "canonical form"),
+        ("Sq^2 iota_3 and Sq^1 iota_3", "and", "single letters"),
+        ("Sq^2 foobar", "foobar", "single letters"),
+        ("Sq^2 w_2 BO", "BO", "`on BO`"),
+        ("Sq^{quit} x", "quit", "the end of the input"),
+    ],
+)
+def test_words_are_not_taken_apart(text: str, word: str, says: str) -> None:
+    (found,) = errors(text)
+    assert text[found.span[0] : found.span[1]] == word and found.mend is None
+    assert says in f"{found.message} {found.help}"
+
+
+@pytest.mark.parametrize("word", [*STATEMENT_WORDS, *SHELL_WORDS, *ALSO_LEAVE, "explain", "eval", "run", "lint"])
+def test_no_word_of_ours_is_taken_apart(word: str) -> None:
+    for text in (word + " 3 /", f"x + {word}"):
+        statement, diagnostics = parse(Source("a.ops", text))
+        assert statement is not None or not any(" " in (found.mend or "") for found in diagnostics)
+
+
+@pytest.mark.parametrize(
+    ("text", "better"),
+    [
+        ("xy", "x y"),
+        ("abx", "a b x"),
+        ("betaxy", "beta x y"),
+        ("Sqiota_3", "Sq iota_3"),
+        ("ioat_3", "iota_3"),
+        ("BO", "on BO"),
+        ("BO(3)", "on BO(3)"),
+        ("RP^5", "on RP^5"),
+        ("let x = H^2(X; Z)", "let x in H^2(X; Z)"),
+        ("let x = H^2(X; Z/4)", "let x in H^2(X; Z/4)"),
+    ],
+)
+def test_runs_of_letters_are(text: str, better: str) -> None:
+    assert mended(text) == better
+
+
+@pytest.mark.parametrize(
+    ("text", "says", "mend"),
+    [
+        ("w_2", "on BO;", None),
+        ("Sq^2 W_3", "on BSO;", None),
+        ("c_1^2", "on BU;", None),
+        ("p_1", "on BSO;", None),
+        ("let x = H^2", "let x in H^2", "in H"),
+        ("let x_2' = H^{2}(X)", "let x in H^2", "in H"),
+    ],
+)
+def test_names_that_nobody_declared(text: str, says: str, mend: str | None) -> None:
+    outcome = Session().run(Source("a.ops", text))
+    (found,) = outcome.diagnostics
+    assert found.name == "unknown-name" and says in found.help and found.mend == mend
+    if mend:
+        better = text[: found.span[0]] + mend + text[found.span[1] :]
+        assert Session().run(Source("a.ops", better)).verdict == "ok"
+
+
+def test_a_class_of_the_name_h_has_powers() -> None:
+    script = Script(let="H in H^2")
+    script.run("let x = H^2")
+    assert str(script.normalise("x")) == "H^2"

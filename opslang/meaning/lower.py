@@ -17,6 +17,7 @@ from opslang.meaning.characteristic import Characteristic
 from opslang.meaning.indices import bounded, number
 from opslang.meaning.letters import Marker, letter
 from opslang.meaning.scope import Key, Scope, spelled
+from opslang.meaning.unknown import unknown_name
 from opslang.meaning.value import (
     NONE,
     Sort,
@@ -316,15 +317,7 @@ class Lowering:
         here = self.scope.localised()
         if here is not None and here.families:
             return self._class_of_space(name, key, here)
-        close = self.scope.like(key)
-        how = f"declare it first: let {spelled(key)} in H^n"
-        refuse(
-            "unknown-name",
-            f"{spelled(key)} is not declared",
-            name.span,
-            f"did you mean {close}? or {how}" if close else how,
-            close,
-        )
+        raise unknown_name(key, name.span, self.scope, self.text)
 
     def _class_of_space(self, name: sf.Name, key: Key, here: Localised) -> Value:
         """A name that a named factor of the current space has."""

@@ -16,8 +16,8 @@ SYNTAX_CODES: dict[str, Code] = {
     "unknown-statement": Code(
         title="No statement begins like this",
         explanation=(
-            "The line begins with a word that is nearly a keyword, or declares a class without `let`.  The keywords "
-            "are prime, space, on, let, why, basis and series; every other line is an expression or a relation."
+            "The line begins with a word that is no keyword, or declares a class without `let`.  The keywords "
+            "are prime, space, on, let, why, basis, series, map, bundle and compare; every other line is an expression or a relation."
         ),
         example="lte x in H^2",
     ),
@@ -33,7 +33,8 @@ SYNTAX_CODES: dict[str, Code] = {
     "run-of-letters": Code(
         title="Several letters that are no name",
         explanation=(
-            "Names are single letters and spelled Greek letters.  A product is written with spaces or signs between "
+            "Names are single letters and spelled Greek letters; a keyword begins a line of its own.  A product is "
+            "written with spaces or signs between "
             "its factors (`x y`, `x * y`).  In TeX spelling, as in TeX, letters side by side are a product."
         ),
         example="let x, y in H^2\nxy",
@@ -92,7 +93,9 @@ SYNTAX_CODES: dict[str, Code] = {
     ),
     "group-number": Code(
         title="A group whose order or number of copies is no number",
-        explanation="In `Z/m` and `(Z/m)^k` both m and k are numbers, 0 or more; in `Z_(p)`, Z localised at p, p is a prime.",
+        explanation=(
+            "In `Z/m` and `(Z/m)^k` both m and k are numbers, 0 or more; in `Z_(p)`, Z localised at p, p is a prime."
+        ),
         example="on K(Z/n, 3)",
     ),
     "bad-name": Code(

@@ -10,19 +10,15 @@ from itertools import islice
 
 from opslang.report.diagnostic import Diagnostic, error
 from opslang.syntax.spelling import MANY, Reading, Token, shown
-from opslang.syntax.spellings import GREEK_NAMES, KEYWORDS, RESERVED, STATEMENT_WORDS
+from opslang.syntax.spellings import KEYWORDS, RESERVED, STATEMENT_WORDS
+from opslang.syntax.words import LONGEST_SPLIT, SPACES, is_word, meant, nearly, said
 
 _TAKEN = frozenset(kind for kind, _ in RESERVED.values())
 _LETTERS = frozenset(("NAME", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X"))
 _SPATIAL = frozenset(("PRIME_WORD", "SPACE_WORD", "ON", "BASIS", "SERIES", "MAP", "BUNDLE", "COMPARE"))
 _PROJECTIVE = frozenset(("RP", "CP", "HP"))
-LONGEST_SPLIT = 40
-"""No mend is offered for longer runs of letters."""
-
 INDEX_LIMIT = 2_000
 """How many symbols one index may be made of."""
-
-_SPELLED = sorted(GREEK_NAMES | RESERVED.keys(), key=len, reverse=True)
 
 
 def mistakes(reading: Reading) -> list[Diagnostic]:
@@ -36,14 +32,17 @@ def mistakes(reading: Reading) -> list[Diagnostic]:
     if long is not None:
         return [long]
     spaces = _spaces_among(tokens)
-    found = (
-        slip
-        for at, token in enumerate(tokens)
-        if (check := (_AMONG_SPACES if at in spaces else _CHECKS).get(token.kind)) is not None
-        and (not indices[at] or token.kind in ("RUN", "COMMA"))
-        and (slip := check(reading, at)) is not None
-    )
-    return list(islice(found, MANY))
+    found: list[Diagnostic] = []
+    for at, token in enumerate(tokens):
+        check = (_AMONG_SPACES if at in spaces else _CHECKS).get(token.kind)
+        if check is None or (indices[at] and token.kind not in ("RUN", "COMMA")):
+            continue
+        slip = check(reading, at)
+        if slip is not None:
+            found.append(slip)
+            if len(found) == MANY or (token.kind == "RUN" and token.value in STATEMENT_WORDS):
+                break  # behind a keyword another statement is meant
+    return found
 
 
 def _spaces_among(tokens: list[Token]) -> range:
@@ -90,44 +89,34 @@ def _long_index(tokens: list[Token], indices: list[bool]) -> Diagnostic | None:
     return None
 
 
-def split_run(word: str) -> str:
-    """A run of letters taken apart: spelled names where they fit, the longest first, else letters."""
-    pieces = []
-    while word:
-        piece = next((name for name in _SPELLED if word.startswith(name)), word[0])
-        pieces.append(piece)
-        word = word[len(piece) :]
-    return " ".join(pieces)
+_NO_STATEMENT = "a space is no statement: `on` chooses one"
 
 
-def nearly(word: str, name: str) -> bool:
-    """Whether a word is a name with one slip of the finger: a letter more, less or other, two exchanged, capitals."""
-    if word.lower() == name.lower():
-        return True
-    if abs(len(word) - len(name)) > 1 or len(name) < 3:
-        return sorted(word) == sorted(name)
-    at = next((i for i, (a, b) in enumerate(zip(word, name)) if a != b), min(len(word), len(name)))
-    rest, other = word[at:], name[at:]
-    return rest[1:] == other[1:] or rest[1:] == other or rest == other[1:] or _exchanged(rest, other)
-
-
-def _exchanged(rest: str, other: str) -> bool:
-    return rest[:2] == other[:2][::-1] and rest[2:] == other[2:]
+def _first_run(reading: Reading, first: Token, follows: str) -> Diagnostic | None:
+    """A misspelt keyword, a space, or a word of no meaning at the beginning."""
+    word, span = first.value, (first.start, first.end)
+    for keyword in sorted(STATEMENT_WORDS):
+        if nearly(word, keyword) and follows not in ("EQUALS", "PLUS", "CARET", "UNDER"):
+            help = f"write `{keyword}`" if keyword in KEYWORDS else f"`{keyword}` belongs to the language"
+            return error("unknown-statement", f"no statement begins with `{shown(word)}`", span, help, keyword)
+    if word in SPACES:
+        return error("unknown-statement", _NO_STATEMENT, span, f"write on {word}", f"on {word}")
+    if reading.text[first.start] != "\\" and len(word) <= LONGEST_SPLIT and is_word(word):
+        message, help = said(word, True)
+        return error("unknown-statement", message, span, help)
+    return None
 
 
 def _first_word(reading: Reading) -> Diagnostic | None:
     """A misspelt keyword, or `in` with no `let` before it."""
     first, *others = reading.tokens
     if first.kind == "RUN":
-        for keyword in sorted(STATEMENT_WORDS):
-            if nearly(first.value, keyword) and not (others and others[0].kind in ("EQUALS", "PLUS", "CARET", "UNDER")):
-                help = f"write `{keyword}`" if keyword in KEYWORDS else f"`{keyword}` belongs to the language"
-                message = f"no statement begins with `{shown(first.value)}`"
-                return error("unknown-statement", message, (first.start, first.end), help, keyword)
+        wrong = _first_run(reading, first, others[0].kind if others else "")
+        if wrong is not None:
+            return wrong
     if first.kind == "LETTER_K" and others and others[0].kind == "LPAR" and len(others) > 3:
         if others[1].kind == "LETTER_Z" and others[2].kind in ("SLASH", "COMMA", "UNDER", "PLUS"):
-            message = "a space is no statement: `on` chooses one"
-            return error("unknown-statement", message, (first.start, first.end), "write on K(…)", "on K")
+            return error("unknown-statement", _NO_STATEMENT, (first.start, first.end), "write on K(…)", "on K")
     if first.kind in _LETTERS | {"RUN"} and any(token.kind == "IN" for token in islice(others, 40)):
         mend = "let " + reading.text[first.start : first.end]
         message = "a class is declared by a statement that begins with `let`"
@@ -161,14 +150,12 @@ def _run(reading: Reading, at: int) -> Diagnostic | None:
     span = (token.start, token.end)
     if reading.text[token.start] == "\\":
         return error("run-of-letters", f"the word {shown(token.value)} has no meaning in a formula", span)
-    message = f"{shown(token.value)} is no name: names are single letters and spelled Greek letters"
-    if len(token.value) > LONGEST_SPLIT:
-        return error("run-of-letters", message, span)
-    split = split_run(token.value)
-    for name in _SPELLED:
-        if len(name) > 1 and token.value.lower() == name.lower():
-            split = name
-    return error("run-of-letters", message, span, f"write {split}", split)
+    likely = None if len(token.value) > LONGEST_SPLIT else meant(token.value)
+    if likely is not None:
+        message = f"{shown(token.value)} is no name: names are single letters and spelled Greek letters"
+        return error("run-of-letters", message, span, f"write {likely}", likely)
+    message, help = said(shown(token.value), False)
+    return error("run-of-letters", message, span, help)
 
 
 def _square(reading: Reading, at: int) -> Diagnostic | None:
@@ -268,16 +255,25 @@ def _comma(reading: Reading, at: int) -> Diagnostic | None:
 
 
 def _let(reading: Reading, at: int) -> Diagnostic | None:
-    """A name that is taken, in a `let`."""
-    for token in islice(reading.tokens, 1, None):
-        if token.kind in ("IN", "EQUALS"):
+    """A name that is taken in a `let`, and `=` for `in`."""
+    for place, token in enumerate(islice(reading.tokens, 1, None), start=1):
+        if token.kind == "IN":
             return None
+        if token.kind == "EQUALS":
+            return _group_given(reading, place)
         if token.kind in _TAKEN:
             message = f"{token.value} is taken: it names an operation or a fundamental class"
             return error("name-taken", message, (token.start, token.end), "choose another letter")
-        if token.kind not in _LETTERS | {"COMMA"}:
-            continue
     return None
+
+
+def _group_given(reading: Reading, at: int) -> Diagnostic | None:
+    """`let x = H^2(X; Z)`; `let x = H^2` is seen where names have a meaning, since H may be a class."""
+    kinds = [token.kind for token in islice(reading.tokens, at + 1, None)]
+    if kinds[:2] != ["LETTER_H", "CARET"] or not {"SEMICOLON", "COMMA", "SLASH", "RUN"} & set(kinds):
+        return None
+    token = reading.tokens[at]
+    return error("expected", "a class is declared with `in`", (token.start, token.end), "write let x in H^n", "in")
 
 
 # --- among spaces --------------------------------------------------------------------------------
