@@ -50,9 +50,9 @@ def _power(bundle: Bundle, prime: int, k: int) -> Polynomial | None:
         if k == 0:
             return element_polynomial(a.one())
         if bundle.complex:
-            rows = symmetric.coefficients(prime, prime - 1, (prime - 1,) * k)
+            rows = symmetric.powers_of_roots(prime, k, prime - 1)
         else:
-            rows = symmetric.power_of_roots(prime, k)
+            rows = symmetric.powers_of_roots(prime, k, (prime - 1) // 2)
     except NotKnown:
         return None
     total = a.zero()

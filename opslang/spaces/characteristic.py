@@ -72,6 +72,11 @@ class Classifying(Family):
             return "none at this prime"
         return first if self.rank == self.first else f"{first} … {self.letter}_{self.rank}"
 
+    @property
+    def last(self) -> int | None:
+        """The greatest number of a class that is not 0 (None: no end)."""
+        return self.rank
+
     def product(self, r: symmetric.Partition) -> list[tuple[int, list[tuple[Class, int]]]]:
         """The product of the classes of these numbers, as a list of at most one term."""
         factors: list[tuple[Class, int]] = []
@@ -91,9 +96,8 @@ class Classifying(Family):
                 for a, b in wu(k, m):
                     terms += self.product((a, b))
         elif token:
-            rows = (
-                symmetric.linear_roots(prime, token, m) if self.step == 2 else symmetric.square_roots(prime, token, m)
-            )
+            roots = symmetric.linear_roots if self.step == 2 else symmetric.square_roots
+            rows = roots(prime, token, m, self.last)
             for r, c in rows:
                 terms += [(c * one, factors) for one, factors in self.product(r)]
         return collected(terms, prime)
@@ -144,6 +148,10 @@ class Pontryagin(Classifying):
     def text(self) -> str:
         return f"B{self.group}" + ("" if self.written is None else f"({self.written})")
 
+    @property
+    def last(self) -> int | None:
+        return None if self.rank is None else self.rank + bool(self.euler)
+
     def euler_class(self) -> Class:
         """The class e."""
         return Class("e", None, 0, self.euler, 0, self.factor, self)
@@ -172,7 +180,7 @@ class Pontryagin(Classifying):
         if not token:
             return ZERO
         terms = []
-        for r, c in symmetric.power_of_roots(prime, token):
+        for r, c in symmetric.powers_of_roots(prime, token, (prime - 1) // 2, self.last):
             terms += [(c * one, [*factors, (of, 1)]) for one, factors in self.product(r)]
         return collected(terms, prime)
 

@@ -59,7 +59,12 @@ class Primed(Family):
         return self.inner.name_degree(prime, letter, index)
 
     def names(self, prime: int) -> str:
-        return f"{self.inner.names(prime)}, each with {'a prime' if self.primes == 1 else f'{self.primes} primes'}"
+        shown = self.inner.names(prime)
+        if shown == Family.names(self, prime):
+            return shown
+        if " " not in shown.replace(", ", ""):
+            return ", ".join(name + "'" * self.primes for name in shown.split(", "))
+        return f"{shown}, each with {'a prime' if self.primes == 1 else f'{self.primes} primes'}"
 
     def operation(self, prime: int, token: int, of: Class) -> Polynomial:
         return self._all(self.inner.operation(prime, token, self._in(prime, of)))

@@ -1,14 +1,13 @@
 """Reduced powers on elementary symmetric polynomials, by the splitting principle.  Knows numbers and partitions only.
 
-Let the roots x_i of a bundle satisfy sum_k P^k s^k (x) = x + … in such a way that 1 + t P_s(x) is a polynomial in x,
-say
-prod_j (1 + theta_j x) with N factors.  Then the total power of sum_m c_m t^m is prod_i prod_j (1 + theta_j x_i),
-that is
-prod_j c(theta_j) = sum over partitions r of at most N parts of m_r(theta) c_{r_1} c_{r_2} …; the elementary symmetric
-polynomials of the theta_j are the coefficients of 1 + t P_s(x).  So what is needed is the coefficient of one product
-of elementary symmetric polynomials in each monomial symmetric polynomial m_r in N variables: the solution of a
-triangular system.  Source: Borel and Serre 1953 (the splitting principle); the arrangement is our own.
-"""
+The total power of the total class prod_i (1 + t x_i) is prod_i (1 + t P_s(x_i)); where P_s(x) = x + …, that is the
+total class times prod_i (1 + s z_i + …), z_i = t x_i^p / (1 + t x_i) and the like.  Its coefficient G_k of s^k comes
+from Newton's identities, k G_k = sum_j ± pi_j G_{k-j}, where pi_j is a sum over i of powers of x_i and of 1 / (1 + t
+x_i), so a combination of power sums of the x_i; those are polynomials in the classes by Newton's identities once
+more.  All of it is done over the integers and reduced at the end.  Where there are few partitions a triangular system
+is quicker.  Source: Borel and Serre 1953 (the splitting principle); the arrangement is our own.
+
+A polynomial in classes c_1, c_2, … is a dict from partitions (the indices of a product) to coefficients."""
 
 from __future__ import annotations
 
@@ -16,126 +15,190 @@ from functools import lru_cache
 from math import comb
 
 from opslang.spaces.family import NotKnown
+from opslang.spaces.triangular import FEW, coefficients, count
 
 Partition = tuple[int, ...]
 """Parts in decreasing order, all at least 1."""
+Classes = dict[Partition, int]
+Rows = tuple[tuple[Partition, int], ...]
 
-MOST_PARTITIONS = 2_500
-
-
-def partitions(n: int, parts: int, largest: int | None = None) -> list[Partition]:
-    """The partitions of n into at most `parts` parts, each at most `largest`, lexicographically increasing."""
-    if n == 0:
-        return [()]
-    if parts == 0:
-        return []
-    found = []
-    for first in range(-(-n // parts), min(n, n if largest is None else largest) + 1):
-        found += [(first, *rest) for rest in partitions(n - first, parts - 1, first)]
-    return found
+MOST_PRODUCTS = 1_500_000
+"""Products of terms that one answer may take: about two seconds."""
 
 
-def count(n: int, parts: int) -> int:
-    """The number of partitions of n into at most `parts` parts."""
-    ways = [1] + [0] * n
-    for part in range(1, parts + 1):
-        for k in range(part, n + 1):
-            ways[k] += ways[k - part]
-    return ways[n]
+class Work:
+    """A count of products, emptied for each answer."""
+
+    left = MOST_PRODUCTS
 
 
-def _times_elementary(r: int, f: dict[Partition, int], variables: int, p: int) -> dict[Partition, int]:
-    """e_r times a symmetric polynomial given on the basis m_r, in so many variables, mod p."""
-    result: dict[Partition, int] = {}
-    for partition, c in f.items():
-        counts: dict[int, int] = {}
-        for part in partition:
-            counts[part] = counts.get(part, 0) + 1
-        counts[0] = variables - len(partition)
-        values = sorted(counts, reverse=True)
-        choices: list[tuple[int, dict[int, int]]] = [(r, {})]
-        for value in values:
-            choices = [
-                (left - raised, {**chosen, value: raised})
-                for left, chosen in choices
-                for raised in range(min(left, counts[value]) + 1)
-            ]
-        for left, chosen in choices:
-            if left:
-                continue
-            new: dict[int, int] = {}
-            for value in values:
-                new[value] = new.get(value, 0) + counts[value] - chosen[value]
-                new[value + 1] = new.get(value + 1, 0) + chosen[value]
-            ways = 1
-            for value in values:
-                ways = ways * comb(new[value + 1], chosen[value]) % p
-            if ways:
-                key = tuple([value for value in sorted(new, reverse=True) if value for _ in range(new[value])])
-                result[key] = (result.get(key, 0) + c * ways) % p
+def _times(f: Classes, g: Classes) -> Classes:
+    Work.left -= len(f) * len(g)
+    if Work.left < 0:
+        raise NotKnown(f"the splitting principle would need more than {MOST_PRODUCTS:,} products of classes here")
+    result: Classes = {}
+    for r, c in f.items():
+        for s, d in g.items():
+            key = tuple(sorted(r + s, reverse=True)) if r and s else r or s
+            result[key] = result.get(key, 0) + c * d
     return {key: c for key, c in result.items() if c}
 
 
-@lru_cache(maxsize=256)
-def coefficients(p: int, variables: int, target: Partition) -> tuple[tuple[Partition, int], ...]:
-    """For each partition r the coefficient mod p of e_target = e_{t_1} e_{t_2} … in m_r, in so many variables;
-    nonzero ones only.
-
-    NotKnown where there are too many partitions to go through.
-    """
-    degree = sum(target)
-    if count(degree, variables) > MOST_PARTITIONS:
-        raise NotKnown(f"the splitting principle would need more than {MOST_PARTITIONS:,} partitions of {degree}")
-    rows: dict[Partition, dict[Partition, int]] = {(): {(): 1}}
-    found: dict[Partition, int] = {}
-    # m_r first occurs in e_{r'}, r' the conjugate partition; smaller partitions are known by then.
-    for r in partitions(degree, variables):
-        conjugate = tuple([sum(part > i for part in r) for i in range(r[0])]) if r else ()
-        row = _row(conjugate, rows, variables, p)
-        value = int(conjugate == target) - sum([c * found[s] for s, c in row.items() if s != r and s in found])
-        found[r] = value % p
-    return tuple([(r, c) for r, c in found.items() if c])
+def _add(into: Classes, f: Classes, factor: int) -> None:
+    for key, c in f.items():
+        into[key] = into.get(key, 0) + factor * c
 
 
-def _row(
-    product: Partition, rows: dict[Partition, dict[Partition, int]], variables: int, p: int
-) -> dict[Partition, int]:
-    """The product e_{t_1} e_{t_2} … on the basis m_r; products of fewer factors are remembered."""
-    known = rows.get(product)
-    if known is None:
-        known = rows[product] = _times_elementary(product[-1], _row(product[:-1], rows, variables, p), variables, p)
-    return known
+class Roots:
+    """Power sums of the roots of a bundle whose classes beyond `largest` are 0 (None: no end)."""
+
+    def __init__(self, largest: int | None) -> None:
+        self.largest = largest
+        self._sums: list[Classes] = [{}]
+
+    def has(self, i: int) -> bool:
+        """Whether c_i can be other than 0."""
+        return self.largest is None or i <= self.largest
+
+    def power_sum(self, n: int) -> Classes:
+        """The sum of the x_i^n, n >= 1: (-1)^{n-1} n c_n + sum_{i<n} (-1)^{i-1} c_i p_{n-i} (Newton)."""
+        while len(self._sums) <= n:
+            m = len(self._sums)
+            total: Classes = {}
+            if self.has(m):
+                total[(m,)] = (-1) ** (m - 1) * m
+            for i in range(1, m):
+                if self.has(i):
+                    _add(total, _times({(i,): 1}, self._sums[m - i]), (-1) ** (i - 1))
+            self._sums.append({key: c for key, c in total.items() if c})
+        return self._sums[n]
 
 
-def linear_roots(p: int, k: int, m: int) -> tuple[tuple[Partition, int], ...]:
-    """P^k of the m-th elementary symmetric polynomial in roots with P x = x + x^p: pairs (r, c), the sum of c
-    c_{r_1} c_{r_2} …
+@lru_cache(maxsize=16)
+def _roots(largest: int | None) -> Roots:
+    return Roots(largest)
 
-    1 + t(x + s x^p) has the elementary symmetric polynomials e_1 = t and e_p = ts.
+
+Graded = dict[int, Classes]
+"""A power series in t: the coefficients by degree."""
+
+
+def _over(roots: Roots, exponent: int, q: int, to: int) -> Graded:
+    """The sum over i of t^q x_i^exponent (1 + t x_i)^{-q}, up to t^to."""
+    if not q:
+        return {0: roots.power_sum(exponent)}
+    found: Graded = {}
+    for a in range(to - q + 1):
+        sums = roots.power_sum(exponent + a)
+        factor = (-1) ** a * comb(q + a - 1, a)
+        found[q + a] = {key: factor * c for key, c in sums.items()}
+    return found
+
+
+def _newton(sums: list[Graded], to: int) -> list[Graded]:
+    """G_0, G_1, … with k G_k = sum_j sums[j] G_{k-j}, up to t^to; `sums[0]` is not used."""
+    found: list[Graded] = [{0: {(): 1}}]
+    for k in range(1, len(sums)):
+        total: Graded = {}
+        for j in range(1, k + 1):
+            for b, f in sums[j].items():
+                for a, g in found[k - j].items():
+                    if a + b <= to:
+                        _add(total.setdefault(a + b, {}), _times(f, g), 1)
+        found.append({b: {key: c // k for key, c in f.items() if c} for b, f in total.items()})
+    return found
+
+
+def _reduced(f: Classes, p: int) -> Rows:
+    return tuple([(key, c % p) for key, c in sorted(f.items()) if c % p])
+
+
+def _with_total_class(roots: Roots, series: Graded, m: int) -> Classes:
+    """The coefficient of t^m in the total class times a series."""
+    total: Classes = {}
+    for b, f in series.items():
+        a = m - b
+        if a == 0:
+            _add(total, f, 1)
+        elif a > 0 and roots.has(a):
+            _add(total, _times({(a,): 1}, f), 1)
+    return total
+
+
+@lru_cache(maxsize=512)
+def linear_roots(p: int, k: int, m: int, largest: int | None = None) -> Rows:
+    """P^k of the m-th elementary symmetric polynomial in roots with P x = x + x^p: pairs (r, c), for the sum of the
+    c c_{r_1} c_{r_2} …
+
+    1 + t(x + s x^p) = (1 + tx) (1 + s z), z = t x^p / (1 + tx).
     """
     if k > m:
         return ()
-    return coefficients(p, p, (p,) * k + (1,) * (m - k))
+    degree = m + k * (p - 1)
+    if count(degree, p, largest) <= FEW:
+        # 1 + t(x + s x^p) has the elementary symmetric polynomials e_1 = t and e_p = ts
+        return coefficients(p, p, (p,) * k + (1,) * (m - k), largest)
+    Work.left = MOST_PRODUCTS
+    roots = _roots(largest)
+    sums: list[Graded] = [{}]
+    for j in range(1, k + 1):
+        sign = (-1) ** (j - 1)
+        sums.append({b: {key: sign * c for key, c in f.items()} for b, f in _over(roots, p * j, j, m).items()})
+    return _reduced(_with_total_class(roots, _newton(sums, m)[k], m), p)
 
 
-def square_roots(p: int, k: int, m: int) -> tuple[tuple[Partition, int], ...]:
-    """P^k of the m-th elementary symmetric polynomial in y = x^2, p odd: P y = y (1 + y^h)^2, h = (p-1)/2.
-
-    1 + ty + 2ts y^{h+1} + ts^2 y^p: the sum over b + 2c = k of 2^b times the product e_1^{m-b-c} e_{h+1}^b e_p^c.
-    """
-    half = (p - 1) // 2
-    total: dict[Partition, int] = {}
+def _square_roots_by_partitions(p: int, k: int, m: int, largest: int | None) -> Rows:
+    """1 + ty + 2ts y^{h+1} + ts^2 y^p: the sum over b + 2c = k of 2^b times the product e_1^{m-b-c} e_{h+1}^b e_p^c."""
+    total: Classes = {}
     for c in range(k // 2 + 1):
         b = k - 2 * c
-        if b + c > m:
-            continue
-        target = tuple(sorted((p,) * c + (half + 1,) * b + (1,) * (m - b - c), reverse=True))
-        for r, value in coefficients(p, p, target):
-            total[r] = (total.get(r, 0) + 2**b * value) % p
-    return tuple([(r, value) for r, value in total.items() if value])
+        if b + c <= m:
+            target = tuple(sorted((p,) * c + ((p + 1) // 2,) * b + (1,) * (m - b - c), reverse=True))
+            _add(total, dict(coefficients(p, p, target, largest)), 2**b)
+    return _reduced(total, p)
 
 
-def power_of_roots(p: int, k: int) -> tuple[tuple[Partition, int], ...]:
-    """The k-th elementary symmetric polynomial in y^h, h = (p-1)/2, through those in y: 1 + s y^h has e_h = s alone."""
+@lru_cache(maxsize=512)
+def square_roots(p: int, k: int, m: int, largest: int | None = None) -> Rows:
+    """P^k of the m-th elementary symmetric polynomial in y = x^2, p odd: P y = y (1 + s y^h)^2, h = (p-1)/2.
+
+    1 + ty (1 + s y^h)^2 = (1 + ty) (1 + 2sz + s^2 w), z = t y^{h+1} / (1 + ty), w = t y^{2h+1} / (1 + ty); with
+    1 + 2sz + s^2 w = (1 - alpha s) (1 - beta s) the power sums alpha^j + beta^j follow q_j = -2z q_{j-1} - w q_{j-2}.
+    """
     half = (p - 1) // 2
-    return coefficients(p, half, (half,) * k)
+    if count(m + half * k, p, largest) <= FEW:
+        return _square_roots_by_partitions(p, k, m, largest)
+    Work.left = MOST_PRODUCTS
+    roots = _roots(largest)
+    # q_j as a combination of z^a w^b
+    powers: list[dict[tuple[int, int], int]] = [{(0, 0): 2}, {(1, 0): -2}]
+    while len(powers) <= k:
+        fresh: dict[tuple[int, int], int] = {}
+        for (a, b), c in powers[-1].items():
+            fresh[a + 1, b] = fresh.get((a + 1, b), 0) - 2 * c
+        for (a, b), c in powers[-2].items():
+            fresh[a, b + 1] = fresh.get((a, b + 1), 0) - c
+        powers.append(fresh)
+    sums: list[Graded] = [{}]
+    for j in range(1, k + 1):
+        total: Graded = {}
+        for (a, b), c in powers[j].items():
+            for degree, f in _over(roots, (half + 1) * a + p * b, a + b, m).items():
+                _add(total.setdefault(degree, {}), f, -c)
+        sums.append(total)
+    return _reduced(_with_total_class(roots, _newton(sums, m)[k], m), p)
+
+
+@lru_cache(maxsize=512)
+def powers_of_roots(p: int, k: int, exponent: int, largest: int | None = None) -> Rows:
+    """The k-th elementary symmetric polynomial in the x_i^exponent, through those in the x_i, mod p."""
+    if count(exponent * k, exponent, largest) <= FEW:
+        # 1 + s x^e has the one elementary symmetric polynomial e_e = s
+        return coefficients(p, exponent, (exponent,) * k, largest)
+    Work.left = MOST_PRODUCTS
+    roots = _roots(largest)
+    sums: list[Graded] = [{}]
+    for j in range(1, k + 1):
+        sign = (-1) ** (j - 1)
+        sums.append({0: {key: sign * c for key, c in roots.power_sum(exponent * j).items()}})
+    return _reduced(_newton(sums, 0)[k].get(0, {}), p)

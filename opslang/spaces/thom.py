@@ -71,9 +71,13 @@ class Thom(Family):
 
     def _power(self, prime: int, k: int) -> Polynomial:
         """The class that P^k U is U times."""
+        last = self.base.last
         if self.base.step == 2:
-            return self._elementary(symmetric.coefficients(prime, prime - 1, (prime - 1,) * k), prime)
-        single = [self._elementary(symmetric.power_of_roots(prime, a), prime) if a else ONE for a in range(k + 1)]
+            return self._elementary(symmetric.powers_of_roots(prime, k, prime - 1, last), prime)
+        single = [
+            self._elementary(symmetric.powers_of_roots(prime, a, (prime - 1) // 2, last), prime) if a else ONE
+            for a in range(k + 1)
+        ]
         if self.base.letter != "q":
             return single[k]
         # over BSp(n) each quaternionic line counts twice
