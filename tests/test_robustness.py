@@ -286,7 +286,7 @@ def test_an_interrupt_while_it_waits(waiting: subprocess.Popen[bytes]) -> None:
     begun = time.monotonic()
     waiting.send_signal(signal.SIGINT)
     _, err = waiting.communicate(timeout=ALLOWED)
-    assert waiting.returncode == 130 and err == b"opslang: interrupted\n" and time.monotonic() - begun < BUDGET * 2
+    assert waiting.returncode == 130 and err == b"opslang: interrupted\n" and time.monotonic() - begun < BUDGET * 5
 
 
 def test_an_end_asked_for_by_sigterm(waiting: subprocess.Popen[bytes]) -> None:

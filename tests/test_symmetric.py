@@ -41,7 +41,7 @@ def test_both_ways_agree(p: int, by_newton: None, monkeypatch: pytest.MonkeyPatc
 
 
 def test_by_hand(by_newton: None) -> None:
-    """At p = 3, sum x_i^3 x_j = c_1^2 c_2 - 2 c_2^2 - c_1 c_3 + 4 c_4, and P^1 p_1 = sum 2 y^2 = 2 p_1^2 - 4 p_2 (by hand)."""
+    """sum x_i^3 x_j = c_1^2 c_2 - 2 c_2^2 - c_1 c_3 + 4 c_4; at 3, P^1 p_1 = sum 2 y^2 = 2 p_1^2 - 4 p_2 (by hand)."""
     assert dict(symmetric.linear_roots(3, 1, 2)) == {(2, 1, 1): 1, (2, 2): 1, (3, 1): 2, (4,): 1}
     assert dict(symmetric.square_roots(3, 1, 1)) == {(1, 1): 2, (2,): 2}
     assert dict(symmetric.powers_of_roots(5, 1, 2)) == {(1, 1): 1, (2,): 3}

@@ -25,8 +25,8 @@ FRONT_CODES: dict[str, Code] = {
     "unwritable-file": Code(
         title="A mended draft cannot be written",
         explanation=(
-            "`opslang lint --mend` writes the mended draft beside the old one and then puts it in its place; the folder "
-            "or the file does not allow it.  The draft is left as it was."
+            "`opslang lint --mend` writes the mended draft beside the old one and then puts it in its place; "
+            "the folder or the file does not allow it.  The draft is left as it was."
         ),
         example="",
     ),

@@ -1,1 +1,1 @@
-"""Benchmarks: ratios in one run, each side a fresh process, medians of five.  `python -m tests.benchmarks` prints the table."""
+"""Benchmarks: ratios in one run, each side a fresh process, medians of five: `python -m tests.benchmarks`."""

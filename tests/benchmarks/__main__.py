@@ -1,4 +1,4 @@
-"""The table of DEVELOPERS.md: `python -m tests.benchmarks` (some minutes), `python -m tests.benchmarks --quick` (one)."""
+"""The table of DEVELOPERS.md: `python -m tests.benchmarks` (some minutes), with `--quick` in one."""
 
 from __future__ import annotations
 

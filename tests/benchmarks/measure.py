@@ -1,4 +1,4 @@
-"""One measurement in its own process: `python -m tests.benchmarks.measure PROGRAM WORKLOAD [NUMBERS]` prints one JSON line.
+"""One measurement in its own process: `python -m tests.benchmarks.measure PROGRAM WORKLOAD [NUMBERS]`, one JSON line.
 
 PROGRAM is `opslang`, through the function that `opslang run` calls, or `short`, the baseline.
 """

@@ -1,4 +1,4 @@
-"""The short programs that a user would write: the baseline.  Dictionaries of tuples, leftmost inadmissible pair first."""
+"""The short programs that a user would write, the baseline: dictionaries of tuples, leftmost pair first."""
 
 from __future__ import annotations
 
@@ -54,8 +54,8 @@ def powers(word: Word, p: int = 3) -> dict[Word, int]:
                 for j in range(a // p + 1):
                     last = (j,) if j else ()
                     sign = (-1) ** (a + j)
-                    put(head + (0, a + b - j, *last) + tail, c * sign * binomial((p - 1) * (b - j), a - p * j))
-                    put(head + (a + b - j, 0, *last) + tail, -c * sign * binomial((p - 1) * (b - j) - 1, a - p * j - 1))
+                    put((*head, 0, a + b - j, *last, *tail), c * sign * binomial((p - 1) * (b - j), a - p * j))
+                    put((*head, a + b - j, 0, *last, *tail), -c * sign * binomial((p - 1) * (b - j) - 1, a - p * j - 1))
                 break
         else:
             done[w] = (done.get(w, 0) + c) % p

@@ -1,4 +1,4 @@
-"""The project's own workloads, from a small generator of our own with fixed seeds, so that every program sees the same."""
+"""The project's own workloads, from a small generator with fixed seeds, so that every program sees the same."""
 
 from __future__ import annotations
 
