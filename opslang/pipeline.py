@@ -59,7 +59,7 @@ def kind_of(text: str) -> Kind:
     """The kind of a statement that could not be read, by its first word and its signs."""
     words = text.split(None, 1)
     found = _KINDS.get(words[0]) if words else None
-    return found or ("relation" if "=" in text else "element")
+    return found or ("relation" if any(sign in text for sign in ("=", "≡", r"\equiv")) else "element")
 
 
 class Session:
@@ -207,6 +207,7 @@ class Session:
     # --- relations ------------------------------------------------------------------------------
 
     def _sides(self, statement: sf.RelationStatement, lowering: Lowering) -> tuple[Value, ...]:
+        statements.congruence(statement, self.scope)
         values = [lowering.sum(side) for side in statement.sides]
         sort: Sort = next((value.sort for value in values if value.sort != "scalar"), "class")
         for value, side in zip(values, statement.sides):

@@ -192,3 +192,110 @@ def test_a_class_of_the_name_h_has_powers() -> None:
     script = Script(let="H in H^2")
     script.run("let x = H^2")
     assert str(script.normalise("x")) == "H^2"
+
+
+# --- signs of papers -----------------------------------------------------------------------------
+
+
+def read(text: str) -> s.Statement:
+    statement, diagnostics = parse(Source("a.ops", text))
+    assert statement is not None and not diagnostics, (text, diagnostics)
+    return statement
+
+
+@pytest.mark.parametrize("sign", ["≡", r"\equiv "])
+def test_congruent_is_equal(sign: str) -> None:
+    assert read(f"Sq^1 Sq^1 {sign} 0") == read("Sq^1 Sq^1 = 0")
+
+
+@pytest.mark.parametrize(
+    "tail",
+    ["(mod 2)", "mod 2", r"\pmod{2}", r"\pmod 2", r"\mod 2.", r"\bmod{2}", r"(\mathrm{mod}\ 2)", r"\;(\text{mod }2)"],
+)
+def test_a_modulus_behind_a_relation(tail: str) -> None:
+    text = f"Sq^1 Sq^2 = Sq^3 {tail}"
+    statement = read(text)
+    assert isinstance(statement, s.RelationStatement) and statement.modulus is not None
+    assert statement.sides == read("Sq^1 Sq^2 = Sq^3").sides  # type: ignore[union-attr]
+    assert text[slice(*statement.modulus.span)].strip("{}") == "2"
+    assert Session().run(Source("a.ops", text)).verdict == "true"
+    (found,) = Session(3).run(Source("a.ops", f"P^1 P^1 = 2 P^2 {tail}")).diagnostics
+    assert found.name == "modulus" and "prime 2" in found.help
+
+
+@pytest.mark.parametrize("tail", ["(mod p)", r"\pmod{p}", "mod p"])
+def test_modulo_p_is_modulo_the_prime(tail: str) -> None:
+    assert read(f"Sq^1 Sq^2 = Sq^3 {tail}") == read("Sq^1 Sq^2 = Sq^3")
+
+
+def test_why_of_a_congruence_and_other_moduli() -> None:
+    assert Session().run(Source("a.ops", r"why Sq^1 Sq^2 \equiv Sq^3 \pmod 2")).verdict == "true"
+    for modulus in ("4", "3", "1"):
+        (found,) = Session().run(Source("a.ops", f"Sq^1 Sq^2 = Sq^3 (mod {modulus})")).diagnostics
+        assert found.name == "modulus"
+
+
+@pytest.mark.parametrize("text", ["Sq^2 x (mod 2)", "Sq^2 mod 2 = x", "mod", "x = y mod", "x = (mod 2) y", "mod 2"])
+def test_a_modulus_elsewhere_is_refused(text: str) -> None:
+    found = errors(text)[0]
+    assert "relation" in f"{found.message} {found.help}" and found.name == "expected"
+
+
+@pytest.mark.parametrize(
+    "sign", ["≠", r"\neq", r"\ne", "!=", "=?", "?=", "≟", r"\stackrel{?}{=}", r"\not=", "≢", r"\not\equiv"]
+)
+def test_unequal_is_no_statement(sign: str) -> None:
+    (found,) = errors(f"Sq^1 Sq^2 {sign} Sq^3")
+    assert "decided" in found.message and mended(f"Sq^1 Sq^2 {sign} Sq^3") == "Sq^1 Sq^2 = Sq^3"
+
+
+@pytest.mark.parametrize("dash", ["–", "−", "‒"])
+def test_dashes_are_minus(dash: str) -> None:
+    assert read(f"x {dash} y_{{n{dash}1}}") == read("x - y_{n-1}")
+
+
+@pytest.mark.parametrize(
+    ("text", "better"),
+    [
+        ("Sqˆ2 iota_3", "Sq^2 iota_3"),
+        ("Sq´2 iota_3", "Sq^2 iota_3"),
+        ("xˆ{12}", "x^{12}"),
+        ("x´", "x'"),
+        ("Sq^２ iota_3", "Sq^2 iota_3"),
+        ("iota_１２", "iota_12"),
+        ("Sq２ iota_3", "Sq^2 iota_3"),
+    ],
+)
+def test_dead_keys_and_wide_digits_get_one_error(text: str, better: str) -> None:
+    assert len(errors(text)) == 1 and mended(text) == better
+
+
+@pytest.mark.parametrize("power", ["^∞", r"^\infty", r"^{\infty}", "^infty", "^oo", "^{oo}", "^{∞}", "^infinity"])
+@pytest.mark.parametrize("word", ["RP", "CP", "HP"])
+def test_infinite_projective_spaces(word: str, power: str) -> None:
+    assert read(f"on {word}{power}") == read(f"on {word}")
+    assert read(f"on {word}{power}(a) x RP^2") == read(f"on {word}(a) x RP^2")
+
+
+@pytest.mark.parametrize("text", ["on X^∞", "on BO^oo", r"on K(Z^\infty, 2)", "x^∞", "RP^5 + ∞"])
+def test_infinity_elsewhere_is_refused(text: str) -> None:
+    errors(text)
+
+
+@pytest.mark.parametrize(
+    ("text", "better"),
+    [
+        ("on BO3", "on BO(3)"),
+        ("on BO_3", "on BO(3)"),
+        ("on BSpin_7 x X", "on BSpin(7) x X"),
+        ("on RP3", "on RP^3"),
+        ("on RP_3", "on RP^3"),
+        ("on RP(3)", "on RP^3"),
+        ("on CP(12)", "on CP^12"),
+        ("on BO^3", "on BO(3)"),
+        ("on lens_4", "on lens(4)"),
+    ],
+)
+def test_numbers_of_spaces(text: str, better: str) -> None:
+    (found,) = Session().run(Source("a.ops", text)).diagnostics
+    assert found.mend is not None and text[: found.span[0]] + found.mend + text[found.span[1] :] == better

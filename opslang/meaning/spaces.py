@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+import re
 from itertools import groupby
 
 from opslang.meaning.indices import number
 from opslang.meaning.scope import Scope, spelled
-from opslang.report.diagnostic import Refusal, error
+from opslang.report.diagnostic import Diagnostic, Refusal, error
 from opslang.spaces.bundle_thom import ThomFactor
 from opslang.spaces.family import NotKnown
 from opslang.spaces.space import WORDS, AnyFactor, Factor, NamedFactor, SpaceValue, class_order
@@ -81,6 +82,9 @@ def _named(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str]:
             return [factor], factor.family(scope.prime, 0).text
         except NotKnown as reason:
             raise Refusal(error("not-known", str(reason), part.span)) from reason
+    numbered = _NUMBERED.fullmatch(part.name)
+    if numbered is not None and part.power is None and not part.arguments:
+        raise Refusal(_number_misplaced(part, numbered[1], int(numbered[2])))
     known = ", ".join(scope.spaces) or "none so far"
     raise Refusal(
         error(
@@ -90,6 +94,16 @@ def _named(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str]:
             f"spaces named in this script: {known}; others are K(G, n), {', '.join(WORDS)}",
         )
     )
+
+
+_NUMBERED = re.compile(rf"({'|'.join(word for word in WORDS if word != 'thom')})_([0-9]+)")
+_PROJECTIVE = ("RP", "CP", "HP")
+
+
+def _number_misplaced(part: sf.NamedSpace, word: str, size: int) -> Diagnostic:
+    """`BO_3`, `BO^3`, `RP(3)`."""
+    mend = f"{word}^{size}" if word in _PROJECTIVE else f"{word}({size})"
+    return error("space-arguments", f"the number of {word} stands elsewhere", part.span, f"write {mend}", mend)
 
 
 def _thom_of_bundle(part: sf.NamedSpace, scope: Scope) -> tuple[list[AnyFactor], str] | None:
@@ -132,7 +146,10 @@ def _named_factor(part: sf.NamedSpace, scope: Scope) -> NamedFactor:
             )
     if part.power is not None:
         numbers.append(part.power)
-    projective = part.name in ("RP", "CP", "HP")
+    projective = part.name in _PROJECTIVE
+    misplaced = part.power is None if projective else part.power is not None
+    if misplaced and len(numbers) == 1 and not letters and isinstance(numbers[0], int):
+        raise Refusal(_number_misplaced(part, part.name, numbers[0]))
     most = 2 if part.name == "lens" else 1 if projective else 0
     if len(numbers) > 1 or len(letters) > most or (projective and part.power is None and numbers):
         how = (

@@ -118,6 +118,17 @@ def declare(statement: sf.DeclareStatement, scope: Scope) -> list[Diagnostic]:
     return found
 
 
+def congruence(statement: sf.RelationStatement, scope: Scope) -> None:
+    """Refuses a relation modulo another number than the prime."""
+    modulus = statement.modulus
+    if modulus is None or modulus.value == scope.prime:
+        return
+    prime = is_prime(modulus.value)
+    help = f"write `prime {modulus.value}` on a line before it" if prime else "relations are modulo the prime"
+    message = f"the relation is modulo {modulus.value}, and the prime is {scope.prime}"
+    raise Refusal(error("modulus", message, modulus.span, help))
+
+
 def abbreviate(statement: sf.AbbreviateStatement, scope: Scope, lowering: Lowering) -> Value:
     """`let u = …`; the value is put into the scope."""
     name = statement.name

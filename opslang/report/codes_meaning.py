@@ -50,6 +50,14 @@ MEANING_CODES: dict[str, Code] = {
         explanation=("A class with coefficients F_q belongs to the prime q. Choose the prime before the declaration."),
         example="let x in H^2(X; F_3)",
     ),
+    "modulus": Code(
+        title="A congruence modulo another number",
+        explanation=(
+            "Relations are modulo the prime, 2 unless `prime` says otherwise.  A final `(mod 2)` falls away where it"
+            " names that prime."
+        ),
+        example="Sq^1 Sq^2 = Sq^3 (mod 3)",
+    ),
     "declared-twice": Code(
         title="A name stands twice in one declaration",
         explanation=("Each name of a declaration is a class of its own."),

@@ -17,7 +17,8 @@ SYNTAX_CODES: dict[str, Code] = {
         title="No statement begins like this",
         explanation=(
             "The line begins with a word that is no keyword, or declares a class without `let`.  The keywords "
-            "are prime, space, on, let, why, basis, series, map, bundle and compare; every other line is an expression or a relation."
+            "are prime, space, on, let, why, basis, series, map, bundle and compare; every other line is an "
+            "expression or a relation."
         ),
         example="lte x in H^2",
     ),

@@ -63,7 +63,7 @@ class Builder(IndexRules, SpaceRules):
         return s.ExpressionStatement(children[0], span_of(children))
 
     def relation_statement(self, children: list[Any]) -> s.RelationStatement:
-        return s.RelationStatement(tuple(nodes_of(children)), span_of(children))
+        return s.RelationStatement(tuple(nodes_of(children)), None, span_of(children))
 
     def why_statement(self, children: list[Any]) -> s.WhyStatement:
         return s.WhyStatement(children[1], span_of(children))

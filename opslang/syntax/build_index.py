@@ -11,7 +11,7 @@ from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
 from opslang.syntax.indices import binomial, power_of, product_of, sum_of
 from opslang.syntax.parts import Part, Sign, nodes_of, single, span_of
-from opslang.syntax.spelling import shown
+from opslang.syntax.shapes import shown
 
 
 class IndexRules(Transformer_NonRecursive):  # type: ignore[type-arg]

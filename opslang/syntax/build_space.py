@@ -46,6 +46,9 @@ class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
                 arguments = child.value
             else:
                 power = child.value
+                if power is None and word.value not in ("RP", "CP", "HP"):
+                    help = "RP, CP and HP have infinite powers; BO and the like are stable without a number"
+                    raise Refusal(error("expected", f"{word.value} has no infinite power", child.span, help))
         return s.NamedSpace(word.value, power, arguments, span_of(children))
 
     def space_word(self, children: list[Any]) -> Word:
@@ -65,6 +68,8 @@ class SpaceRules(Transformer_NonRecursive):  # type: ignore[type-arg]
         return children[0]  # type: ignore[no-any-return]
 
     def space_power(self, children: list[Any]) -> Part:
+        if any(getattr(child, "type", "") == "INFINITY" for child in children):
+            return Part(None, span_of(children))
         return Part(single(children[1]), span_of(children))
 
     def space_arguments(self, children: list[Any]) -> Arguments:

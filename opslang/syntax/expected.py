@@ -9,7 +9,8 @@ from collections.abc import Set
 
 from opslang.ground.source import Span
 from opslang.report.diagnostic import Diagnostic, error
-from opslang.syntax.spelling import Reading, Token, shown
+from opslang.syntax.shapes import Token, shown
+from opslang.syntax.spelling import Reading
 
 USAGE: dict[str, str] = {
     "PRIME_WORD": "prime 3",
@@ -109,6 +110,7 @@ _HELP = {
     "BAR": "|x| stands in index positions only",
     "BINOM": "binom(a, b) stands in index positions only",
     "TIMES": "× stands between spaces or classes",
+    "INFINITY": "∞ stands behind RP^, CP^ and HP^ only",
 }
 
 

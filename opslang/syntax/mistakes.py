@@ -9,7 +9,8 @@ from collections.abc import Callable
 from itertools import islice
 
 from opslang.report.diagnostic import Diagnostic, error
-from opslang.syntax.spelling import MANY, Reading, Token, shown
+from opslang.syntax.shapes import Token, shown
+from opslang.syntax.spelling import MANY, Reading
 from opslang.syntax.spellings import KEYWORDS, RESERVED, STATEMENT_WORDS
 from opslang.syntax.words import LONGEST_SPLIT, SPACES, is_word, meant, nearly, said
 
@@ -254,6 +255,13 @@ def _comma(reading: Reading, at: int) -> Diagnostic | None:
     return error("expected", "no index follows the comma", (token.start, other.end), "leave the comma out", "}")
 
 
+def _modulus(reading: Reading, at: int) -> Diagnostic:
+    """`mod 2` elsewhere than at the end of a relation."""
+    token = reading.tokens[at]
+    message = "a modulus, as in (mod 2), stands at the end of a relation, and is the prime"
+    return error("expected", message, (token.start, token.end), "the prime is chosen by a line of its own: prime 3")
+
+
 def _let(reading: Reading, at: int) -> Diagnostic | None:
     """A name that is taken in a `let`, and `=` for `in`."""
     for place, token in enumerate(islice(reading.tokens, 1, None), start=1):
@@ -308,6 +316,7 @@ _CHECKS: dict[str, _Check] = {
     "STAR": _doubled,
     "LET": _let,
     "COMMA": _comma,
+    "MOD": _modulus,
     **dict.fromkeys(_LETTERS, _against),
 }
 _AMONG_SPACES: dict[str, _Check] = {"RUN": _space_number, **dict.fromkeys(_LETTERS - {"LETTER_X"}, _space_number)}

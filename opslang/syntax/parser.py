@@ -39,17 +39,20 @@ def parse(source: Source, limit: int = STATEMENT_LIMIT) -> Parsed:
 
 def by_grammar(text: str) -> Parsed:
     """What `parse` does with a text that is not plain."""
+    from opslang.syntax import modulus
     from opslang.syntax.mistakes import mistakes
     from opslang.syntax.spelling import Reading
 
     reading = Reading(text)
+    number = None
     if not reading.stop and reading.tokens:
+        number = modulus.take(reading)
         reading.errors += mistakes(reading)
     if reading.errors or not reading.tokens:
         ordered = sorted(reading.errors, key=lambda found: found.span)
         return None, tuple(ordered)
     try:
-        return _tree(reading), tuple(reading.warnings)
+        return modulus.bearing(_tree(reading), number), tuple(reading.warnings)
     except Refusal as refusal:
         return None, (refusal.diagnostic,)
 

@@ -195,7 +195,7 @@ def _formula(text: str, at: int, end: int) -> ExpressionStatement | RelationStat
     if not sides:
         return None
     span = (sides[0].span[0], sides[-1].span[1])
-    return ExpressionStatement(sides[0], span) if len(sides) == 1 else RelationStatement(tuple(sides), span)
+    return ExpressionStatement(sides[0], span) if len(sides) == 1 else RelationStatement(tuple(sides), None, span)
 
 
 def sums(text: str, at: int, end: int) -> list[Sum] | None:

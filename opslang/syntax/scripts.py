@@ -8,7 +8,7 @@ from opslang.ground.source import Span
 from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as s
 from opslang.syntax.parts import Part, Script, Scripted, end, single, start
-from opslang.syntax.spelling import shown
+from opslang.syntax.shapes import shown
 
 Base = TypeVar("Base", s.Bockstein, s.Milnor, s.Fundamental, s.Name, s.Number, s.Group, s.Conjugate, s.Construction)
 

@@ -9,12 +9,12 @@ from __future__ import annotations
 
 import re
 import unicodedata
-from typing import NamedTuple
 
 from opslang.report.diagnostic import Diagnostic, error, warning
+from opslang.syntax.shapes import PLAIN_TOKEN, SKIPPED, TEX_TOKEN, Token, shown
 from opslang.syntax.spellings import (
     COMMANDS,
-    FONTS,
+    INFINITE,
     INSIDE,
     KEYWORDS,
     LATER,
@@ -39,41 +39,6 @@ DIGIT_LIMIT = 4000
 MANY = 5
 """After so many faults of spelling in one statement the rest of it is not read."""
 
-
-class Token(NamedTuple):
-    """A token with the stretch of text it was read from; parts of a Unicode script may have no width."""
-
-    kind: str
-    value: str
-    start: int
-    end: int
-
-
-_FONT = "|".join(re.escape(font) for font in FONTS)
-_SHAPES = rf"""
-      (?P<space>[ \t\r\n\u00a0\u2000-\u200b\u2028\u2029\u202f\u205f\u3000\ufeff]+)
-    | (?P<comment>\#[^\n]*)
-    | (?P<dangling>\\[ \t\r\n]*\Z)
-    | (?P<joint>\\[ \t]*\r?\n)
-    | (?P<number>[0-9]+)
-    | (?P<word>[A-Za-z]+)
-    | (?P<pull>\^\s*(?: \* | ∗ | \\ast(?![A-Za-z]) | \{{\s*(?: \* | ∗ | \\ast )\s*\}} ))
-    | (?P<raised_prime>\^\s*(?: \\prime(?![A-Za-z]) | \{{\s*(?: (?: \\prime(?![A-Za-z]) | ['′″‴’] )\s* )+ \}} ))
-    | (?P<raised>[{"".join(SUPERSCRIPTS)}]+)
-    | (?P<lowered>[{"".join(SUBSCRIPTS)}]+)
-    | (?P<primes>[{"".join(PRIMES)}]+)
-    | (?P<face>\\(?:{_FONT})(?![A-Za-z])\s*(?: \{{\s*(?P<faced>[A-Za-z]+)\s*\}} | (?P<single>[A-Za-z])(?![A-Za-z]) ))
-    | (?P<aside>\\(?:label|tag\*?|hspace\*?|vspace\*?|phantom|hphantom)\s*\{{[^{{}}]*\}} | \\(?:left|right)\s*\.)
-    | (?P<command>\\[A-Za-z]+)
-    | (?P<escape>\\.)
-    | (?P<dots>\.\.+)
-    | (?P<arrow>-{{1,2}}>)
-    | (?P<sign>.)
-    """
-_FLAGS = re.VERBOSE | re.DOTALL
-_PLAIN_TOKEN = re.compile(_SHAPES, _FLAGS)
-_TEX_TOKEN = re.compile(_SHAPES.replace(r"(?P<comment>\#", r"(?P<comment>[\#%]"), _FLAGS)
-_SKIPPED = frozenset(("space", "comment", "joint"))
 _EMPTY = re.compile(r"\s*\}")
 _PIECES = re.compile(r"Sq|[A-Za-z]")
 _CLOSERS = {"RPAR": "LPAR", "RSQUARE": "LSQUARE", "RBRACE": "LBRACE"}
@@ -97,10 +62,10 @@ class Reading:
         self._spatial = False
         self._open: list[tuple[str, str, Token]] = []  # kind, role ("script", "binom", "" or "layout"), token
         self._closed = ""
-        self._pattern = _TEX_TOKEN if self.tex else _PLAIN_TOKEN
+        self._pattern = TEX_TOKEN if self.tex else PLAIN_TOKEN
         for found in self._pattern.finditer(text):
             group = found.lastgroup or ""
-            if group in _SKIPPED:
+            if group in SKIPPED:
                 continue
             _READERS[group](self, found.group(), *found.span())
             if self.stop:
@@ -164,6 +129,8 @@ class Reading:
             self._put(("IN", "in"), start, end)
         elif self._spatial:
             self._spatial_word(text, start, end)
+        elif text == "mod":
+            self._put(("MOD", "mod"), start, end)
         elif text in WORDS:
             self._put(WORDS[text], start, end)
         elif self.tex:
@@ -178,6 +145,9 @@ class Reading:
     def _spatial_word(self, text: str, start: int, end: int) -> None:
         """A word among spaces: runs are names of spaces; an x against a closing bracket or a number is the product."""
         last = self.tokens[-1]
+        if text in INFINITE and "CARET" in [token.kind for token in self.tokens[-2:]]:
+            self._put(("INFINITY", "∞"), start, end)
+            return
         if len(text) > 1 and text[0] == "x" and last.kind in ("RPAR", "NUMBER", "RBRACE") and text not in WORDS:
             self._put(letter_meaning("x"), start, start + 1)
             text, start = text[1:], start + 1
@@ -189,7 +159,7 @@ class Reading:
     def face(self, text: str, start: int, end: int) -> None:
         found = self._pattern.match(self.text, start)
         content = (found and (found.group("faced") or found.group("single"))) or ""
-        if self._spatial or content in WORDS or content in LATER_INSIDE or content == "in":
+        if self._spatial or content in WORDS or content == "mod" or content in LATER_INSIDE or content == "in":
             self.word(content, start, end)
         else:
             self._put(self._run(content), start, end)
@@ -241,6 +211,31 @@ class Reading:
     def raised_prime(self, text: str, start: int, end: int) -> None:
         count = text.count("\\prime") + sum(PRIMES.get(char, 0) for char in text)
         self._put(("PRIME", "'" * count), start, end)
+
+    # --- slips of the keyboard -------------------------------------------------------------------
+
+    def foreign(self, text: str, start: int, end: int) -> None:
+        """Digits of another alphabet, or of full width; perhaps behind a square whose ^ is missing."""
+        plain = "".join(str(unicodedata.decimal(digit)) for digit in text)
+        head = bool(self.tokens) and self._previous() in ("SQ", "PP")
+        if head:
+            self._put(("CARET", "^"), start, start)
+        mend = "^" + plain if head else plain
+        message = f"{shown(text)} is written with digits of another kind"
+        self._fault("invalid-character", message, start, end, f"write {mend}", mend)
+        self._put(("NUMBER", plain), start, end)
+
+    def dead(self, text: str, start: int, end: int) -> None:
+        """A key for accents that was pressed for ^, or for a prime."""
+        raises = text == "ˆ" or self.text[end : end + 1].isdigit() or self.text[end : end + 1] == "{"
+        kind, mend = ("CARET", "^") if raises else ("PRIME", "'")
+        self._fault("invalid-character", f"{text} is an accent", start, end, f"write {mend}", mend)
+        self._put((kind, mend), start, end)
+
+    def unequal(self, text: str, start: int, end: int) -> None:
+        message = f"{shown(text)} is no sign of a relation: it is written with =, and decided to be true or false"
+        self._fault("expected", message, start, end, "write =", "=")
+        self._put(("EQUALS", "="), start, end)
 
     # --- signs and brackets ----------------------------------------------------------------------
 
@@ -307,6 +302,8 @@ class Reading:
                 role = "script"
             elif previous == "BINOM":
                 role = "binom"
+            elif previous == "MOD":
+                role = "script"
             elif self._closed == "binom" or not self.tex:
                 role = "script"
             else:
@@ -349,9 +346,8 @@ class Reading:
             help = "a comment begins with #; % begins one in TeX spelling only"
             self._fault("invalid-character", "% has no meaning here", start, end, help)
         else:
-            mend = plain if plain.isascii() and plain.isdigit() else None
             help = "names are Latin or Greek letters" if text.isalpha() else ""
-            self._fault("invalid-character", f"{shown(text)} has no meaning here", start, end, help, mend)
+            self._fault("invalid-character", f"{shown(text)} has no meaning here", start, end, help)
 
     # --- the end ---------------------------------------------------------------------------------
 
@@ -377,15 +373,6 @@ _READERS = {
     name: getattr(Reading, name)
     for name in (
         *("number", "word", "pull", "raised_prime", "raised", "lowered", "primes", "face", "aside", "command"),
-        *("escape", "dots", "arrow", "dangling", "sign"),
+        *("escape", "dots", "arrow", "dangling", "foreign", "dead", "unequal", "sign"),
     )
 }
-
-
-def shown(text: str) -> str:
-    """A piece of text for a message: its beginning where it is long, its code points where it cannot be printed."""
-    if len(text) > 40:
-        text = text[:30] + "…"
-    if text.isprintable():
-        return text
-    return " ".join(f"U+{ord(char):04X}" for char in text)

@@ -149,6 +149,8 @@ SYMBOLS: dict[str, Meaning] = {
     "+": ("PLUS", "+"),
     "-": ("MINUS", "-"),
     "−": ("MINUS", "-"),
+    "–": ("MINUS", "-"),
+    "‒": ("MINUS", "-"),
     "*": ("STAR", "*"),
     "∗": ("STAR", "*"),
     "·": ("STAR", "*"),
@@ -161,6 +163,8 @@ SYMBOLS: dict[str, Meaning] = {
     "∘": ("COMPOSE", "compose"),
     "⊕": ("OPLUS", "+"),
     "=": ("EQUALS", "="),
+    "≡": ("EQUALS", "="),
+    "∞": ("INFINITY", "∞"),
     "/": ("SLASH", "/"),
     ",": ("COMMA", ","),
     ";": ("SEMICOLON", ";"),
@@ -202,6 +206,11 @@ COMMANDS: dict[str, Meaning] = {
     "circ": ("COMPOSE", "compose"),
     "oplus": ("OPLUS", "+"),
     "in": ("IN", "in"),
+    "equiv": ("EQUALS", "="),
+    "infty": ("INFINITY", "∞"),
+    "mod": ("MOD", "mod"),
+    "bmod": ("MOD", "mod"),
+    "pmod": ("MOD", "mod"),
     "colon": ("COLON", ":"),
     "to": ("ARROW", "->"),
     "rightarrow": ("ARROW", "->"),
@@ -221,6 +230,9 @@ COMMANDS: dict[str, Meaning] = {
     "rbrack": ("RSQUARE", "]"),
 }
 """TeX commands that stand for a token, without the backslash."""
+
+INFINITE = frozenset(("oo", "infty", "infinity"))
+"""What ∞ is typed as, in the power of a space."""
 
 FONTS = (
     *("mathrm", "operatorname*", "operatorname", "textrm", "textup", "textit", "textsf", "textbf", "text", "mathit"),

@@ -292,9 +292,10 @@ class ExpressionStatement:
 
 @define(repr=False)
 class RelationStatement:
-    """`a = b`, or a chain `a = b = c`; two sides or more."""
+    """`a = b`, or a chain `a = b = c`; two sides or more.  `modulus` is the 2 of a final `(mod 2)`."""
 
     sides: tuple[Sum, ...]
+    modulus: Number | None = None
     span: Span = attrs.field(default=HERE, eq=False, repr=False)
 
 

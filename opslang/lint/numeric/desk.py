@@ -201,7 +201,7 @@ def _decide(left: Sum, right: Sum, known: Known, numbers: dict[str, int], why: b
     if surfaces[0] is None or surfaces[1] is None:
         return Decision("unknown", "symbols stand in it")
     span = (left.at.start, right.at.end)
-    statement = sf.RelationStatement((surfaces[0], surfaces[1]), span)
+    statement = sf.RelationStatement((surfaces[0], surfaces[1]), span=span)
     outcome = session.answer(statement, span)
     of_class = bool(special)
     classes = frozenset(name.spelling for side in (left, right) for name in names_of(side))
