@@ -57,7 +57,7 @@ def test_a_session_of_twenty_lines_is_saved_and_answered_alike(tmp_path: Path) -
         for line, number in WORK:
             terminal.enter(line, number)
         terminal.enter("save work.ops", 10)
-        terminal.sees("20 lines saved in work.ops")
+        terminal.sees("statements saved in work.ops")
         before = (tmp_path / "work.ops").read_text()
         terminal.enter("Sq^1 iota_1", 10)
         terminal.enter("save work.ops", 10)
@@ -74,6 +74,7 @@ def test_a_session_of_twenty_lines_is_saved_and_answered_alike(tmp_path: Path) -
     kinds = ("element", "derivation")
     assert results == [r["text"] for r in records if r["kind"] in kinds or r["verdict"] == "false"]
     assert len(results) == 9
+    assert f"{len(records)} statements saved" in shown
     assert "# a morning's work" in before and "that" not in before
 
 
@@ -239,6 +240,15 @@ def test_tex_pasted_from_a_paper(tmp_path: Path) -> None:
         terminal.sees("alpha is not declared")
 
 
+def test_prose_pasted_from_a_paper(tmp_path: Path) -> None:
+    prose = "the relation $\\mathrm{Sq}^2\\mathrm{Sq}^2 = \\mathrm{Sq}^3\\mathrm{Sq}^1$ implies that $k$ is even"
+    with Terminal(tmp_path) as terminal:
+        terminal.at_prompt(1)
+        terminal.press("\x1b[200~" + prose + "\x1b[201~\r")
+        terminal.sees("the words around the formula are left out, and so is k", "true ")
+        terminal.at_prompt(1)
+
+
 def test_an_invalid_byte_is_pointed_at(tmp_path: Path) -> None:
     with Terminal(tmp_path) as terminal:
         terminal.at_prompt(1)
@@ -250,7 +260,7 @@ def test_an_invalid_byte_is_pointed_at(tmp_path: Path) -> None:
 
 
 def test_the_end_of_input_and_the_ways_to_leave(tmp_path: Path) -> None:
-    for keys in ("\x04", "leave\r", "quit\r"):
+    for keys in ("\x04", "leave\r", "quit\r", "q\r"):
         with Terminal(tmp_path) as terminal:
             terminal.at_prompt(1)
             terminal.press("half a li\x03")

@@ -22,6 +22,7 @@ from opslang.front.highlight import OpslangLexer
 from opslang.front.history import LARGEST, Remembered, read, state_folder, written
 from opslang.front.logbook import Expanded, Logbook
 from opslang.front.pasting import displayed, on_one_line, opens_display
+from opslang.front.prose import prose
 from opslang.front.sitting import Sitting
 from opslang.front.statement import Settings
 from opslang.front.status import fitted, line
@@ -39,8 +40,13 @@ class Heard:
 
     def __init__(self, width: int = 80, **options: Any) -> None:
         self.said: list[str] = []
+        self.screens = 0
         work = Work(self.said.append)
-        self.sitting = Sitting(Settings(**options), work, self.said.append, self.said.append, lambda: width)
+        self.sitting = Sitting(Settings(**options), work, self.said.append, self._page, lambda: width)
+
+    def _page(self, text: str, screens: int) -> None:
+        self.said.append(text)
+        self.screens = screens
 
     def __call__(self, text: str) -> str:
         self.said.clear()
@@ -647,6 +653,54 @@ def test_displays_are_answered_and_saved() -> None:
     assert on_one_line(" a\n  = b") == "a = b"
 
 
+PROSE = "By Adem the relation\n  $Sq^2 Sq^2 = Sq^3 Sq^1$ implies, where\n$k$ is even, that $Sq^1 Sq^1$ is 0."
+
+
+def test_prose_is_left_out_and_its_formulas_are_taken() -> None:
+    found = prose(PROSE, "input")
+    assert found is not None and found.names == ("k",)
+    assert [source.text.strip() for source in found.sources] == ["Sq^2 Sq^2 = Sq^3 Sq^1", "Sq^1 Sq^1"]
+    assert [source.first_line for source in found.sources] == [2, 3]
+    for source in found.sources:
+        assert PROSE.splitlines()[source.first_line - 1].startswith(
+            source.text.strip(), len(source.text) - len(source.text.lstrip())
+        )
+    assert found.words == "the words around the formulas are left out, and so is k, named only"
+    display = prose("We have\n\\[ Sq^1 Sq^1 = 0 \\]\nand \\(Sq^2\\), so", "input")
+    assert display is not None and [source.text.strip() for source in display.sources] == ["Sq^1 Sq^1 = 0", "Sq^2"]
+    only = prose("the class $k$", "input")
+    assert only is not None and [source.text.strip() for source in only.sources] == ["k"] and not only.names
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "let $x$ in $H^2$",
+        "why $Sq^2 Sq^2$",
+        "$a$ + $b$",
+        "series $K(Z/2, 3)$ to 9",
+        "$Sq^1 that$",
+        "on $RP^4$ # the space we mean",
+        "$Sq^2 Sq^2$",
+        "Sq^2 $\\iota_3$",
+        "\\mathrm{Sq}^2 x",
+        "the relation Sq^2 Sq^2",
+        "costs 5$",
+    ],
+)
+def test_other_texts_are_no_prose(text: str) -> None:
+    assert prose(text, "input") is None
+
+
+def test_prose_is_answered() -> None:
+    heard = Heard()
+    assert heard.sitting.complete(PROSE) and heard.sitting.complete("$k$ is even if $Sq^1$")
+    said = heard(PROSE)
+    assert said.startswith("true ") and "0      " in said and "k is not declared" not in said
+    assert heard.sitting.look(PROSE)[0] == "2 statements"
+    assert "line 2: error" in heard("Then\n$Sq^1 zz$ is 0") and replayed(heard.sitting.logbook.script([])) == ["0"]
+
+
 # --- files ----------------------------------------------------------------------------------------
 
 
@@ -654,7 +708,7 @@ def asked(heard: Heard) -> Callable[[str], bool]:
     """The statements of the shell, without a prompt."""
     from opslang.front.requests import Requests
 
-    requests = Requests(heard.sitting, None, heard.said.append)  # type: ignore[arg-type]
+    requests = Requests(heard.sitting, None, lambda text, _: heard.said.append(text))  # type: ignore[arg-type]
 
     def do(text: str) -> bool:
         heard.said.clear()
@@ -670,7 +724,7 @@ def test_saving_and_reading(tmp_path: Path) -> None:
     do = asked(heard)
     heard("let x in H^4\nP^1 x\nP^1 that")
     name = str(tmp_path / "a.ops")
-    assert do(f"save {name}") and not do(f"save {name}")
+    assert do(f"save {name}") and heard.said[-1] == f"5 statements saved in {name}\n" and not do(f"save {name}")
     assert f"`save over {name}` replaces it" in heard.said[-1]
     assert do(f"save over {name}") and not do("save") and not do(f"save {tmp_path}/none/a.ops")
     head = (tmp_path / "a.ops").read_text().splitlines()[:3]
@@ -682,6 +736,56 @@ def test_saving_and_reading(tmp_path: Path) -> None:
     (tmp_path / "bad.ops").write_text("P^1\nhelp\nP^1 P\nP^2\n")
     assert not asked(again)(f"read {tmp_path}/bad.ops")
     assert "stopped at line 3" in again.said[-1] and len(again.texts()) == len(heard.texts()) + 1
+
+
+def test_what_is_declared_names_the_classes_of_named_spaces() -> None:
+    """Hatcher, Algebraic Topology, Theorem 3.19; Milnor and Stasheff, Characteristic Classes, Theorems 7.1 and 14.5."""
+    for prime, space, names in (
+        (2, "BSO(5)", "w_2 … w_5"),
+        (2, "CP^3", "y"),
+        (2, "thom(BU(2))", "U, and U times c_1 … c_2"),
+        (3, "lens(9)", "x, y"),
+        (3, "RP^2 x K(Z/3, 2)", "iota_2"),
+        (2, "RP^3 x K(Z/2, 2) x RP^2", "iota_2, x, x'"),
+        (3, "RP^2", "a point at this prime"),
+    ):
+        heard = Heard(prime=prime)
+        heard(f"on {space}")
+        assert asked(heard)("declared") and heard.said[-1].splitlines()[1].endswith(f": {names}"), (space, heard.said)
+
+
+def test_a_question_mark_is_help_and_explain_explains() -> None:
+    heard = Heard()
+    do = asked(heard)
+    assert do("help") and do("?")
+    listed = heard.said[-1]
+    assert do("help") and heard.said[-1] == listed
+    for text in ("? excess", "?excess", " ?  excess ", "excess?"):
+        if shell_statement(text):
+            assert do(text) and heard.said[-1].startswith("excess\n")
+    assert do("explain sorts-differ") and heard.said[-1].startswith("sorts-differ: ")
+    assert heard.said[-1].splitlines() == opslang("explain", "sorts-differ", "--width", "80").out.splitlines()
+    assert do("explain") and "sorts-differ" in heard.said[-1] and "opslang explain" not in heard.said[-1]
+    assert not do("explain sorts-difer") and "sorts-differ" in heard.said[-1]
+
+
+def test_the_words_that_leave() -> None:
+    heard = Heard()
+    for text in ("leave", "quit", "exit", "q", " q "):
+        assert heard.sitting.own(text) == ("leave", "")
+    assert heard.sitting.look("q")[:2] == ("write: leave", "quiet")
+    heard("let q in H^2")
+    assert heard.sitting.own("q") is None and heard("q").startswith("q ")
+
+
+def test_only_what_is_asked_for_is_shown_by_pages() -> None:
+    heard = Heard()
+    shown = heard("series K(Z/2, 3) to 4000")
+    lines = shown.rsplit("\r\x1b[K", 1)[-1].splitlines()
+    assert heard.screens > 1 and len(lines) < 2500 and all(len(line) <= 80 for line in lines)
+    assert lines[0].startswith("0: 1  ")
+    heard("why Sq^2 Sq^2")
+    assert heard.screens == 1
 
 
 def test_misuse_is_answered_by_the_use() -> None:

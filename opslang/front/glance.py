@@ -14,6 +14,7 @@ from opslang.meaning.spaces import space_value
 from opslang.meaning.statements import abbreviate, declare, on, prime
 from opslang.meaning.value import Sort, Value
 from opslang.report.diagnostic import Diagnostic, Refusal
+from opslang.spaces.family import Family
 from opslang.syntax import surface as sf
 from opslang.syntax.parser import parse
 
@@ -166,7 +167,8 @@ def classes_here(scope: Scope) -> str:
     if here is None:
         return ""
     named = [family.names(scope.prime) for family in here.families]
-    return ", ".join([*(class_text(of) for of in here.classes), *named])
+    none = Family().names(scope.prime)
+    return ", ".join([*(class_text(of) for of in here.classes), *(names for names in named if names != none)])
 
 
 def generators_here(scope: Scope) -> dict[str, int]:

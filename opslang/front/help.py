@@ -37,7 +37,7 @@ def listing(width: int) -> str:
     return (
         "\n".join(lines).replace("\0", " ")
         + "\n\n"
-        + "\n".join(wrap("`help excess` opens one of them; `opslang explain` lists diagnostics and laws.", width))
+        + "\n".join(wrap("`help excess` opens one of them; `explain` lists diagnostics and laws.", width))
     )
 
 

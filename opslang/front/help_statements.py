@@ -54,7 +54,7 @@ STATEMENTS: dict[str, Topic] = {
         "Derives an expression or a relation, law by law. In the shell `why` alone derives the last answer, and "
         "`why that_3` result 3.",
         ("why Sq^2 Sq^2 iota_3",),
-        ("derivation", "explain"),
+        ("derivation",),
     ),
     "basis": Topic(
         "Lists the basis of one degree of the cohomology of a space; without a space, of the current one.",
@@ -99,8 +99,15 @@ STATEMENTS: dict[str, Topic] = {
 
 SHELL: dict[str, Topic] = {
     "help": Topic(
-        "`help` lists the topics; `help excess` opens one. Names of diagnostics and laws are topics too.",
+        "`help` lists the topics; `help excess` opens one. Names of diagnostics and laws are topics too. A question "
+        "mark stands for the word: `?`, `? excess`.",
         ("help excess",),
+        ("?",),
+    ),
+    "explain": Topic(
+        "`explain sorts-differ` says what the name of a diagnostic, a law or a finding stands for; `explain` lists "
+        "the names.",
+        ("explain sorts-differ",),
     ),
     "that": Topic(
         "`that` stands for the last result, `that_3` for result 3: the number of the prompt at which it was "
@@ -143,7 +150,7 @@ SHELL: dict[str, Topic] = {
         ("limit 5000000",),
     ),
     "afresh": Topic("Forgets everything said in this session and begins a new one.", ("afresh",)),
-    "leave": Topic("Ends the session, as Ctrl-D on an empty line does.", ()),
+    "leave": Topic("Ends the session, as Ctrl-D on an empty line does.", (), ("exit", "quit", "q")),
     "editing": Topic(
         "Enter runs the input, or goes on to a next line while a bracket is open or an operator stands at the "
         "end; Alt-Enter (with the keys of Emacs) always begins a next line. Tab completes: \\iota becomes its "

@@ -54,6 +54,7 @@ class OpslangLexer(RegexLexer):  # type: ignore[misc]
                 Keyword.Pseudo,
             ),
             (words(_INSIDE, prefix=r"(?<=\s)", suffix=r"(?=\s)"), Keyword),
+            (r"(?m:^[ \t]*)\?", Keyword.Pseudo),
             (r"(?:Sq|beta|chi)(?![A-Za-z]{2})|[PQ]" + _NO_LETTER, Name.Function),
             (r"\\(?:mathrm|operatorname\*?|text|mathcal|mathfrak|mathscr)\s*\{\s*(?:Sq|P|Q)\s*\}", Name.Function),
             (r"\\(?:Sq|P|beta|chi)" + _NO_LETTER, Name.Function),

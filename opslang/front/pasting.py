@@ -40,14 +40,15 @@ def displayed(text: str, name: str) -> list[Source] | None:
         return None
     group = next(kind for kind in ("inline", "display", "body") if found.group(kind))
     start, end = found.span(group)
-    body = _LEFT_OUT.sub(lambda part: _blank(part.group()), text[start:end])
-    whole = _blank(text[:start]) + body + _blank(text[end:])
+    body = _LEFT_OUT.sub(lambda part: blank(part.group()), text[start:end])
+    whole = blank(text[:start]) + body + blank(text[end:])
     several = re.search(rf"\{{(?:{_ROWS}|{_INSIDE})\*?\}}", text) is not None
     spans = list(_rows(whole)) if several else [(0, len(whole))]
-    return [_source(whole, low, high, name) for low, high in spans if whole[low:high].strip()]
+    return [stretch(whole, low, high, name) for low, high in spans if whole[low:high].strip()]
 
 
-def _blank(text: str) -> str:
+def blank(text: str) -> str:
+    """White space of the same shape."""
     return re.sub(r"[^\n]", " ", text)
 
 
@@ -65,7 +66,7 @@ def _rows(text: str) -> Iterator[tuple[int, int]]:
     yield start, len(text)
 
 
-def _source(text: str, low: int, high: int, name: str) -> Source:
+def stretch(text: str, low: int, high: int, name: str) -> Source:
     """A stretch as a statement that knows its line, and has its column by blanks before it."""
     low += len(text[low:high]) - len(text[low:high].lstrip())
     line = text.rfind("\n", 0, low) + 1

@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, cast
 
 from opslang.front.glance import classes_here, copy_of, tables
 from opslang.front.logbook import Entry
-from opslang.front.sitting import Sitting
+from opslang.front.sitting import SEVERAL, Sitting
 from opslang.front.status import fitted
 from opslang.front.vocabulary import KEYS, NOTATIONS, SHELL_WORDS, shell_statement
 from opslang.ground.source import Source
@@ -22,6 +22,7 @@ from opslang.pipeline import DEFAULT_LIMIT
 from opslang.render.show import show
 from opslang.render.text import Notation, element_text
 from opslang.report.diagnostic import Refusal
+from opslang.syntax.layout import chunks
 
 if TYPE_CHECKING:
     from opslang.front.console import Console
@@ -32,9 +33,9 @@ class Leave(Exception):
 
 
 class Requests:
-    """Does what the statements of the shell ask for.  `paged` shows a text that may be long."""
+    """Does what the statements of the shell ask for.  `paged` shows a text, by pages from so many screens on."""
 
-    def __init__(self, sitting: Sitting, console: Console, paged: Callable[[str], None]) -> None:
+    def __init__(self, sitting: Sitting, console: Console, paged: Callable[[str, int], None]) -> None:
         self._sitting = sitting
         self._console = console
         self._paged = paged
@@ -60,7 +61,7 @@ class Requests:
 
         width = min(self._sitting.width(), 100)
         if not argument:
-            self._paged(pages.listing(width))
+            self._paged(pages.listing(width), SEVERAL)
             return True
         text = pages.page(argument, width)
         if text is None:
@@ -68,7 +69,20 @@ class Requests:
             more = f"Near it: {', '.join(near)}." if near else "`help` lists the topics."
             self._sitting.say(f"There is no help on {fitted(argument, 40)}. {more}")
             return False
-        self._paged(text)
+        self._paged(text, SEVERAL)
+        return True
+
+    def _explain(self, argument: str) -> bool:
+        from opslang.front import explain as pages
+
+        width = min(self._sitting.width(), 100)
+        if not argument:
+            self._paged(pages.listing(width).replace("`opslang explain", "`explain"), SEVERAL)
+            return True
+        text = pages.explain(argument.strip("`'\""), width)
+        if text is None:
+            return self._help(argument)
+        self._paged(text, SEVERAL)
         return True
 
     def _declared(self, _: str) -> None:
@@ -79,7 +93,7 @@ class Requests:
         lines += _names(scope, self._sitting.logbook.entries)
         lines += [f"map {value.text}" for value in scope.maps.values()]
         lines += [f"bundle {name}" for name in scope.bundles]
-        self._paged("\n".join(lines))
+        self._paged("\n".join(lines), SEVERAL)
 
     def _results(self, _: str) -> None:
         sitting = self._sitting
@@ -90,7 +104,7 @@ class Requests:
             rows.append(
                 f"{name:9} {fitted(element_text(entry.outcome.element, sitting.notation), sitting.width() - 10)}"
             )
-        self._paged("\n".join(rows) or "There is no result yet.")
+        self._paged("\n".join(rows) or "There is no result yet.", SEVERAL)
 
     # --- changing the sitting -------------------------------------------------------------------
 
@@ -181,13 +195,12 @@ class Requests:
         except (OSError, ValueError) as trouble:
             sitting.say(f"{name} cannot be written: {(getattr(trouble, 'strerror', None) or str(trouble)).lower()}")
             return False
-        count = len(sitting.logbook.entries)
-        sitting.say(f"{count} line{'s' * (count != 1)} saved in {name}")
+        count = len(list(chunks(text.split("\n"), name)))
+        sitting.say(f"{count} statement{'s' * (count != 1)} saved in {name}")
         return True
 
     def _read(self, argument: str) -> bool:
         from opslang.front.reading import Script, Unreadable
-        from opslang.syntax.layout import chunks
 
         if not argument:
             return self._misuse("read", "A file name is missing")

@@ -59,16 +59,18 @@ class Shell:
     def _answer(self, text: str) -> bool:
         """Answers an input; False at the end of the sitting."""
         from opslang.front.requests import Leave
-        from opslang.front.vocabulary import shell_statement
 
         sitting, requests = self._rooms()
         if all(line.lstrip().startswith("#") for line in text.splitlines() if line.strip()):
             sitting.remark(text.strip("\n"))
             return True
         try:
+            pasted = sitting.prose(text)
+            if pasted is not None:
+                sitting.say(pasted.words)
             sources = list(sitting.statements(text))
             for number, source in enumerate(sources, start=1):
-                own = shell_statement(source.text)
+                own = sitting.own(source.text)
                 if own is not None:
                     requests.do(*own, source)
                 elif not sitting.answer(source) and source.text.split()[0] == "on" and number < len(sources):
@@ -147,14 +149,14 @@ def columns() -> int:
         return 80
 
 
-def paged(text: str) -> None:
-    """A text at once where it fits the terminal, else through the user's pager."""
+def paged(text: str, screens: int) -> None:
+    """A text at once where it fits so many screens of the terminal, else through the user's pager."""
     try:
         rows = os.get_terminal_size(sys.stdout.fileno()).lines
     except (OSError, ValueError):
         rows = 24
     wide = columns()
-    if sum(1 + len(line) // wide for line in text.split("\n")) < rows:
+    if sum(1 + len(line) // wide for line in text.split("\n")) < rows * screens:
         to_terminal(text + "\n")
         return
     from click import echo_via_pager

@@ -15,8 +15,9 @@ from attrs import evolve
 from opslang.front.glance import LONGEST, Glance, copy_of, glance, same_scope
 from opslang.front.logbook import THAT, Entry, Expanded, Logbook, Role, as_typed
 from opslang.front.pasting import displayed, on_one_line, opens_display
+from opslang.front.prose import MAY_BE_PROSE, Prose, prose
 from opslang.front.statement import Settings
-from opslang.front.vocabulary import shell_statement
+from opslang.front.vocabulary import BRIEF_LEAVE, shell_statement
 from opslang.front.working import Stopped, Work
 from opslang.ground.source import Source
 from opslang.ir.outcome import Outcome
@@ -31,6 +32,9 @@ from opslang.syntax.layout import chunks, is_complete
 _WHY_THAT = re.compile(r"\s*why\s+(that(?:_(\d+)|_\{(\d+)\})?)\s*\Z")
 
 
+SEVERAL = 4
+"""Screens that something other than a derivation may fill before it is shown by pages."""
+
 TYPED = "\0typed"
 """Stands for the file name of what was typed."""
 
@@ -42,15 +46,15 @@ def _shorter(text: str, paint: Paint = plain) -> str:
 
 
 class Sitting:
-    """The state of one sitting.  `say` writes text to the terminal, `paged` shows what may be long, `width`
-    gives the columns."""
+    """The state of one sitting.  `say` writes text to the terminal, `paged` shows what may be long, by pages
+    where it fills so many screens; `width` gives the columns."""
 
     def __init__(
         self,
         settings: Settings,
         work: Work,
         say: Callable[[str], None],
-        paged: Callable[[str], None],
+        paged: Callable[[str, int], None],
         width: Callable[[], int],
     ) -> None:
         self.settings = settings
@@ -112,15 +116,35 @@ class Sitting:
         """Whether a text typed so far waits for no further line."""
         if not text.strip() or shell_statement(text.strip()) is not None:
             return True
+        if self.prose(text) is not None:
+            return True
         if opens_display(text):
             return text.endswith("\n")
         return displayed(text, "input") is not None or is_complete(text)
+
+    def prose(self, text: str) -> Prose | None:
+        """The formulas of an input with words around them; None for an input that is none."""
+        if not MAY_BE_PROSE.search(text) or shell_statement(text) is not None:
+            return None
+        return prose(text, "input")
+
+    def own(self, text: str) -> tuple[str, str] | None:
+        """Word and argument of a statement of the shell; None for a line of the language."""
+        if text.strip() == BRIEF_LEAVE:
+            scope = self.session.scope
+            key = (BRIEF_LEAVE, None, 0)
+            return None if key in scope.names or scope.class_of_space(key) else ("leave", "")
+        return shell_statement(text)
 
     def statements(self, text: str) -> Iterable[Source]:
         """The statements of an input, one of the shell wherever a line begins with its word."""
         display = displayed(text, "input")
         if display is not None:
             yield from display
+            return
+        pasted = self.prose(text)
+        if pasted is not None:
+            yield from pasted.sources
             return
         held: list[str] = []
         first = 1
@@ -196,8 +220,8 @@ class Sitting:
         text = show(outcome, self.notation, self.width())
         if outcome.kind == "element" or not text:
             self.say(text)
-        else:
-            self._paged(text)
+        else:  # keys that are typed ahead go to the pager, so it comes only where it is wanted
+            self._paged(text, 1 if outcome.kind == "derivation" else SEVERAL)
 
     def why(self, number: int | None, source: Source) -> bool:
         """Derive the last answer, or the result of that number, in the scope in which it was found."""
@@ -245,6 +269,8 @@ class Sitting:
         if len(text) > LONGEST:
             return f"{len(text):,} characters", "quiet", ""
         text = text.rstrip("\n")
+        if text.strip() == BRIEF_LEAVE and self.own(text):
+            return "write: leave", "quiet", ""
         if not self.complete(text):
             return "goes on in the next line", "quiet", ""
         sources = list(self.statements(text))

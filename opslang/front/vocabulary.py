@@ -4,6 +4,7 @@ from __future__ import annotations
 
 SHELL_WORDS: dict[str, str] = {
     "help": "help, help why, help excess",
+    "explain": "explain, explain sorts-differ",
     "declared": "declared",
     "results": "results",
     "undo": "undo",
@@ -21,13 +22,22 @@ SHELL_WORDS: dict[str, str] = {
 ALSO_LEAVE = frozenset(("exit", "quit"))
 """What people type who have not read that the word is `leave`."""
 
+FOR_HELP = "?"
+"""A sign that stands for the word `help`."""
+
+BRIEF_LEAVE = "q"
+"""Leaves too, where nothing of that name is declared."""
+
 NOTATIONS = ("text", "unicode", "latex")
 KEYS = ("emacs", "vi")
 
 
 def shell_statement(text: str) -> tuple[str, str] | None:
     """Word and argument of a statement of the shell; None for a line of the language."""
-    words = text.split("#", 1)[0].split(None, 1)
+    text = text.split("#", 1)[0].strip()
+    if text.startswith(FOR_HELP):
+        return "help", text.strip(FOR_HELP + " \t")
+    words = text.split(None, 1)
     if not words:
         return None
     word = "leave" if words[0] in ALSO_LEAVE and len(words) == 1 else words[0]

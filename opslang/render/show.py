@@ -14,6 +14,8 @@ RELATION_MARGIN = 44
 """The same for the degree of a relation."""
 ECHO = 52
 """The same for the statement as written, behind its result."""
+BLOCK = 100
+"""Dimensions that are set in columns of one width: those far on have many more digits."""
 MINUS: dict[str, str] = {"text": "left - right", "unicode": "left − right", "latex": "left - right"}
 
 
@@ -120,7 +122,8 @@ def _listing(outcome: Outcome, notation: Notation, width: int) -> list[str]:
     if outcome.lines:
         return list(outcome.lines)
     if outcome.degree is None:
-        return columns([f"{n}: {dimension}" for n, dimension in enumerate(items)], width)
+        cells = [f"{n}: {dimension}" for n, dimension in enumerate(items)]
+        return [row for at in range(0, len(cells), BLOCK) for row in columns(cells[at : at + BLOCK], width)]
     head = f"dimension {len(items)} in degree {outcome.degree}"
     if not items:
         return [head]
