@@ -154,7 +154,7 @@ def _prepare() -> None:
     """What lasts is taken out of the collector's sight; Ctrl-C and SIGTERM become exceptions."""
     gc.freeze()
     gc.enable()
-    gc.set_threshold(50_000, 20, 50)
+    gc.set_threshold(200_000, 50, 100)
     if signal.getsignal(signal.SIGINT) is not signal.SIG_IGN:
         signal.signal(signal.SIGINT, signal.default_int_handler)
     signal.signal(signal.SIGTERM, _terminate)

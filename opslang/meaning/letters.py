@@ -11,7 +11,7 @@ from attrs import frozen
 from opslang.ground.grading import token_degree
 from opslang.ground.source import Span
 from opslang.ir import tree as ir
-from opslang.meaning.indices import bounded, number
+from opslang.meaning.indices import MOST_BITS, bounded, number
 from opslang.meaning.value import Value, operation
 from opslang.report.diagnostic import Refusal, error
 from opslang.syntax import surface as sf
@@ -42,6 +42,29 @@ def letter(factor: sf.Operation | sf.Bockstein | sf.Milnor, prime: int) -> Value
     if order > 1:
         return Marker(order, factor.span)
     return word_value((1,) if prime == 2 else (0,), prime, factor.span)
+
+
+def word_applied(pending: list[tuple[Value | Marker, Span]], argument: Value, span: Span) -> Value | None:
+    """Letters applied to a class, run together into one word; None where the pending operations are not all words.
+
+    Most of a script is this, so it takes the straight way.
+    """
+    if not pending:
+        return argument
+    word: ir.Word = ()
+    degree = 0
+    for value, _ in pending:
+        tree = value.tree if type(value) is Value else None
+        if type(tree) is not ir.Composite:
+            return None
+        word += tree.word
+        degree += tree.degree
+    top = degree + argument.top
+    if top.bit_length() > MOST_BITS:
+        return None
+    reached = None if argument.degree is None else degree + argument.degree
+    applied = ir.Apply(ir.Composite(word, degree, span), argument.cls, reached, top, span)
+    return Value("class", reached, top, applied, argument.classes)
 
 
 def word_value(word: ir.Word, prime: int, span: Span) -> Value:

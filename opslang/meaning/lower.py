@@ -15,7 +15,7 @@ from opslang.ir import tree as ir
 from opslang.ir.tree import Class
 from opslang.meaning.characteristic import Characteristic
 from opslang.meaning.indices import bounded, number
-from opslang.meaning.letters import Marker, letter
+from opslang.meaning.letters import Marker, letter, word_applied
 from opslang.meaning.scope import Key, Scope, spelled
 from opslang.meaning.unknown import unknown_name
 from opslang.meaning.value import (
@@ -66,6 +66,8 @@ class Lowering:
     def sum(self, body: sf.Sum, mixed_degrees: bool = False) -> Value:
         """A sum.  All terms must be of one sort; terms of different degrees are warned about."""
         terms = [(sign, self.product(product)) for sign, product in body.terms]
+        if len(terms) == 1 and terms[0][0] == 1:
+            return terms[0][1]
         sorts: list[Sort] = [value.sort for _, value in terms]
         sort: Sort = next((s for s in sorts if s != "scalar"), "scalar")
         if sort == "scalar":
@@ -74,8 +76,6 @@ class Lowering:
             if other not in (sort, "scalar"):
                 self._mixed(body, sorts, sort, product.span)
         lifted = [(sign, as_sort(value, sort, product.span)) for (sign, value), (_, product) in zip(terms, body.terms)]
-        if len(lifted) == 1 and lifted[0][0] == 1:
-            return lifted[0][1]
         degrees = degrees_of(lifted)
         if len(degrees) > 1 and None not in degrees and not mixed_degrees:
             listed = ", ".join(str(d) for d in sorted(d for d in degrees if d is not None))
@@ -239,8 +239,9 @@ class Lowering:
 
     def _apply(self, pending: Pending, argument: Value, span: Span) -> Value:
         """The pending operations applied to a class, rightmost first."""
-        if not pending:
-            return argument
+        quick = word_applied(pending, argument, span)
+        if quick is not None:
+            return quick
         run: list[Value] = []
         for value, _ in reversed(pending):
             if type(value) is Marker:
