@@ -10,6 +10,7 @@ from opslang.ground.source import Source
 from opslang.pipeline import Session
 from opslang.report.diagnostic import Diagnostic
 from opslang.syntax import surface as s
+from opslang.syntax.layout import chunks, is_complete
 from opslang.syntax.parser import parse
 from opslang.syntax.spellings import STATEMENT_WORDS
 
@@ -299,3 +300,53 @@ def test_infinity_elsewhere_is_refused(text: str) -> None:
 def test_numbers_of_spaces(text: str, better: str) -> None:
     (found,) = Session().run(Source("a.ops", text)).diagnostics
     assert found.mend is not None and text[: found.span[0]] + found.mend + text[found.span[1] :] == better
+
+
+# --- displays ------------------------------------------------------------------------------------
+
+DISPLAYS = [
+    "\\begin{equation}\n\\mathrm{Sq}^1 \\mathrm{Sq}^2 = \\mathrm{Sq}^3\n\\end{equation}",
+    "\\begin{equation*}\\label{a}\\mathrm{Sq}^1 \\mathrm{Sq}^2 = \\mathrm{Sq}^3.\\end{equation*}",
+    "\\begin{align}\n  \\Sq^1 \\Sq^2 &= \\Sq^3\n\\end{align}",
+    "\\begin{align*} \\Sq^1 \\Sq^2 \\\\ &= \\Sq^3 \\end{align*}",
+    "\\[ \\begin{aligned} \\Sq^1 \\Sq^2 & = \\\\[2pt] & \\Sq^3 \\\\ \\end{aligned} \\]",
+    "\\begin{multline}\n\\Sq^1 \\Sq^2 \\\\\n= \\Sq^3\n\\end{multline}",
+]
+
+
+@pytest.mark.parametrize("text", DISPLAYS)
+def test_a_display_of_one_statement_is_that_statement(text: str) -> None:
+    statement = read(text)
+    assert statement == read("Sq^1 Sq^2 = Sq^3")
+    assert [piece.text for piece in chunks(text.splitlines(keepends=True), "a.ops")] == [text]
+    assert is_complete(text)
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "\\begin{align}\n\\Sq^1 \\Sq^1 &= 0 \\\\\n\\Sq^1 \\Sq^2 &= \\Sq^3\n\\end{align}",
+        "\\begin{gather*} \\Sq^1 \\Sq^1 = 0, \\\\ \\Sq^1 \\Sq^2 = \\Sq^3. \\end{gather*}",
+        "\\begin{align*} \\iota_3 \\\\ \\Sq^2 \\iota_3 \\end{align*}",
+    ],
+)
+def test_a_display_of_several_statements_is_refused(text: str) -> None:
+    (found,) = errors(text)
+    assert found.name == "several-statements" and "a line" in f"{found.message} {found.help}"
+
+
+def test_displays_in_scripts_keep_their_lines() -> None:
+    text = "let x in H^2\n\\begin{equation}\n  \\Sq^2 x\n  = x^2\n\\end{equation}\nSq^1 x\n"
+    text += "\\begin{align}\n\\Sq^1 x\n\nSq^3 x\n"
+    pieces = [(piece.first_line, piece.text.count("\n")) for piece in chunks(text.splitlines(keepends=True), "a.ops")]
+    assert pieces == [(1, 0), (2, 3), (6, 0), (7, 1), (10, 0)]
+    assert not is_complete("\\begin{equation}\n\\Sq^2 x")
+
+
+@pytest.mark.parametrize("text", ["\\begin{equation} x", "x \\end{align}", "\\begin{align} x \\end{equation}"])
+def test_displays_are_closed_by_their_own_end(text: str) -> None:
+    assert errors(text)[0].name in ("unclosed-bracket", "unopened-bracket", "bracket-mismatch")
+
+
+def test_other_surroundings_are_not_read() -> None:
+    assert errors("\\begin{cases} x \\end{cases}")[0].name == "unknown-command"

@@ -142,6 +142,14 @@ SYNTAX_CODES: dict[str, Code] = {
         explanation="At most 250 brackets may be open at one place.  Name inner parts with `let`.",
         example="(" * 251 + "iota_2" + ")" * 251,
     ),
+    "several-statements": Code(
+        title="Several statements in one display",
+        explanation=(
+            "`\\begin{equation}`, `\\begin{align}` and the like fall away around one statement.  Their rows are one "
+            "where each goes on with a sign of the one before it, as `= …`; else write one statement a line."
+        ),
+        example="\\begin{align} \\iota_3 &= 0 \\\\ \\iota_2 &= 0 \\end{align}",
+    ),
     "long-statement": Code(
         title="A statement beyond the limit of length",
         explanation=(

@@ -11,7 +11,7 @@ import re
 from collections.abc import Iterable, Iterator
 
 from opslang.ground.source import Source
-from opslang.syntax.spellings import COMMANDS, STATEMENT_WORDS, SYMBOLS, is_tex
+from opslang.syntax.spellings import COMMANDS, STATEMENT_WORDS, SURROUNDINGS, SYMBOLS, is_tex
 
 STATEMENT_LIMIT = 100_000
 """How many code points a statement may have, where nothing else is said."""
@@ -25,8 +25,21 @@ _COMMANDS = "|".join(name for name, (kind, _) in COMMANDS.items() if kind in _JO
 _TRAILING = re.compile(rf"(?:[{_SIGNS}]|(?<!\\)\\(?:{_COMMANDS})|(?<![A-Za-z])(?:cup|cross)|(?<!\\)\\)\s*\Z")
 _LAST_SIGNS = frozenset("pshtcdmes\\") | frozenset(sign for sign, (kind, _) in SYMBOLS.items() if kind in _JOINING)
 _PULL = re.compile(r"\^\s*\*\s*\Z")
-_BRACKETS = re.compile(r"\\?[()\[\]{}]")
-_DEPTH = {"(": 1, "[": 1, "{": 1, ")": -1, "]": -1, "}": -1, r"\(": 1, r"\[": 1, r"\)": -1, r"\]": -1}
+_BRACKETS = re.compile(rf"\\(?:begin|end)(?=\s*\{{\s*(?:{SURROUNDINGS})\*?\s*\}})|\\?[()\[\]{{}}]")
+_DEPTH = {
+    "\\begin": 1,
+    "\\end": -1,
+    "(": 1,
+    "[": 1,
+    "{": 1,
+    ")": -1,
+    "]": -1,
+    "}": -1,
+    r"\(": 1,
+    r"\[": 1,
+    r"\)": -1,
+    r"\]": -1,
+}
 _FIRST_WORD = re.compile(r"\s*([A-Za-z]+)")
 _COMMENT = re.compile(r"#.*")
 _TEX_COMMENT = re.compile(r"#.*|(?<!\\)%.*")
@@ -52,6 +65,8 @@ def _depth(code: str) -> int:
 def _is_whole(code: str) -> bool:
     """Whether a line stands for itself: as many brackets open as close, and no operator at its end."""
     if code[-1] in _LAST_SIGNS and _trails(code):
+        return False
+    if "\\begin" in code or "\\end" in code:
         return False
     if "(" in code or "{" in code or "[" in code:
         return (

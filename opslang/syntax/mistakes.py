@@ -17,6 +17,7 @@ from opslang.syntax.words import LONGEST_SPLIT, SPACES, is_word, meant, nearly, 
 _TAKEN = frozenset(kind for kind, _ in RESERVED.values())
 _LETTERS = frozenset(("NAME", "LETTER_Z", "LETTER_F", "LETTER_H", "LETTER_K", "LETTER_X"))
 _SPATIAL = frozenset(("PRIME_WORD", "SPACE_WORD", "ON", "BASIS", "SERIES", "MAP", "BUNDLE", "COMPARE"))
+_JOINING = frozenset(("PLUS", "MINUS", "STAR", "CUP", "CROSS", "TIMES", "COMPOSE", "OPLUS", "EQUALS"))
 _PROJECTIVE = frozenset(("RP", "CP", "HP"))
 INDEX_LIMIT = 2_000
 """How many symbols one index may be made of."""
@@ -25,7 +26,7 @@ INDEX_LIMIT = 2_000
 def mistakes(reading: Reading) -> list[Diagnostic]:
     """The slips of one statement, from left to right, a handful at most."""
     tokens = reading.tokens
-    first = _first_word(reading)
+    first = _several(reading) or _first_word(reading)
     if first is not None:
         return [first]
     indices = index_positions(tokens)
@@ -44,6 +45,17 @@ def mistakes(reading: Reading) -> list[Diagnostic]:
             if len(found) == MANY or (token.kind == "RUN" and token.value in STATEMENT_WORDS):
                 break  # behind a keyword another statement is meant
     return found
+
+
+def _several(reading: Reading) -> Diagnostic | None:
+    """A display whose rows are statements of their own: no operator stands at the end of one or begins the next."""
+    tokens = reading.tokens
+    for at in reading.rows:
+        if 0 < at < len(tokens) and tokens[at - 1].kind not in _JOINING and tokens[at].kind not in _JOINING | {"MOD"}:
+            message = "another statement begins here, and a display holds one"
+            span = (tokens[at].start, max(tokens[at].end, tokens[at].start + 1))
+            return error("several-statements", message, span, "write one statement a line")
+    return None
 
 
 def _spaces_among(tokens: list[Token]) -> range:

@@ -8,7 +8,7 @@ from __future__ import annotations
 import re
 from typing import NamedTuple
 
-from opslang.syntax.spellings import FONTS, PRIMES, SUBSCRIPTS, SUPERSCRIPTS
+from opslang.syntax.spellings import FONTS, PRIMES, SUBSCRIPTS, SUPERSCRIPTS, SURROUNDINGS
 
 
 class Token(NamedTuple):
@@ -39,7 +39,9 @@ _SHAPES = rf"""
     | (?P<primes>[{"".join(PRIMES)}]+)
     | (?P<face>\\(?:{_FONT})(?![A-Za-z])\s*(?: \{{\s*(?P<faced>[A-Za-z]+)\s*\}} | (?P<single>[A-Za-z])(?![A-Za-z]) ))
     | (?P<aside>\\(?:label|tag\*?|hspace\*?|vspace\*?|phantom|hphantom)\s*\{{[^{{}}]*\}} | \\(?:left|right)\s*\.)
+    | (?P<surrounding>\\(?:begin|end)\s*\{{\s*(?:{SURROUNDINGS})\*?\s*\}})
     | (?P<command>\\[A-Za-z]+)
+    | (?P<row>\\\\(?:\s*\[\s*-?[0-9.]+\s*[a-z]{{2}}\s*\])?)
     | (?P<escape>\\.)
     | (?P<dots>\.\.+)
     | (?P<arrow>-{{1,2}}>)

@@ -58,6 +58,8 @@ class Reading:
         self.errors: list[Diagnostic] = []
         self.warnings: list[Diagnostic] = []
         self.stop = False
+        self.rows: list[int] = []
+        """Before which tokens a row of a display begins, brackets aside."""
         self._keyword = ""
         self._spatial = False
         self._open: list[tuple[str, str, Token]] = []  # kind, role ("script", "binom", "" or "layout"), token
@@ -247,6 +249,20 @@ class Reading:
             return
         self._fault("unknown-command", f"the TeX command {shown(text)} has no meaning here", start, end)
 
+    def surrounding(self, text: str, start: int, end: int) -> None:
+        """`\\begin{align}` and its end: a bracket that gives no token."""
+        value = "".join(text.split())
+        if value.startswith("\\begin"):
+            self._open.append(("SURROUNDING", "layout", Token("SURROUNDING", value, start, end)))
+        elif self._open and self._open[-1][0] == "SURROUNDING" and _match(self._open[-1][2].value) == value:
+            self._open.pop()
+        else:
+            self._closing("SURROUNDING", value, start, end)
+
+    def row(self, text: str, start: int, end: int) -> None:
+        if self._open and self._open[-1][0] == "SURROUNDING":
+            self.rows.append(len(self.tokens))
+
     def aside(self, text: str, start: int, end: int) -> None:
         """Labels, tags, invisible delimiters: nothing to read."""
 
@@ -318,9 +334,9 @@ class Reading:
             self.stop = True
             return
         opener, role, token = self._open.pop()
-        if opener != _CLOSERS[kind]:
+        if opener != _CLOSERS.get(kind):
             message = f"this {token.value} is closed by a {value}"
-            self._fault("bracket-mismatch", message, token.start, token.end, f"it needs a {_MATCH[token.value]}")
+            self._fault("bracket-mismatch", message, token.start, token.end, f"it needs a {_match(token.value)}")
             self.stop = True
             return
         if role != "layout":
@@ -355,7 +371,7 @@ class Reading:
         """What can be said only at the end: open brackets, and the full stop of a sentence around a formula."""
         if self._open:
             _, _, token = self._open[-1]
-            help = f"it needs a {_MATCH[token.value]} before the end of the statement"
+            help = f"it needs a {_match(token.value)} before the end of the statement"
             self._fault("unclosed-bracket", f"this {token.value} is never closed", token.start, token.end, help)
             self.stop = True
             return
@@ -367,12 +383,17 @@ class Reading:
                 self._fault("invalid-character", "a full stop has no meaning here", token.start, token.end, help, "")
 
 
-_MATCH = {"(": ")", "[": "]", "{": "}"}
+def _match(value: str) -> str:
+    """What closes a bracket, or the surroundings of a formula."""
+    return {"(": ")", "[": "]", "{": "}"}.get(value) or value.replace("begin", "end", 1)
+
+
 _LATER_HELP = "it belongs to the language, and this version does not read it"
 _READERS = {
     name: getattr(Reading, name)
     for name in (
         *("number", "word", "pull", "raised_prime", "raised", "lowered", "primes", "face", "aside", "command"),
+        *("surrounding", "row"),
         *("escape", "dots", "arrow", "dangling", "foreign", "dead", "unequal", "sign"),
     )
 }

@@ -248,6 +248,9 @@ LAYOUT = frozenset(
 ) | frozenset(font.rstrip("*") for font in FONTS)
 """TeX commands that fall away."""
 
+SURROUNDINGS = "equation|displaymath|math|align|aligned|flalign|gather|gathered|multline|multlined|split|eqnarray"
+"""TeX's surroundings of a formula, which mean nothing here; a star may follow each."""
+
 SUPERSCRIPTS: dict[str, str] = {
     **dict(zip("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻⁽⁾", "0123456789+-()")),
     **dict(zip("ᵃᵇᶜᵈᵉᶠᵍʰⁱʲᵏˡᵐⁿᵒᵖʳˢᵗᵘᵛʷˣʸᶻ", "abcdefghijklmnoprstuvwxyz")),
