@@ -159,6 +159,14 @@ def test_tab_completes(tmp_path: Path) -> None:
         terminal.at_prompt(1)
         terminal.enter("Sq^3 omega", 2)
         terminal.sees("\\omega^{2}")
+        terminal.press("on th\tBSp\t")
+        terminal.until(lambda: terminal.bottom() == "BSpin   BSp")
+        terminal.press("\x15on BO(3)\r")
+        terminal.at_prompt(2)
+        terminal.press("Sq^1 w\t")
+        terminal.sees("ops 2> Sq^1 w_")
+        terminal.press("\t")
+        terminal.until(lambda: terminal.bottom() == "w_1   w_2   w_3")
 
 
 def test_the_bottom_line_says_what_the_input_is(tmp_path: Path) -> None:

@@ -422,7 +422,11 @@ def test_reading_alike() -> None:
 
 # --- completion -----------------------------------------------------------------------------------
 
-WORLD = World(2, ("X", "Base"), {"x": "class", "omega": "class", "iota_3": "class"}, (1, 2))
+WORLD = World(
+    2, ("X", "Base"), {"x": "class", "omega": "class", "iota_3": "class", "w_1": "class", "w_12": "class"}, (1, 2)
+)
+BASES = ["BO", "BSO", "BSpin", "BU", "BSU", "BSp"]
+NAMED = [*BASES, "RP^", "CP^", "HP^", "lens(", "thom("]
 
 
 def offered(before: str, world: World = WORLD) -> list[str]:
@@ -443,9 +447,21 @@ def offered(before: str, world: World = WORLD) -> list[str]:
         (r"\times", ["×"]),
         ("ser", ["series "]),
         ("Sq^2 ser", []),
-        ("on ", ["X", "Base", "K(Z/2, ", "K(Z, ", "K(Z/4, "]),
-        ("on X x B", ["Base"]),
-        ("series B", ["Base"]),
+        ("on ", ["X", "Base", "K(Z/2, ", "K(Z, ", "K(Z/4, ", *NAMED]),
+        ("on X x Ba", ["Base"]),
+        ("series Ba", ["Base"]),
+        ("on B", ["Base", *BASES]),
+        ("on RP^3 x BS", ["BSO", "BSpin", "BSU", "BSp"]),
+        ("on th", ["thom("]),
+        ("on thom(B", BASES),
+        ("on RP", ["RP^"]),
+        ("on RP^", []),
+        ("basis H^4(l", ["lens("]),
+        ("compare CP^2, R", ["RP^"]),
+        ("map f : RP^2 -> C", ["CP^"]),
+        ("bundle E of rank 3 over H", ["HP^"]),
+        ("Sq^1 w", ["w_1", "w_12"]),
+        ("Sq^1 w_12", ["w_12"]),
         ("space Y = K", ["K(Z/2, ", "K(Z, ", "K(Z/4, "]),
         ("Sq^2 om", ["omega"]),
         ("Sq^2 th", ["that", "that_1", "that_2"]),

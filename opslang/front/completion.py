@@ -13,17 +13,25 @@ from prompt_toolkit.completion import CompleteEvent, Completer, Completion, Path
 from prompt_toolkit.document import Document
 
 from opslang.front.vocabulary import KEYS, NOTATIONS, SHELL_WORDS, shell_statement
+from opslang.spaces.space import WORDS
 from opslang.syntax.spellings import COMMANDS, KEYWORDS, SYMBOLS
 
 _COMMAND = re.compile(r"\\([A-Za-z]*)\Z")
 _WORD = re.compile(r"[A-Za-z][A-Za-z]*(?:_\d*)?'*\Z|(?<![A-Za-z0-9_^{])\Z")
 _LINE_START = re.compile(r"(?:\A|\n)[ \t]*[A-Za-z]*\Z")
-_WANTS_SPACE = re.compile(r"(?:\A|\n)[ \t]*(?:on|series|space\s+\S+\s*=|basis\s+H\^\S+?\()\s*(?:.*\sx\s+)?(\w*)\Z")
-
-_NAMES_SPACE = re.compile(r"[ \t]*(?:on|series|space\s+\S+\s*=|basis\s+H\^\S+?\()(?![A-Za-z])")
+_BEFORE_SPACE = (
+    r"(?:\A|\n)[ \t]*(?:(?:on|series|compare)(?![A-Za-z])|space\s+\S+\s*=|basis\s+H\^\S+?\(|map\s+\S+\s*:(?!.*\swith\s)"
+    r"|bundle\s+\S.*\sover\s)"
+)
+_WANTS_SPACE = re.compile(_BEFORE_SPACE + r"\s*(?:.*(?:\sx\s|,|->)\s*)?(thom\(\s*)?(\w*)\Z")
+_NAMES_SPACE = re.compile(_BEFORE_SPACE)
 
 SPACES = ("K(Z/2, ", "K(Z, ", "K(Z/4, ")
 """What a space that has no name yet begins with; the first group follows the prime."""
+
+_GOES_ON = {"RP": "RP^", "CP": "CP^", "HP": "HP^", "lens": "lens(", "thom": "thom("}
+NAMED_SPACES = tuple(_GOES_ON.get(word, word) for word in WORDS)
+"""What the named spaces begin with."""
 
 _PREFERRED = {
     "CUP": "∪",
@@ -85,8 +93,9 @@ def offers(before: str, world: World, topics: Callable[[], Iterable[str]], signs
         return _arguments(statement[0], statement[1] if not line[-1:].isspace() else "", world, topics)
     space = _WANTS_SPACE.search(before)
     if space:
-        first = f"K(Z/{world.prime}, "
-        return _matching(space.group(1), [(name, "") for name in dict.fromkeys([*world.spaces, first, *SPACES])])
+        bases = [name for name in NAMED_SPACES if name.startswith("B")]
+        known = bases if space.group(1) else [*world.spaces, f"K(Z/{world.prime}, ", *SPACES, *NAMED_SPACES]
+        return _matching(space.group(2), [(name, "") for name in dict.fromkeys(known)])
     if _NAMES_SPACE.match(line):
         return []
     found = _WORD.search(before)
