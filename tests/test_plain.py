@@ -162,6 +162,7 @@ _fragments = st.sampled_from(
             "series ",
         ),
         *("to ", "why ", "in ", "H", "H^2", "K(", "Z", "Z/4", "F_2", "X", "BO", "x ", "K(Z/2, 3)", "let x in H^2"),
+        *("–", "≡", "≠", "∞", "(mod 2)", "mod", "Z_(2)", "Z_2", "{4 2}", "4,2", "RP^oo", "quit", "ˆ", "２"),
         *("(X; Z/4)", "binom(4,2)", "2n", "$", "\\", "\\alpha", "%", "é", "\x00", "\udc80", "cup", "cross", "for"),
     ]
 )

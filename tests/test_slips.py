@@ -124,6 +124,7 @@ def test_the_transgression_keeps_the_group() -> None:
     [
         ("Sq^2 iota_3 on K(Z,3)", "on", "a line of its own"),
         ("Sq^2 iota_3 let x in H^2", "let", "a line of its own"),
+        (r"\Sq^2 \iota_3 on K(\Z, 3)", "on", "a line of its own"),
         ("Sq^2 iota_3 basis H^4(BO)", "basis", "a line of its own"),
         ("quit", "quit", "the end of the input"),
         ("exit", "exit", "the end of the input"),

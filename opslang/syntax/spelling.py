@@ -21,6 +21,7 @@ from opslang.syntax.spellings import (
     LATER_INSIDE,
     LAYOUT,
     PRIMES,
+    STATEMENT_WORDS,
     SUBSCRIPTS,
     SUPERSCRIPTS,
     SYMBOLS,
@@ -135,7 +136,7 @@ class Reading:
             self._put(("MOD", "mod"), start, end)
         elif text in WORDS:
             self._put(WORDS[text], start, end)
-        elif self.tex:
+        elif self.tex and text not in STATEMENT_WORDS:
             for piece in _PIECES.finditer(text):
                 self._put(letter_meaning(piece.group()), start + piece.start(), start + piece.end())
         else:
