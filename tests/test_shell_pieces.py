@@ -708,6 +708,15 @@ def test_other_texts_are_no_prose(text: str) -> None:
     assert prose(text, "input") is None
 
 
+def test_prose_declares_the_classes_it_places() -> None:
+    heard = Heard()
+    said = heard(
+        r"Let $x, y\in H^2(X; \mathbb{Z}/2)$ and $\zeta \in H^3(X;\mathbb Z)$; then $Sq^2 (xy) = Sq^1 \zeta$ is false"
+    )
+    assert "error" not in said and said.startswith("false"), said
+    assert heard("y").startswith("y ") and heard("Sq^1 zeta").startswith("0 ")
+
+
 def test_prose_is_answered() -> None:
     heard = Heard()
     assert heard.sitting.complete(PROSE) and heard.sitting.complete("$k$ is even if $Sq^1$")

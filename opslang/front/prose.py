@@ -1,14 +1,15 @@
 r"""Prose pasted at the prompt: its formulas as statements, its words left out.  Knows spellings, no grammar.
 
 A text is prose where formulas stand between dollar signs or the signs of displays, and words stand outside them that
-the language does not have.  A formula that is a lone name is left out too: it only mentions something.
+the language does not have.  A formula that is a lone name is left out too: it only mentions something.  One that says
+where a class lives declares it.
 """
 
 from __future__ import annotations
 
 import re
 
-from attrs import frozen
+from attrs import evolve, frozen
 
 from opslang.front.pasting import blank, displayed, stretch
 from opslang.ground.source import Source
@@ -26,6 +27,7 @@ _COMMENT = re.compile(r"#[^\n]*|(?<!\\)%[^\n]*")
 _COMMAND = re.compile(r"\\[A-Za-z]+\*?\s*(?:\{[^{}]*\})?")
 _WORD = re.compile(r"(?<![A-Za-z_^{])[A-Za-z]{2,}(?![A-Za-z_^])")
 _NAME = re.compile(r"\s*\\?[A-Za-z]+(?:_(?:\w|\{\s*\w+\s*\}))?'*[\s.,;]*")
+_DECLARES = re.compile(r"\s*\\?[A-Za-z]+[^=+]*?(?:\\in\b|∈)\s*H\s*\^")
 _OURS = {
     *STATEMENT_WORDS,
     *(word for words in INSIDE.values() for word in words),
@@ -65,12 +67,21 @@ def prose(text: str, name: str) -> Prose | None:
         if found.group("dollars") or found.group("round"):
             start, end = found.span("dollars" if found.group("dollars") else "round")
             lone = _NAME.fullmatch(bare, start, end) is not None
-            (names if lone else sources).append(stretch(bare, start, end, name))
+            (names if lone else sources).append(_declared(stretch(bare, start, end, name)))
         else:
             sources += displayed(blank(bare[: found.start()]) + found.group(), name) or ()
     if not sources:
         return Prose(tuple(names))
     return Prose(tuple(sources), tuple([source.text.strip(" .,;\n") for source in names]))
+
+
+def _declared(source: Source) -> Source:
+    """A formula that says where a class lives, as a statement that declares it; places stay where there is room."""
+    if not _DECLARES.match(source.text):
+        return source
+    formula = source.text.lstrip()
+    room = max(0, len(source.text) - len(formula) - len("let "))
+    return evolve(source, text=" " * room + "let " + formula)
 
 
 def _speaks(text: str, formulas: list[re.Match[str]]) -> bool:
