@@ -8,7 +8,6 @@ from itertools import groupby
 from opslang.meaning.indices import number
 from opslang.meaning.scope import Scope, spelled
 from opslang.report.diagnostic import Diagnostic, Refusal, error
-from opslang.spaces.bundle_thom import ThomFactor
 from opslang.spaces.family import NotKnown
 from opslang.spaces.space import WORDS, AnyFactor, Factor, NamedFactor, SpaceValue, class_order
 from opslang.syntax import surface as sf
@@ -57,7 +56,7 @@ def space_value(space: sf.Space, scope: Scope) -> SpaceValue:
             found, name = _eilenberg_maclane(part)
         else:
             found, name = _named(part, scope)
-        if factors and any(isinstance(factor, ThomFactor) for factor in found):
+        if factors and any(getattr(factor, "stands_first", False) for factor in found):
             message = "the Thom space of a declared bundle stands first in a product"
             raise Refusal(error("space-arguments", message, part.span))
         factors += found

@@ -72,6 +72,11 @@ class ThomFactor:
 
     thom: BundleThom
 
+    @property
+    def stands_first(self) -> bool:
+        """It may stand first in a product only."""
+        return True
+
     def family(self, prime: int, factor: int) -> Family:
         """What it says of itself at a prime.  NotKnown at a prime other than that of the bundle's classes."""
         if prime != self.thom.prime:

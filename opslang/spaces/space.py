@@ -9,14 +9,10 @@ from attrs import frozen
 
 from opslang.ground.arith import p_part
 from opslang.ir.tree import Class
-from opslang.spaces import characteristic, projective, spin
-from opslang.spaces.bundle_thom import BundleThom, ThomFactor
 from opslang.spaces.family import Family, NotKnown, Polynomial
-from opslang.spaces.primed import told_apart
-from opslang.spaces.reductions import further, further_degree
-from opslang.spaces.thom import thom
 
 if TYPE_CHECKING:
+    from opslang.spaces.bundle_thom import BundleThom, ThomFactor
     from opslang.spaces.presented import PresentedFactor
 
 
@@ -41,31 +37,15 @@ class NamedFactor:
 
     def family(self, prime: int, factor: int) -> Family:
         """What the space says of itself at a prime.  NotKnown where it is outside what is known."""
-        if self.base is not None:
-            return thom(self.base.family(prime, factor), prime, factor)
-        if self.word == "lens":
-            return projective.Lens(self.number or 0, (*self.letters, *("x", "y")[len(self.letters) :])[:2], factor)  # type: ignore[arg-type]
-        if self.word in _PROJECTIVE:
-            return _PROJECTIVE[self.word](self.number, self.letters[0] if self.letters else None, factor)
-        group = self.word[1:]
-        if self.word == "BSpin" and prime == 2:
-            return spin.spin(group, self.number, prime, factor)
-        return _CLASSIFYING[self.word](group, self.number, prime, factor)
+        from opslang.spaces.families import family  # most work is with Eilenberg-MacLane spaces and needs none
+
+        return family(self, prime, factor)
 
 
-_PROJECTIVE = {"RP": projective.real, "CP": projective.complex_, "HP": projective.quaternionic}
-_CLASSIFYING = {
-    "BO": characteristic.orthogonal,
-    "BSO": characteristic.orthogonal,
-    "BSpin": characteristic.orthogonal,
-    "BU": characteristic.unitary,
-    "BSU": characteristic.unitary,
-    "BSp": characteristic.symplectic,
-}
-WORDS = (*_CLASSIFYING, *_PROJECTIVE, "lens", "thom")
+WORDS = ("BO", "BSO", "BSpin", "BU", "BSU", "BSp", "RP", "CP", "HP", "lens", "thom")
 """The words that named spaces begin with."""
 
-AnyFactor = Union[Factor, NamedFactor, ThomFactor, "PresentedFactor"]
+AnyFactor = Union[Factor, NamedFactor, "ThomFactor", "PresentedFactor"]
 
 
 @frozen
@@ -88,6 +68,10 @@ class Localised:
     @property
     def thom(self) -> BundleThom | None:
         """The Thom class over the base, where the space is the Thom space of a declared bundle."""
+        if not self.families:
+            return None
+        from opslang.spaces.bundle_thom import BundleThom
+
         return next((family for family in self.families if isinstance(family, BundleThom)), None)
 
     def around(self, family: BundleThom) -> tuple["Localised", "Localised"]:
@@ -103,6 +87,8 @@ class Localised:
 
     def named(self, prime: int, letter: str, index: int | None, primes: int) -> list[Polynomial]:
         """What a name stands for in each named factor that has it."""
+        from opslang.spaces.reductions import further
+
         found = [
             further(family, prime, letter, index, primes) if value is None else value
             for family in self.families
@@ -112,6 +98,8 @@ class Localised:
 
     def name_degree(self, prime: int, letter: str, index: int | None, primes: int) -> int:
         """The degree of a name of a named factor that stands for 0."""
+        from opslang.spaces.reductions import further, further_degree
+
         for family in self.families:
             if family.named(prime, letter, index, primes) is not None:
                 return family.name_degree(prime, letter, index)
@@ -137,6 +125,8 @@ def localise(space: SpaceValue, prime: int) -> Localised:
     for number, factor in enumerate(space.factors):
         at = number if len(space.factors) > 1 else 0
         if not isinstance(factor, Factor):
+            from opslang.spaces.primed import told_apart
+
             families.append(told_apart(families, factor.family(prime, at), prime))
             continue
         primes = seen.get(factor.degree, 0)

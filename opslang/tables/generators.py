@@ -7,14 +7,17 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Iterator
 from operator import mul
+from typing import TYPE_CHECKING
 
 from opslang.ground.grading import Word
 from opslang.ir.order import generator_key, monomial_key
 from opslang.ir.tree import Class, Generator, Monomial
-from opslang.spaces.bundle_thom import BundleThom
 from opslang.spaces.family import Family
 from opslang.spaces.space import Localised
 from opslang.tables.budget import Budget
+
+if TYPE_CHECKING:
+    from opslang.spaces.bundle_thom import BundleThom
 
 
 def _roots(of: Class) -> tuple[tuple[Word, int, bool], ...]:
