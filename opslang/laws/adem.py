@@ -46,13 +46,19 @@ def _signed(
         yield (p - value if (a + j + minus) % 2 else value), a + b - j, j
 
 
+def _row(terms: tuple[tuple[int, int], ...], a: int, b: int, minus: int, p: int) -> tuple[Term, ...]:
+    """`_signed`, all at once."""
+    even, s = (a + minus) % 2, a + b
+    return tuple([(value if j % 2 == even else p - value, s - j, j) for j, value in terms])
+
+
 def powers(a: int, b: int, p: int) -> tuple[Term, ...]:
     """The triples (c, i, j) with P^a P^b = sum c P^i P^j, j increasing; j = 0 means P^i alone.
 
     Defined for 0 < a < pb; ValueError elsewhere.  i + j = a + b.  Source: Steenrod and Epstein 1962, ch. VI.
     """
     _refuse_admissible(not 0 < a < p * b, f"P^{a} P^{b}")
-    return tuple(_signed(binomials.row((p - 1) * b - 1, a, p), a, b, 0, p))
+    return _row(binomials.row((p - 1) * b - 1, a, p), a, b, 0, p)
 
 
 def iter_powers(a: int, b: int, p: int) -> Iterator[Term]:
@@ -74,8 +80,8 @@ def powers_bockstein(a: int, b: int, p: int) -> tuple[tuple[Term, ...], tuple[Te
     Source: Steenrod and Epstein 1962, ch. VI.
     """
     _refuse_admissible(not 0 < a <= p * b, f"P^{a} beta P^{b}")
-    outside = tuple(_signed(binomials.row((p - 1) * b, a, p), a, b, 0, p))
-    inside = tuple(_signed(binomials.row((p - 1) * b - 1, a - 1, p), a, b, 1, p))
+    outside = _row(binomials.row((p - 1) * b, a, p), a, b, 0, p)
+    inside = _row(binomials.row((p - 1) * b - 1, a - 1, p), a, b, 1, p)
     return outside, inside
 
 

@@ -86,6 +86,16 @@ def walk(n: int, k: int, p: int) -> Iterator[tuple[int, int]]:
             waiting.append((after, j + e * place, place * p, value * factor % p))
 
 
+@lru_cache(maxsize=64)
+def _digits(p: int) -> tuple[tuple[int, ...], ...]:
+    """The binomials C(a, b) mod p of two digits, row by row."""
+    return tuple([tuple([binomial_mod(a, b, p) for b in range(p)]) for a in range(p)])
+
+
+_SMALL_PRIME = 64
+"""Below it the binomials of digits are kept in a table."""
+
+
 @lru_cache(maxsize=1 << 13)
 def _short_row(n: int, k: int, p: int) -> tuple[tuple[int, int], ...]:
     if n < 0 or k < 0:
@@ -93,13 +103,21 @@ def _short_row(n: int, k: int, p: int) -> tuple[tuple[int, int], ...]:
     if k < p:
         value = binomial_mod(n, k, p)
         return ((0, value),) if value else ()
-    return tuple(
-        sorted(
-            (p * high + e, factor * value % p)
-            for e, factor, after in _branches((n, k), p)
-            for high, value in _short_row(*after, p)
-        )
-    )
+    found: list[tuple[int, int]] = []
+    if p < _SMALL_PRIME:
+        table, low, high = _digits(p), k % p, k // p
+        for e in range(min(p, high + 1)):
+            top = n - (p - 1) * e
+            if top < 0:
+                break
+            factor = table[top % p][low]
+            if factor:
+                found += [(p * j + e, factor * value % p) for j, value in _short_row(top // p, high - e, p)]
+    else:
+        for e, factor, after in _branches((n, k), p):
+            found += [(p * j + e, factor * value % p) for j, value in _short_row(*after, p)]
+    found.sort()
+    return tuple(found)
 
 
 def row(n: int, k: int, p: int) -> tuple[tuple[int, int], ...]:

@@ -156,7 +156,8 @@ class Evaluation:
 
     def word(self, word: ir.Word) -> Any:
         """A word's canonical form."""
-        element = self._quickly(word) if len(word) > 2 else None
+        short = len(word) < 3 or (len(word) == 3 and max(word) < _PAIR)
+        element = None if short else self._quickly(word)
         if element is None:
             element = self.algebra.normal(word)
         return element

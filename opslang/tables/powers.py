@@ -197,10 +197,12 @@ class Powers:
     def normal(self, word: tuple[int, ...]) -> Packeds:
         """The canonical form of a word of letters."""
         length = len(word)
-        if length == 2 and word[0] and 0 < word[0] < self.prime * word[1]:
-            return self.pair(word[0], word[1], 0)
-        if length == 3 and word[0] and not word[1] and 0 < word[0] <= self.prime * word[2]:
-            return self.pair(word[0], word[2], 1)
+        if length == 2 and word[0] and word[1]:
+            a, b = word
+            return self.pair(a, b, 0) if a < self.prime * b else {b << self.width + 1 | a << 1: 1}
+        if length == 3 and word[0] and not word[1] and word[2]:
+            a, b = word[0], word[2]
+            return self.pair(a, b, 1) if a <= self.prime * b else {(b << 1 | 1) << self.width | a << 1: 1}
         element: Packeds = {0: 1}
         for token in reversed(word):
             element = self.times(token, element)
