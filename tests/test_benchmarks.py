@@ -13,7 +13,8 @@ from benchmarks import measure, short, workloads
 
 from opslang.front.batch import run
 from opslang.front.statement import Settings
-from opslang.tables.engine import Engine, Evaluation
+from opslang.tables.engine import Engine
+from opslang.tables.evaluation import Evaluation
 from opslang.tables.ring2 import Ring2
 
 ROOT = Path(__file__).resolve().parent.parent

@@ -18,7 +18,8 @@ NO_LIMIT = 10**15
 
 
 def _engine(prime: int, top: int) -> Any:
-    from opslang.tables.engine import Engine, Evaluation
+    from opslang.tables.engine import Engine
+    from opslang.tables.evaluation import Evaluation
 
     engine = Engine(prime, NO_LIMIT)
     return Evaluation(engine, engine.ring(top))
