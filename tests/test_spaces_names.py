@@ -65,3 +65,10 @@ def test_what_lower_bocksteins_cannot_reach_is_false() -> None:
     assert run("on K(Z/4, 2)", "beta_3(iota_2^2) = iota_2 beta_2 iota_2")[-1].verdict == "true"
     right = "iota_2 beta_2 iota_2 + Sq^2 beta_2 iota_2"
     assert run("on K(Z/4, 2)", f"beta_3(iota_2^2) = {right}")[-1].verdict == "false"
+
+
+def test_a_number_in_brackets_behind_a_square_is_an_index_meant() -> None:
+    found = run("Sq(2)")[-1]
+    assert found.name == "index-place"
+    assert found.error is not None and found.error.mend == "Sq^2"
+    assert last("Sq(1)") == "1"

@@ -44,6 +44,17 @@ def letter(factor: sf.Operation | sf.Bockstein | sf.Milnor, prime: int) -> Value
     return word_value((1,) if prime == 2 else (0,), prime, factor.span)
 
 
+def index_meant(last: tuple[Value | Marker, Span], n: int, span: Span, text: str) -> None:
+    """Refuse a total operation on a number above 1: `Sq(2)` can only be meant for Sq^2."""
+    value, at = last
+    if type(value) is Marker and not value.order and n > 1:
+        head = text[at[0] : at[1]]
+        mend = f"{head}^{n}"
+        raise Refusal(
+            error("index-place", f"the index of {head} stands above, behind ^", (at[0], span[1]), f"write {mend}", mend)
+        )
+
+
 def word_applied(pending: list[tuple[Value | Marker, Span]], argument: Value, span: Span) -> Value | None:
     """Letters applied to a class, run together into one word; None where the pending operations are not all words.
 

@@ -15,7 +15,7 @@ from opslang.ir import tree as ir
 from opslang.ir.tree import Class
 from opslang.meaning.characteristic import Characteristic
 from opslang.meaning.indices import bounded, number
-from opslang.meaning.letters import Marker, letter, word_applied
+from opslang.meaning.letters import Marker, index_meant, letter, word_applied
 from opslang.meaning.scope import Key, Scope, spelled
 from opslang.meaning.unknown import unknown_name
 from opslang.meaning.value import (
@@ -125,6 +125,7 @@ class Lowering:
                         coefficient *= value.number
                         saw_scalar = True
                         continue
+                    index_meant(pending[-1], value.number, factor.span, self.text)
                     value = as_sort(value, "class", factor.span)
                     sort = "class"
             else:
