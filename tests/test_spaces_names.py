@@ -71,4 +71,5 @@ def test_a_number_in_brackets_behind_a_square_is_an_index_meant() -> None:
     found = run("Sq(2)")[-1]
     assert found.name == "index-place"
     assert found.error is not None and found.error.mend == "Sq^2"
+    assert run("let x in H^2", "Sq(3) x")[-1].name == "index-place"
     assert last("Sq(1)") == "1"

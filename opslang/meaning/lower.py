@@ -121,11 +121,12 @@ class Lowering:
             if type(value) is Value:
                 sort = value.sort
                 if sort == "scalar":
+                    if pending and type(factor) is sf.Group:
+                        index_meant(pending[-1], value.number, factor.span, self.text)
                     if not (pending and at == len(glues) - 1 and type(factor) is sf.Group):
                         coefficient *= value.number
                         saw_scalar = True
                         continue
-                    index_meant(pending[-1], value.number, factor.span, self.text)
                     value = as_sort(value, "class", factor.span)
                     sort = "class"
             else:
