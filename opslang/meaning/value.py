@@ -24,7 +24,7 @@ class Value:
     """A lowered expression.
 
     A scalar has its number in `number`, no tree and degree 0.  `top` bounds the degree of everything inside;
-    `classes` are the classes that occur; `written_zero` says that a literal 0 stands there.
+    `classes` are the classes that occur.
     """
 
     sort: Sort

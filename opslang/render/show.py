@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-import unicodedata
-
 from opslang.ir.outcome import Outcome
 from opslang.ir.tree import Element
 from opslang.render.text import Notation, element_text, monomial_text, term_texts
+from opslang.report.render import cells
 
 MARGIN = 28
 """The column at which degree and excess begin, where the result is short."""
@@ -19,19 +18,12 @@ BLOCK = 100
 MINUS: dict[str, str] = {"text": "left - right", "unicode": "left − right", "latex": "left - right"}
 
 
-def display_width(text: str) -> int:
-    """The columns that a text takes on a terminal."""
-    if text.isascii():
-        return len(text)
-    return sum(0 if unicodedata.combining(c) else 2 if unicodedata.east_asian_width(c) in "WF" else 1 for c in text)
-
-
-def columns(cells: list[str], width: int, indent: str = "") -> list[str]:
-    """Cells set in as many columns of one width as fit, read along the rows."""
-    widest = max(map(display_width, cells), default=0) + 2
+def columns(entries: list[str], width: int, indent: str = "") -> list[str]:
+    """Entries set in as many columns of one width as fit, read along the rows."""
+    widest = max(map(cells, entries), default=0) + 2
     count = max(1, (width - len(indent) + 2) // widest)
-    rows = [cells[i : i + count] for i in range(0, len(cells), count)]
-    return [(indent + "".join(cell + " " * (widest - display_width(cell)) for cell in row)).rstrip() for row in rows]
+    rows = [entries[i : i + count] for i in range(0, len(entries), count)]
+    return [(indent + "".join(entry + " " * (widest - cells(entry)) for entry in row)).rstrip() for row in rows]
 
 
 def measure(degree: int | None, excess: int | None) -> str:
@@ -47,7 +39,7 @@ def sum_lines(element: Element, notation: Notation, width: int, indent: str = ""
     terms = term_texts(element, notation)
     if len(terms) < width or notation == "latex":
         whole = " + ".join(terms) or "0"
-        if display_width(whole) + len(indent) <= width or notation == "latex":
+        if cells(whole) + len(indent) <= width or notation == "latex":
             return [indent + whole]
     return columns([terms[0]] + ["+ " + term for term in terms[1:]], width, indent)
 
@@ -57,8 +49,8 @@ def with_measure(lines: list[str], words: str, width: int, margin: int = MARGIN)
     if not words:
         return lines
     last = lines[-1]
-    padded = last + " " * max(3, margin - display_width(last)) + words
-    if len(lines) == 1 and display_width(padded) <= width:
+    padded = last + " " * max(3, margin - cells(last)) + words
+    if len(lines) == 1 and cells(padded) <= width:
         return [padded]
     return [*lines, "    " + words]
 
@@ -169,8 +161,8 @@ def show(outcome: Outcome, notation: Notation = "text", width: int = 80, echo: b
 
 
 def _echoed(lines: list[str], written: str, width: int) -> list[str]:
-    last = lines[-1] + " " * max(3, ECHO - display_width(lines[-1])) + "# " + written
-    if display_width(last) <= width:
+    last = lines[-1] + " " * max(3, ECHO - cells(lines[-1])) + "# " + written
+    if cells(last) <= width:
         return [*lines[:-1], last]
     room = max(width - 6, 20)
-    return [*lines, "    # " + (written if display_width(written) <= room else written[: room - 1] + "…")]
+    return [*lines, "    # " + (written if cells(written) <= room else written[: room - 1] + "…")]

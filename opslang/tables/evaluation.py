@@ -168,13 +168,15 @@ class Evaluation:
         for x in element:
             word = self.algebra.unpack(x)
             part = self._one()
-            boundary = word.count(0) if self.prime != 2 else 0
-            # chi reverses words; the sign is that of the reversal of the Boksteins and of chi(beta) = -beta
             for token in word:
                 part = self.times(self._conjugate_letter(token), part)
-            sign = (-1) ** (boundary * (boundary - 1) // 2 + boundary)
-            self.ring.add(result, part, sign * (1 if self.prime == 2 else element[x]))
+            self.ring.add(result, part, self._reversal_sign(word) * (1 if self.prime == 2 else element[x]))
         return result
+
+    def _reversal_sign(self, word: ir.Word) -> int:
+        """The sign of chi on a word: that of the reversal of its Bocksteins, and chi(beta) = -beta for each."""
+        boundary = word.count(0) if self.prime != 2 else 0
+        return -1 if (boundary * (boundary + 1) // 2) % 2 else 1
 
     def _conjugate_letter(self, token: int) -> Any:
         """chi of a letter, by sum_i P^i chi(P^{n-i}) = 0; without the sign where the letter is a Bockstein."""
@@ -314,13 +316,10 @@ class Evaluation:
         """chi of an operation applied to an element of H^*."""
         if not isinstance(tree, ir.Composite):
             return self._apply_element(self.conjugate(tree), element)
-        negative = 0
-        boundary = tree.word.count(0) if self.prime != 2 else 0
         for token in tree.word:
             element = self._apply_conjugate_letter(token, element)
-        negative = boundary * (boundary - 1) // 2 + boundary
         result = self.ring.zero()
-        self.ring.add(result, element, (-1) ** negative)
+        self.ring.add(result, element, self._reversal_sign(tree.word))
         return result
 
     def _apply_conjugate_letter(self, token: int, element: Any) -> Any:
